@@ -1,0 +1,1 @@
+"""Lightest adequate catalogue sections for pin-jointed trusses, checked and proven."""

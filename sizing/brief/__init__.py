@@ -1,0 +1,1 @@
+"""What the engineer asks for: the validated model and its readers."""

@@ -1,0 +1,211 @@
+"""The validated brief: every record here is in SI units and refers by index.
+
+Readers (``sizing.brief.toml_reader`` and others) build these records and guarantee what the
+docstrings say; everything downstream relies on it and checks nothing again.
+
+Index letters used throughout: ``n`` nodes, ``m`` members, ``g`` groups, ``q`` load cases,
+``c`` combinations, ``d`` dimensions (2 or 3).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import Any, Literal
+
+ActionKind = Literal[
+    "permanent", "imposed", "imposed roof", "snow", "wind", "temperature", "settlement", "other"
+]
+LoadDuration = Literal["permanent", "long", "medium", "short", "instantaneous"]
+State = Literal["strength", "serviceability"]
+Objective = Literal["mass", "cost", "carbon"]
+LengthRule = Literal["factor", "length"]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class SourceFile:
+    """A file that was read: the name as the user gave it, its full path and its SHA-256."""
+
+    name: str
+    path: Path
+    sha256: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Units:
+    """The brief's units for bare numbers and for print, e.g. force ``kN`` and length ``m``."""
+
+    force: str = "kN"
+    length: str = "m"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Node:
+    """A joint: ``position`` in m, 2 or 3 coordinates; the last one points up."""
+
+    name: str
+    position: tuple[float, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Support:
+    """Directions in which a node is held, one flag per coordinate."""
+
+    node: int
+    held: tuple[bool, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BucklingLength:
+    """A buckling length: a factor on the member's own length, or a length in m."""
+
+    rule: LengthRule = "factor"
+    value: float = 1.0
+
+    def of(self, member_length: float) -> float:
+        """Return the buckling length in m of a member of ``member_length`` m."""
+        return self.value * member_length if self.rule == "factor" else self.value
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class SlendernessLimits:
+    """Greatest L/i of a member that is ever compressed, and of one that is only tensioned.
+
+    ``None`` sets no limit.
+    """
+
+    compression: float | None = None
+    tension: float | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Group:
+    """Members that take the same section.
+
+    ``depth_in_plane``: the section's depth lies in the plane of the truss, so that buckling in
+    plane bends it about its major axis. ``net_section_factor``: net over gross area at joints,
+    used in tension. ``utilisation_cap``: greatest utilisation allowed. ``families`` and
+    ``designations`` (patterns with * and ?) restrict the catalogue when not empty.
+    """
+
+    name: str
+    members: tuple[int, ...]
+    in_plane: BucklingLength = BucklingLength()
+    out_of_plane: BucklingLength = BucklingLength()
+    depth_in_plane: bool = True
+    net_section_factor: float = 1.0
+    utilisation_cap: float = 1.0
+    slenderness: SlendernessLimits | None = None
+    families: tuple[str, ...] = ()
+    designations: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Member:
+    """A two-force member from node ``start`` to node ``end`` (indices), ``length`` in m.
+
+    ``name`` is its two node names, ``A0-A1``; ``mark`` is the short mark on the schedule.
+    """
+
+    name: str
+    mark: str
+    start: int
+    end: int
+    group: int
+    length: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class LoadCase:
+    """One action. ``nodal`` maps node index to force components in N (d of them).
+
+    ``self_weight`` adds the weight of the picked sections, downwards. ``duration`` overrides
+    the usual load duration of the kind.
+    """
+
+    name: str
+    kind: ActionKind
+    nodal: Mapping[int, tuple[float, ...]]
+    self_weight: bool = False
+    duration: LoadDuration | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Combination:
+    """A factored sum of load cases; ``factors`` maps case index to factor (zeros left out).
+
+    ``origin`` says where it comes from: written out in the brief, or the rule that made it.
+    ``duration`` is the shortest load duration of its cases.
+    """
+
+    name: str
+    state: State
+    factors: Mapping[int, float]
+    duration: LoadDuration
+    origin: str = "brief"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class DeflectionLimit:
+    """|displacement of each node along ``direction``| must not exceed ``limit`` (m).
+
+    ``direction`` is a unit vector of d components, ``direction_text`` its name in the brief.
+    ``combinations`` are indices of the combinations in which the limit holds (serviceability
+    ones unless the brief names others). ``relative_to``: when given, the movement is taken
+    relative to that node. ``limit_text`` is the limit as written, e.g. ``span/250``.
+    """
+
+    name: str
+    nodes: tuple[int, ...]
+    direction: tuple[float, ...]
+    direction_text: str
+    limit: float
+    limit_text: str
+    combinations: tuple[int, ...]
+    relative_to: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Option:
+    """One complete answer: a standard, a grade, a catalogue, and the standard's own settings.
+
+    ``catalogue`` is a shipped name or a path relative to the brief. ``settings`` holds the
+    remaining keys of the option's table, not yet interpreted; the standard validates them.
+    """
+
+    name: str
+    standard: str
+    grade: str | None
+    catalogue: str
+    slenderness: SlendernessLimits = SlendernessLimits()
+    connection_allowance: float = 0.0
+    settings: Mapping[str, Any] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Brief:
+    """Everything that was asked for, valid and in SI units."""
+
+    title: str
+    source: SourceFile
+    units: Units
+    minimise: Objective
+    nodes: tuple[Node, ...]
+    supports: tuple[Support, ...]
+    groups: tuple[Group, ...]
+    members: tuple[Member, ...]
+    cases: tuple[LoadCase, ...]
+    combinations: tuple[Combination, ...]
+    deflection_limits: tuple[DeflectionLimit, ...]
+    options: tuple[Option, ...]
+    notes: str = ""
+
+    @property
+    def dimensions(self) -> int:
+        """2 for a plane truss, 3 for a space truss."""
+        return len(self.nodes[0].position)
+
+    def combinations_of(self, state: State) -> tuple[int, ...]:
+        """Return the indices of the combinations of one state, in brief order."""
+        return tuple(i for i, c in enumerate(self.combinations) if c.state == state)

@@ -1,0 +1,69 @@
+"""A section catalogue as arrays: one entry per row of the supplier's table, SI units."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from sizing.brief.model import SourceFile
+
+FloatArray = NDArray[np.float64]
+
+
+@dataclass(frozen=True, kw_only=True)
+class Catalogue:
+    """The rows of one section catalogue, all arrays of length s (sections), SI units.
+
+    ``row`` is the line number in the file, for traceability. Axis words: *major* is the axis
+    of the greater second moment among the two geometric axes, *minor* the other, *least* the
+    principal axis of the smallest second moment (differs from *minor* for angles only).
+
+    ``family`` is one word per row: ``SHS``, ``RHS``, ``CHS``, ``angle``, ``I``, ``rectangle``
+    (solid timber, glulam) or ``other``. ``product`` is the product standard as the file states
+    it (``EN 10210-2``: hot finished, ``EN 10219-2``: cold formed, ``ASTM A500``, ``EN 14080``).
+    Missing dimensions are NaN: ``depth`` is the overall dimension across the major axis,
+    ``width`` the other, ``thickness`` the wall, web or leg, ``flange`` the flange thickness,
+    ``root_radius`` the root radius. ``surface`` is m² of outer surface per m.
+    ``price`` is per m in the user's currency, NaN where not given.
+    """
+
+    name: str
+    source: SourceFile
+    header: tuple[str, ...]
+    designation: tuple[str, ...]
+    row: tuple[int, ...]
+    family: tuple[str, ...]
+    product: tuple[str, ...]
+    area: FloatArray
+    i_major: FloatArray
+    i_minor: FloatArray
+    i_least: FloatArray
+    mass: FloatArray
+    depth: FloatArray
+    width: FloatArray
+    thickness: FloatArray
+    flange: FloatArray
+    root_radius: FloatArray
+    surface: FloatArray
+    price: FloatArray
+    remarks: tuple[str, ...] = ()
+
+    def __len__(self) -> int:
+        return len(self.designation)
+
+    @property
+    def r_major(self) -> FloatArray:
+        """Radius of gyration about the major axis, m."""
+        return np.sqrt(self.i_major / self.area)
+
+    @property
+    def r_minor(self) -> FloatArray:
+        """Radius of gyration about the minor axis, m."""
+        return np.sqrt(self.i_minor / self.area)
+
+    @property
+    def r_least(self) -> FloatArray:
+        """Radius of gyration about the least axis, m."""
+        return np.sqrt(self.i_least / self.area)

@@ -1,0 +1,1 @@
+"""What leaves the office: schedule workbook, drawings, machine-readable result."""

@@ -1,0 +1,1 @@
+"""Direct stiffness of pin-jointed trusses: geometry, assembly, solution, mechanisms."""

@@ -1,0 +1,1 @@
+"""The pick: problem arrays, search, lower bounds and proof. Knows no standards and no files."""

@@ -1,0 +1,1 @@
+"""Member resistance: one file per standard behind one small interface."""
