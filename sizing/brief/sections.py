@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields, replace
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -67,3 +68,14 @@ class Catalogue:
     def r_least(self) -> FloatArray:
         """Radius of gyration about the least axis, m."""
         return np.sqrt(self.i_least / self.area)
+
+    def only(self, section: int) -> Catalogue:
+        """Return the catalogue of the single row ``section``."""
+        picked: dict[str, Any] = {}
+        for field in fields(self):
+            value = getattr(self, field.name)
+            if isinstance(value, np.ndarray):
+                picked[field.name] = value[section : section + 1]
+            elif isinstance(value, tuple) and field.name not in ("header", "remarks"):
+                picked[field.name] = value[section : section + 1]
+        return replace(self, **picked)
