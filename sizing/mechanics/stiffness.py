@@ -1,0 +1,141 @@
+"""The stiffness matrix K = Bᵀ diag(EA/L) B, factorised once for any number of load columns.
+
+Sizes: m members, n free displacements, q load columns.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+from scipy import sparse
+from scipy.linalg import LinAlgError, cho_factor, cho_solve
+from scipy.sparse.linalg import splu
+
+from sizing.errors import SolverError, UnstableTrussError
+from sizing.mechanics.geometry import FloatArray
+
+DENSE_LIMIT = 250
+"""Free displacements up to which dense Cholesky is used."""
+
+PIVOT_FLOOR = 1e-14
+"""Least pivot over its diagonal entry in a factorisation that is believed.
+
+In exact arithmetic a mechanism gives a zero pivot; rounding leaves some 1e-16 of the diagonal.
+"""
+
+REFINE_ABOVE = 1e-13
+"""Out-of-balance force over greatest load above which one refinement step is made."""
+
+RESIDUAL_LIMIT = 1e-6
+"""Out-of-balance force over greatest load above which a solution is refused.
+
+One part in a million of the load is far below what a load is known to, and far above rounding
+(1e-12 for the trusses of this trade): more means that the factorisation is worthless.
+"""
+
+_UNSTABLE = (
+    "The truss moves without straining any member: it is a mechanism or is not held. "
+    "Add a member or a support."
+)
+
+
+class Stiffness:
+    """K = Bᵀ diag(k) B, factorised.
+
+    ``compatibility`` (m, n) sparse, ``member_stiffness`` k = EA/L (m,), N/m, all > 0.
+    Raises ``UnstableTrussError`` when K is singular and ``ValueError`` when a stiffness is not a
+    positive finite number. Which nodes move is what ``sizing.mechanics.stability`` finds out.
+    """
+
+    def __init__(self, compatibility: sparse.csr_array, member_stiffness: FloatArray) -> None:
+        k = np.array(member_stiffness, dtype=np.float64)
+        if k.shape != (compatibility.shape[0],):
+            raise ValueError(f"one stiffness per member is needed, not an array {k.shape}")
+        if not (np.isfinite(k).all() and (k > 0).all()):
+            raise ValueError("every member stiffness EA/L must be a positive finite number")
+        k.flags.writeable = False
+        self.member_stiffness = k
+        self.compatibility = compatibility
+        self._transpose = sparse.csr_array(compatibility.T)
+        self._apply_inverse = self._factorise()
+
+    @property
+    def free(self) -> int:
+        """Number of free displacements n."""
+        return int(self.compatibility.shape[1])
+
+    def matrix(self) -> sparse.csc_array:
+        """Return K (n, n), N/m, sparse."""
+        scaled = self.compatibility.multiply(self.member_stiffness[:, None])
+        return sparse.csc_array(self._transpose @ sparse.csr_array(scaled))
+
+    def solve(self, loads: FloatArray) -> FloatArray:
+        """Return u (n, q) or (n,) in m with K u = ``loads`` (n, q) or (n,) in N.
+
+        Every solution is checked: it is finite and its out-of-balance forces
+        |P − Bᵀ k B u| stay below ``RESIDUAL_LIMIT`` × the greatest load of the column, after one
+        step of iterative refinement where needed; otherwise ``SolverError`` is raised.
+        """
+        p = np.asarray(loads, dtype=np.float64)
+        if p.shape[0] != self.free:
+            raise ValueError(f"loads have {p.shape[0]} rows for {self.free} free displacements")
+        if not p.size:
+            return np.zeros_like(p)
+        u = self._apply_inverse(p)
+        residual = p - self.apply(u)
+        scale = np.abs(p).max(axis=0)
+        if np.any(np.abs(residual).max(axis=0) > REFINE_ABOVE * scale):
+            u = u + self._apply_inverse(residual)
+            residual = p - self.apply(u)
+        # written so that NaN fails as well
+        if not np.all(np.abs(residual).max(axis=0) <= RESIDUAL_LIMIT * scale):
+            worst = float(np.max(np.abs(residual).max(axis=0) / np.where(scale > 0, scale, 1.0)))
+            raise SolverError(
+                f"The forces found do not balance the loads (out of balance by {worst:.1e} of the "
+                "greatest load): the truss is close to a mechanism, or member stiffnesses differ "
+                "too widely. Look for nearly straight chains of members and for wrong areas."
+            )
+        return u
+
+    def apply(self, displacements: FloatArray) -> FloatArray:
+        """Return K u (n, q) or (n,) in N, computed member by member as Bᵀ (k ∘ B u)."""
+        elongation = self.compatibility @ displacements
+        k = self.member_stiffness
+        force = elongation * (k if elongation.ndim == 1 else k[:, None])
+        result: FloatArray = self._transpose @ force
+        return result
+
+    def _factorise(self) -> Callable[[FloatArray], FloatArray]:
+        if self.free == 0:
+            return lambda p: p
+        return self._dense() if self.free <= DENSE_LIMIT else self._sparse()
+
+    def _dense(self) -> Callable[[FloatArray], FloatArray]:
+        matrix = self.matrix().toarray()
+        try:
+            factor = cho_factor(matrix, lower=True, check_finite=False)
+        except LinAlgError as error:
+            raise UnstableTrussError(_UNSTABLE) from error
+        _require_pivots(np.diagonal(factor[0]) ** 2, np.diagonal(matrix))
+        return lambda p: np.asarray(cho_solve(factor, p, check_finite=False))
+
+    def _sparse(self) -> Callable[[FloatArray], FloatArray]:
+        matrix = self.matrix()
+        try:
+            factor = splu(
+                matrix,
+                permc_spec="MMD_AT_PLUS_A",
+                diag_pivot_thresh=0.0,
+                options={"SymmetricMode": True},
+            )
+        except RuntimeError as error:  # "Factor is exactly singular"
+            raise UnstableTrussError(_UNSTABLE) from error
+        # perm_c[i] is where column i went
+        _require_pivots(factor.U.diagonal()[factor.perm_c], matrix.diagonal())
+        return lambda p: np.asarray(factor.solve(p))
+
+
+def _require_pivots(pivots: FloatArray, diagonal: FloatArray) -> None:
+    if not np.all(pivots > PIVOT_FLOOR * diagonal):
+        raise UnstableTrussError(_UNSTABLE)
