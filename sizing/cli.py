@@ -1,0 +1,199 @@
+"""The command line: ``sizing pick``, ``sizing check``. One place maps errors to exit codes."""
+
+from __future__ import annotations
+
+import signal
+import sys
+from collections.abc import Iterator
+from contextlib import contextmanager
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated
+
+import typer
+
+from sizing.errors import (
+    DisagreementError,
+    InputError,
+    NoAdequateSectionError,
+    OutputError,
+    SizingError,
+    SolverError,
+    UnstableTrussError,
+)
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+    from types import FrameType
+
+    from sizing.results import JobResult
+    from sizing.selection.outcome import Limits, Progress
+
+EXIT_CODES: dict[type[SizingError], int] = {
+    InputError: 2,
+    UnstableTrussError: 3,
+    NoAdequateSectionError: 4,
+    SolverError: 5,
+    DisagreementError: 6,
+    OutputError: 7,
+}
+"""Exit codes: 0 adequate and issued; 1 the given sections are not adequate (documents written)."""
+
+NOT_ADEQUATE = 1
+INTERRUPTED = 130
+
+app = typer.Typer(
+    add_completion=False,
+    no_args_is_help=True,
+    pretty_exceptions_enable=False,
+    rich_markup_mode=None,
+    help=(
+        "Pick the lightest adequate catalogue section for every group of a pin-jointed truss, "
+        "with proof, and issue the member schedule. A licensed engineer must check the result."
+    ),
+)
+
+BriefPath = Annotated[Path, typer.Argument(metavar="BRIEF", help="The brief, a TOML file.")]
+OutFolder = Annotated[
+    Path | None, typer.Option("--out", metavar="DIR", help="Folder for the documents.")
+]
+OptionNames = Annotated[
+    list[str] | None,
+    typer.Option("--option", metavar="NAME", help="Only this option of the brief (repeatable)."),
+]
+
+
+@app.command("pick")
+def pick_command(
+    brief: BriefPath,
+    out: OutFolder = None,
+    option: OptionNames = None,
+    time_limit: Annotated[
+        float, typer.Option("--time-limit", metavar="SECONDS", min=0.1, help="Per option.")
+    ] = 600.0,
+    gap: Annotated[
+        float,
+        typer.Option("--gap", metavar="PERCENT", min=0.0, help="Stop when the gap is this small."),
+    ] = 0.0,
+) -> None:
+    """Pick the lightest adequate section for every group and issue the documents."""
+    from sizing.brief.toml_reader import read_brief
+    from sizing.job import pick_job
+
+    asked = read_brief(brief)
+    with _stop_on_interrupt() as stop:
+        result = pick_job(
+            asked,
+            options=option or (),
+            limits=lambda name: _limits(name, time_limit, gap / 100.0, stop),
+        )
+    _issue(result, out)
+
+
+@app.command("check")
+def check_command(
+    brief: BriefPath,
+    sections: Annotated[
+        Path,
+        typer.Option(
+            "--sections",
+            metavar="FILE",
+            help="Sections per option and group: a small TOML file or a result.json.",
+        ),
+    ],
+    out: OutFolder = None,
+    option: OptionNames = None,
+) -> None:
+    """Check given sections against the brief, without picking."""
+    from sizing.brief.sections_reader import read_sections
+    from sizing.brief.toml_reader import read_brief
+    from sizing.job import check_job
+
+    asked = read_brief(brief)
+    result = check_job(asked, read_sections(sections, asked), options=option or ())
+    _issue(result, out)
+    if not all(answer.adequate for answer in result.options):
+        raise typer.Exit(NOT_ADEQUATE)
+
+
+def _issue(result: JobResult, out: Path | None) -> None:
+    from sizing.documents.screen import print_result
+
+    written = []
+    if out is not None:
+        from sizing.documents.issue import write_documents
+
+        written = list(write_documents(result, out))
+    print_result(result)
+    for path in written:
+        typer.echo(f"written: {path}")
+
+
+def _limits(name: str, seconds: float, gap: float, stop: Callable[[], bool]) -> Limits:
+    from sizing.selection.outcome import Limits
+
+    return Limits(seconds=seconds, gap=gap, stop=stop, report=_Reporter(name))
+
+
+class _Reporter:
+    """One line on standard error: rewritten in place on a terminal, else only when it changes."""
+
+    def __init__(self, name: str) -> None:
+        self.name = name
+        self.last = ""
+
+    def __call__(self, progress: Progress) -> None:
+        best = "none yet" if progress.incumbent is None else f"{progress.incumbent:.1f}"
+        bound = "none yet" if progress.bound is None else f"{progress.bound:.1f}"
+        gap = "" if progress.gap is None else f", gap {progress.gap:.2%}"
+        line = f"{self.name}: {progress.phase}: best {best}, bound {bound}{gap}"
+        if sys.stderr.isatty():
+            timed = f"{line}, {progress.analyses} analyses, {progress.seconds:.1f} s"
+            sys.stderr.write(f"\r\x1b[2K{timed[:110]}")
+        elif line != self.last:
+            sys.stderr.write(line + "\n")
+        self.last = line
+        sys.stderr.flush()
+
+
+@contextmanager
+def _stop_on_interrupt() -> Iterator[Callable[[], bool]]:
+    """Turn the first Ctrl-C into a request to stop with the best design; the second one ends."""
+    asked = False
+
+    def handle(_signal: int, _frame: FrameType | None) -> None:
+        nonlocal asked
+        if asked:
+            raise KeyboardInterrupt
+        asked = True
+        sys.stderr.write("\nstopping with the best checked design so far ...\n")
+
+    before = signal.signal(signal.SIGINT, handle)
+    try:
+        yield lambda: asked
+    finally:
+        signal.signal(signal.SIGINT, before)
+        if sys.stderr.isatty():
+            sys.stderr.write("\r\x1b[2K")
+
+
+def main() -> None:
+    """Run the command line; a mistake in a file ends in a message and an exit code."""
+    try:
+        app()
+    except SizingError as error:
+        _explain(error)
+        raise SystemExit(EXIT_CODES[type(error)]) from None
+    except KeyboardInterrupt:
+        sys.stderr.write("interrupted; nothing was written\n")
+        raise SystemExit(INTERRUPTED) from None
+
+
+def _explain(error: SizingError) -> None:
+    if isinstance(error, InputError):
+        many = len(error.problems)
+        sys.stderr.write(f"{many} {'mistake' if many == 1 else 'mistakes'} to mend:\n")
+        for problem in error.problems:
+            sys.stderr.write(f"- {problem.text()}\n")
+    else:
+        sys.stderr.write(f"{error}\n")
+    sys.stderr.write("Nothing was written.\n")
