@@ -101,20 +101,31 @@ class Step:
 class Material:
     """Stiffness and density that the analysis uses: ``E`` in Pa, ``density`` in kg/m³.
 
-    ``E`` is the modulus for forces and deflections (mean value for timber).
+    ``E`` is the modulus for forces and deflections (mean value for timber). ``creep`` is the
+    extra deflection per unit of elastic deflection under long-term load: kdef of EN 1995-1-1,
+    Kcr − 1 of NDS, 0 for steel.
     """
 
     name: str
     E: float
     density: float
+    creep: float = 0.0
 
 
 class Standard(Protocol):
     """A design standard with its grade and settings already chosen."""
 
-    name: str
-    edition: str
-    material: Material
+    @property
+    def name(self) -> str:
+        """Name as in the registry."""
+
+    @property
+    def edition(self) -> str:
+        """Edition or method, for print beside the name."""
+
+    @property
+    def material(self) -> Material:
+        """Stiffness and density of the chosen grade."""
 
     def resistances(
         self,

@@ -1,0 +1,161 @@
+"""Reading a standard's settings: every mistake names the key, what was found and the fix."""
+
+from __future__ import annotations
+
+import difflib
+import math
+from collections.abc import Mapping, Sequence
+from typing import Any, Literal
+
+from sizing.brief.model import Units
+from sizing.standards.contract import SettingsError
+from sizing.units import QuantityError, parse
+
+Kind = Literal["stress", "density", "length"]
+EXAMPLES: dict[Kind, str] = {
+    "stress": "150 N/mm2",
+    "density": "7850 kg/m3",
+    "length": "22 mm",
+}
+
+
+def nearest(word: str, known: Sequence[str]) -> str | None:
+    """Return the known word most like ``word`` (case ignored), or None when none is close."""
+    folded = {name.casefold(): name for name in known}
+    found = difflib.get_close_matches(word.casefold(), list(folded), n=1, cutoff=0.5)
+    return folded[found[0]] if found else None
+
+
+class SettingsReader:
+    """Reads the settings of ``standard``; unknown keys are refused at once.
+
+    Every method raises :class:`SettingsError` for a value of the wrong kind. A boolean is not
+    a number, and a quantity is text with its unit.
+    """
+
+    def __init__(self, standard: str, settings: Mapping[str, Any], keys: Sequence[str]) -> None:
+        self._standard = standard
+        self._settings = settings
+        for key in settings:
+            if key not in keys:
+                self._refuse_key(key, keys)
+
+    def _refuse_key(self, key: str, keys: Sequence[str]) -> None:
+        close = nearest(key, keys)
+        raise SettingsError(
+            key=key,
+            found="an unknown setting",
+            expected=f"one of {self._standard}'s settings: {', '.join(keys)}",
+            fix=f'Did you mean "{close}"?' if close else "Remove it.",
+        )
+
+    def has(self, key: str) -> bool:
+        """Return whether ``key`` is given."""
+        return key in self._settings
+
+    def forbid(self, key: str, because: str) -> None:
+        """Refuse ``key`` where another setting leaves it without meaning."""
+        if self.has(key):
+            raise SettingsError(
+                key=key,
+                found=_shown(self._settings[key]),
+                expected=f"no such setting together with {because}",
+                fix="Remove one of the two.",
+            )
+
+    def choice(self, key: str, choices: Sequence[str], default: str) -> str:
+        """Return one of ``choices`` (case ignored), or ``default`` where not given."""
+        value = self._settings.get(key, default)
+        if isinstance(value, str):
+            for choice in choices:
+                if choice.casefold() == value.strip().casefold():
+                    return choice
+        close = nearest(value, choices) if isinstance(value, str) else None
+        raise SettingsError(
+            key=key,
+            found=_shown(value),
+            expected="one of " + ", ".join(f'"{choice}"' for choice in choices),
+            fix=f'Did you mean "{close}"?' if close else "",
+        )
+
+    def names(self, key: str) -> tuple[str, ...]:
+        """Return a list of texts, empty where not given; a single text is a list of one."""
+        value = self._settings.get(key, [])
+        items = [value] if isinstance(value, str) else value
+        if isinstance(items, (list, tuple)) and all(isinstance(item, str) for item in items):
+            return tuple(items)
+        raise SettingsError(
+            key=key, found=_shown(value), expected='a list of texts such as ["webs", "posts*"]'
+        )
+
+    def number(
+        self,
+        key: str,
+        default: float,
+        *,
+        at_least: float = -math.inf,
+        above: float = -math.inf,
+        at_most: float = math.inf,
+    ) -> float:
+        """Return a plain number within bounds, or ``default`` where not given."""
+        value = self._settings.get(key, default)
+        bounds = _bounds_text(at_least, above, at_most)
+        if isinstance(value, bool) or not isinstance(value, (int, float)):
+            raise SettingsError(key=key, found=_shown(value), expected=f"a number{bounds}")
+        number = float(value)
+        if not math.isfinite(number) or number < at_least or number <= above or number > at_most:
+            raise SettingsError(key=key, found=_shown(value), expected=f"a number{bounds}")
+        return number
+
+    def required_number(self, key: str, *, at_least: float) -> float:
+        """Return a plain number that must be given."""
+        if not self.has(key):
+            raise self._missing(key, f"a number{_bounds_text(at_least, -math.inf, math.inf)}")
+        return self.number(key, math.nan, at_least=at_least)
+
+    def quantity(self, key: str, kind: Kind) -> float | None:
+        """Return a positive quantity in SI units, or None where not given."""
+        if not self.has(key):
+            return None
+        value = self._settings[key]
+        try:
+            quantity = parse(value, kind, Units(), bare=False)
+        except QuantityError as error:
+            raise SettingsError(
+                key=key, found=error.found, expected=error.expected, fix=error.fix
+            ) from error
+        if quantity <= 0.0:
+            raise SettingsError(key=key, found=_shown(value), expected=f"a {kind} above zero")
+        return quantity
+
+    def required_quantity(self, key: str, kind: Kind) -> float:
+        """Return a positive quantity in SI units that must be given."""
+        found = self.quantity(key, kind)
+        if found is None:
+            raise self._missing(key, f'a {kind} such as "{EXAMPLES[kind]}"')
+        return found
+
+    def _missing(self, key: str, expected: str) -> SettingsError:
+        return SettingsError(
+            key=key,
+            found="nothing",
+            expected=expected,
+            fix=f"Add {key} to the option; {self._standard} has no usual value for it.",
+        )
+
+
+def _shown(value: object) -> str:
+    if isinstance(value, bool):
+        return str(value).lower()
+    return f'"{value}"' if isinstance(value, str) else str(value)
+
+
+def _bounds_text(at_least: float, above: float, at_most: float) -> str:
+    parts = []
+    if math.isfinite(at_least):
+        parts.append(f"not below {at_least:g}")
+    if math.isfinite(above):
+        parts.append(f"above {above:g}")
+    if math.isfinite(at_most):
+        parts.append(f"not above {at_most:g}")
+    return " " + " and ".join(parts) if parts else ""
