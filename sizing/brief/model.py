@@ -21,6 +21,7 @@ LoadDuration = Literal["permanent", "long", "medium", "short", "instantaneous"]
 State = Literal["strength", "serviceability"]
 Objective = Literal["mass", "cost", "carbon"]
 LengthRule = Literal["factor", "length"]
+DeflectionComponent = Literal["instantaneous", "final", "net final"]
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -87,6 +88,10 @@ class Group:
     plane bends it about its major axis. ``net_section_factor``: net over gross area at joints,
     used in tension. ``utilisation_cap``: greatest utilisation allowed. ``families`` and
     ``designations`` (patterns with * and ?) restrict the catalogue when not empty.
+
+    ``restrained_nodes``: nodes held out of plane, where the brief lists them; each member then
+    carries its own length between restraints (see :meth:`Brief.buckling_lengths`), and
+    ``out_of_plane`` is the greatest of them, as a length.
     """
 
     name: str
@@ -99,6 +104,7 @@ class Group:
     slenderness: SlendernessLimits | None = None
     families: tuple[str, ...] = ()
     designations: tuple[str, ...] = ()
+    restrained_nodes: tuple[int, ...] = ()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -106,6 +112,8 @@ class Member:
     """A two-force member from node ``start`` to node ``end`` (indices), ``length`` in m.
 
     ``name`` is its two node names, ``A0-A1``; ``mark`` is the short mark on the schedule.
+    ``out_of_plane``: buckling length in m between restrained nodes, where the group lists them;
+    None where the group's rule holds.
     """
 
     name: str
@@ -114,6 +122,7 @@ class Member:
     end: int
     group: int
     length: float
+    out_of_plane: float | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -122,6 +131,12 @@ class LoadCase:
 
     ``self_weight`` adds the weight of the picked sections, downwards. ``duration`` overrides
     the usual load duration of the kind.
+
+    What a combination rule needs to know: cases with the same ``action`` (its kind unless
+    given) are parts of one action, at full value together. Of the cases with the same
+    ``alternative_set`` only one acts at a time; empty text: none, the case acts with any
+    other; ``None``: the usual of its kind. ``may_be_absent``: a permanent load that is not
+    certain to be there (future services), left out where it would help.
     """
 
     name: str
@@ -129,6 +144,9 @@ class LoadCase:
     nodal: Mapping[int, tuple[float, ...]]
     self_weight: bool = False
     duration: LoadDuration | None = None
+    action: str | None = None
+    alternative_set: str | None = None
+    may_be_absent: bool = False
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -136,7 +154,9 @@ class Combination:
     """A factored sum of load cases; ``factors`` maps case index to factor (zeros left out).
 
     ``origin`` says where it comes from: written out in the brief, or the rule that made it.
-    ``duration`` is the shortest load duration of its cases.
+    ``duration`` is the shortest load duration of its cases. ``long_term`` maps case index to
+    the factor of its part that acts for so long that timber creeps under it (permanent actions
+    in full, variable ones times ψ2); empty for strength.
     """
 
     name: str
@@ -144,6 +164,7 @@ class Combination:
     factors: Mapping[int, float]
     duration: LoadDuration
     origin: str = "brief"
+    long_term: Mapping[int, float] = field(default_factory=dict)
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -154,6 +175,9 @@ class DeflectionLimit:
     ``combinations`` are indices of the combinations in which the limit holds (serviceability
     ones unless the brief names others). ``relative_to``: when given, the movement is taken
     relative to that node. ``limit_text`` is the limit as written, e.g. ``span/250``.
+    ``component``: the elastic movement, or the final one with creep (timber; the same for
+    materials that do not creep), or the final one less the precamber. ``precamber`` maps case
+    index to factor: the truss is built cambered by its elastic movement under these loads.
     """
 
     name: str
@@ -164,6 +188,8 @@ class DeflectionLimit:
     limit_text: str
     combinations: tuple[int, ...]
     relative_to: int | None = None
+    component: DeflectionComponent = "instantaneous"
+    precamber: Mapping[int, float] = field(default_factory=dict)
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -185,7 +211,10 @@ class Option:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Brief:
-    """Everything that was asked for, valid and in SI units."""
+    """Everything that was asked for, valid and in SI units.
+
+    ``cautions``: what the reader allowed but a checking engineer wants to know, in sentences.
+    """
 
     title: str
     source: SourceFile
@@ -200,6 +229,7 @@ class Brief:
     deflection_limits: tuple[DeflectionLimit, ...]
     options: tuple[Option, ...]
     notes: str = ""
+    cautions: tuple[str, ...] = ()
 
     @property
     def dimensions(self) -> int:
@@ -209,3 +239,10 @@ class Brief:
     def combinations_of(self, state: State) -> tuple[int, ...]:
         """Return the indices of the combinations of one state, in brief order."""
         return tuple(i for i, c in enumerate(self.combinations) if c.state == state)
+
+    def buckling_lengths(self, member: int) -> tuple[float, float]:
+        """Return the buckling lengths (in plane, out of plane) of a member in m."""
+        this = self.members[member]
+        group = self.groups[this.group]
+        out = group.out_of_plane.of(this.length) if this.out_of_plane is None else this.out_of_plane
+        return group.in_plane.of(this.length), out

@@ -12,6 +12,7 @@ from sizing.standards.settings import nearest
 STANDARDS: dict[str, str] = {
     "elastic": "sizing.standards.elastic:make_elastic",
     "EN 1993-1-1": "sizing.standards.en1993:make_en1993",
+    "EN 1995-1-1": "sizing.standards.en1995:make_en1995",
 }
 """Name of each standard and where its factory stands (module:function)."""
 
@@ -21,6 +22,10 @@ SPELLINGS: dict[str, tuple[str, Mapping[str, Any]]] = {
     "EN1993-1-1": ("EN 1993-1-1", {}),
     "Eurocode 3": ("EN 1993-1-1", {}),
     "EC3": ("EN 1993-1-1", {}),
+    "EN 1995-1-1:2004": ("EN 1995-1-1", {}),
+    "EN 1995": ("EN 1995-1-1", {}),
+    "Eurocode 5": ("EN 1995-1-1", {}),
+    "EC5": ("EN 1995-1-1", {}),
     "allowable stress": ("elastic", {}),
 }
 """Other spellings: the name they stand for and the settings that they imply."""

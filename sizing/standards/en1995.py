@@ -1,0 +1,353 @@
+"""EN 1995-1-1: solid timber (EN 338) and glued laminated timber (EN 14080) under axial force.
+
+Tension      N_t,Rd = kh · ft,0,d · A_net                 (6.1.2, 3.2(3), 3.3(3))
+Compression  N_c,Rd = min(kc,in, kc,out) · fc,0,d · A     (6.1.4, 6.3.2)
+with f_d = kmod f_k / γM                                  (2.4.1)
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
+from typing import Any
+
+import numpy as np
+
+from sizing.brief.model import LoadDuration
+from sizing.brief.sections import Catalogue
+from sizing.standards.conditions import (
+    Reasons,
+    Resistances,
+    distinct_members,
+    limit_slenderness,
+    take_members,
+    take_section,
+)
+from sizing.standards.contract import (
+    FloatArray,
+    Material,
+    MemberConditions,
+    ResistanceTable,
+    Sense,
+    SettingsError,
+    Step,
+)
+from sizing.standards.en1995_grades import EDITIONS_338, TimberGrade, grade_names, timber_grade
+from sizing.standards.en1995_strength import (
+    BETA_C,
+    GAMMA_M,
+    K_DEF,
+    design_value,
+    k_buckling,
+    k_c,
+    k_h,
+    k_mod,
+    lambda_rel,
+)
+from sizing.standards.settings import SettingsReader, nearest
+from sizing.standards.slenderness import slenderness_in_and_out
+from sizing.standards.timber_sections import (
+    Exclusions,
+    is_built_up,
+    over_durations,
+    product_names,
+    smaller_and_larger,
+)
+
+NAME = "EN 1995-1-1"
+EDITION = "2004 + A1:2008 + A2:2014, recommended values"
+KEYS = ("service_class", "gamma_M", "edition_338")
+USUAL_SERVICE_CLASS = 2
+
+TENSION, COMPRESSION, BUCKLING_IN, BUCKLING_OUT, SLENDER, NOT_COVERED = range(6)
+CLAUSES = (
+    "6.1.2 tension along the grain",
+    "6.1.4 compression along the grain",
+    "6.3.2 buckling in plane",
+    "6.3.2 buckling out of plane",
+    "limit on slenderness",
+    "not covered",
+)
+BUILT_UP = "built-up section: Annex C (slip of the fasteners between plies) is not covered"
+NOT_GLULAM = "the catalogue row is not glued laminated timber, the grade is"
+NOT_SOLID_TIMBER = "the catalogue row is glued laminated timber, the grade is solid timber"
+
+
+@dataclass(frozen=True, kw_only=True)
+class EN1995:
+    """A strength class in a service class; ``gamma_M`` is the partial factor of the material."""
+
+    grade: TimberGrade
+    service_class: int
+    service_class_assumed: bool
+    gamma_M: float  # noqa: N815 -- the symbol of the standard
+    material: Material
+    name: str = NAME
+    edition: str = EDITION
+
+    def resistances(
+        self,
+        catalogue: Catalogue,
+        members: MemberConditions,
+        durations: Sequence[LoadDuration],
+    ) -> ResistanceTable:
+        """Return the table of :class:`ResistanceTable`; the durations differ by kmod alone."""
+        distinct, inverse = distinct_members(members)
+        reasons = Reasons()
+        unit = self._at_unit_kmod(catalogue, distinct, reasons)
+        found = [self._scaled(unit, k_mod(self.service_class, d)) for d in durations]
+        return over_durations(found, inverse, durations, CLAUSES, reasons.texts())
+
+    def _at_unit_kmod(
+        self, catalogue: Catalogue, members: MemberConditions, reasons: Reasons
+    ) -> Resistances:
+        grade = self.grade
+        excluded = self._exclusions(catalogue, reasons)
+        lambda_in, lambda_out = slenderness_in_and_out(catalogue, members)
+        shape = lambda_in.shape
+        _, larger = smaller_and_larger(catalogue)
+        size = k_h(grade.product, grade.rho_k, larger)
+        tension = size * (grade.ft0k / self.gamma_M) * catalogue.area
+        k_in, k_out = self._k_c(lambda_in), self._k_c(lambda_out)
+        least = np.minimum(k_in, k_out)
+        axis = np.where(k_out < k_in, BUCKLING_OUT, BUCKLING_IN)
+        clause = np.where(least < 1.0, axis, COMPRESSION)
+        usable = np.broadcast_to(excluded.usable, shape)
+        found = Resistances(
+            tension=np.where(usable, tension * members.net_factor[:, None], 0.0),
+            compression=np.where(usable, least * (grade.fc0k / self.gamma_M) * catalogue.area, 0.0),
+            tension_clause=np.where(usable, TENSION, NOT_COVERED),
+            compression_clause=np.where(usable, clause, NOT_COVERED),
+            slenderness_in=lambda_in,
+            slenderness_out=lambda_out,
+            usable=usable,
+            notes=np.broadcast_to(excluded.note, shape),
+        )
+        greatest = np.fmax(lambda_in, lambda_out)
+        return limit_slenderness(found, greatest, members, reasons, SLENDER)
+
+    def _exclusions(self, catalogue: Catalogue, reasons: Reasons) -> Exclusions:
+        excluded = Exclusions(catalogue, reasons)
+        excluded.exclude(is_built_up(catalogue), BUILT_UP)
+        glulam = product_names(catalogue, "14080")
+        sawn = product_names(catalogue, "14081") | product_names(catalogue, "EN 336")
+        if self.grade.product == "glulam":
+            excluded.exclude(sawn & ~glulam, NOT_GLULAM)
+        else:
+            excluded.exclude(glulam & ~sawn, NOT_SOLID_TIMBER)
+        return excluded
+
+    def _k_c(self, slenderness: FloatArray) -> FloatArray:
+        relative = lambda_rel(slenderness, self.grade.fc0k, self.grade.E0_05)
+        return k_c(relative, BETA_C[self.grade.product])
+
+    def _scaled(self, unit: Resistances, factor: float) -> Resistances:
+        return replace(unit, tension=unit.tension * factor, compression=unit.compression * factor)
+
+    def working(
+        self,
+        catalogue: Catalogue,
+        section: int,
+        members: MemberConditions,
+        member: int,
+        duration: LoadDuration,
+        sense: Sense,
+    ) -> tuple[Step, ...]:
+        """Return the worked lines of one resistance; the last line is the resistance."""
+        one = take_section(catalogue, section)
+        condition = take_members(members, np.array([member], dtype=np.intp))
+        table = self.resistances(one, condition, (duration,))
+        reason = table.reasons[int(table.notes[0, 0])]
+        index = table.tension_clause if sense == "tension" else table.compression_clause
+        clause = table.clauses[int(index[0, 0, 0])]
+        values = table.tension if sense == "tension" else table.compression
+        if float(values[0, 0, 0]) == 0.0:
+            symbol = "N_t,Rd" if sense == "tension" else "N_c,Rd"
+            return (_step(symbol, "0", 0.0, "N", clause, reason),)
+        if sense == "tension":
+            return self._tension_steps(one, condition, duration, clause)
+        return self._compression_steps(one, table, duration, clause)
+
+    def _strength_steps(self, mark: str, f_k: float, duration: LoadDuration) -> list[Step]:
+        k = k_mod(self.service_class, duration)
+        f_d = design_value(k, f_k, self.gamma_M)
+        state = f"service class {self.service_class}, load duration {duration}"
+        return [
+            _step(f"f_{mark},0,k", self.grade.edition, f_k, "Pa", "grade", self.grade.name),
+            _step("k_mod", "Table 3.1", k, "-", "3.1.3", state),
+            _step("γ_M", "Table 2.3", self.gamma_M, "-", "2.4.1", self.grade.product),
+            _step(f"f_{mark},0,d", f"k_mod f_{mark},0,k / γ_M", f_d, "Pa", "2.4.1"),
+        ]
+
+    def _tension_steps(
+        self, one: Catalogue, members: MemberConditions, duration: LoadDuration, clause: str
+    ) -> tuple[Step, ...]:
+        area, net = float(one.area[0]), float(members.net_factor[0])
+        larger = smaller_and_larger(one)[1]
+        size = float(k_h(self.grade.product, self.grade.rho_k, larger)[0])
+        expression, size_clause = self._k_h_text()
+        steps = self._strength_steps("t", self.grade.ft0k, duration)
+        resistance = size * steps[-1].value * net * area
+        return (
+            _step("A", "catalogue", area, "m²", "section"),
+            *steps,
+            _step("h", "larger side", float(larger[0]), "m", "section"),
+            _step("k_h", expression, size, "-", size_clause, "size factor, not below 1"),
+            _step("k_net", "brief", net, "-", "6.1.2", "net over gross area at the joints"),
+            _step("N_t,Rd", "k_h f_t,0,d k_net A", resistance, "N", clause, "resistance"),
+        )
+
+    def _k_h_text(self) -> tuple[str, str]:
+        if self.grade.product == "glulam":
+            return "min((600 mm / h)^0.1, 1.1)", "3.3(3)"
+        return "min((150 mm / h)^0.2, 1.3)", "3.2(3)"
+
+    def _compression_steps(
+        self, one: Catalogue, table: ResistanceTable, duration: LoadDuration, clause: str
+    ) -> tuple[Step, ...]:
+        grade, beta = self.grade, BETA_C[self.grade.product]
+        area = float(one.area[0])
+        steps = [
+            _step("A", "catalogue", area, "m²", "section"),
+            *self._strength_steps("c", grade.fc0k, duration),
+            _step("E_0,05", grade.edition, grade.E0_05, "Pa", "grade"),
+            _step("β_c", "straightness of " + grade.product, beta, "-", "6.3.2(3)"),
+        ]
+        f_d = design_value(k_mod(self.service_class, duration), grade.fc0k, self.gamma_M)
+        factors = []
+        for mark, values in (("in", table.slenderness_in), ("out", table.slenderness_out)):
+            slenderness = values[0]
+            relative = lambda_rel(slenderness, grade.fc0k, grade.E0_05)
+            factor = float(k_c(relative, beta)[0])
+            factors.append(factor)
+            text = f"buckling {'in' if mark == 'in' else 'out of'} plane"
+            steps += [
+                _step(f"λ_{mark}", f"L_{mark} / i_{mark}", float(slenderness[0]), "-", text),
+                _step(
+                    f"λ_rel,{mark}",
+                    f"(λ_{mark} / π) √(f_c,0,k / E_0,05)",
+                    float(relative[0]),
+                    "-",
+                    "6.3.2(1)",
+                ),
+                _step(
+                    f"k_{mark}",
+                    f"0.5 (1 + β_c (λ_rel,{mark} − 0.3) + λ_rel,{mark}²)",
+                    float(k_buckling(relative, beta)[0]),
+                    "-",
+                    "6.3.2(3)",
+                ),
+                _step(
+                    f"k_c,{mark}",
+                    f"1 / (k_{mark} + √(k_{mark}² − λ_rel,{mark}²)), 1 for λ_rel ≤ 0.3",
+                    factor,
+                    "-",
+                    "6.3.2(3)",
+                ),
+            ]
+        resistance = min(factors) * f_d * area
+        expression = "min(k_c,in, k_c,out) f_c,0,d A"
+        steps.append(_step("N_c,Rd", expression, resistance, "N", clause, "resistance"))
+        return tuple(steps)
+
+    def basis(self) -> tuple[tuple[str, str], ...]:
+        """Return (what, value with source) rows for the basis of design."""
+        grade = self.grade
+        assumed = " (usual value, not given in the brief)" if self.service_class_assumed else ""
+        factors = ", ".join(
+            f"{duration} {k_mod(self.service_class, duration):g}" for duration in DURATIONS
+        )
+        return (
+            ("Standard", f"{self.name}: {self.edition}"),
+            ("Strength class", f"{grade.name}, {grade.product}, {grade.edition}"),
+            (
+                "Strength along the grain",
+                f"tension {grade.ft0k / 1e6:g} N/mm², compression {grade.fc0k / 1e6:g} N/mm²"
+                " (characteristic)",
+            ),
+            (
+                "Stiffness",
+                f"{grade.E0_mean / 1e6:g} N/mm² (mean, for forces and deflections), "
+                f"{grade.E0_05 / 1e6:g} N/mm² (5 %, for buckling)",
+            ),
+            ("Density", f"{grade.rho_mean:g} kg/m³ (mean)"),
+            ("Service class", f"{self.service_class}{assumed}"),
+            ("Load duration factor kmod", f"{factors} (Table 3.1)"),
+            ("Partial factor γM", f"{self.gamma_M:g} (Table 2.3 unless set)"),
+            ("Creep factor kdef", f"{self.material.creep:g} (Table 3.2)"),
+        )
+
+    def cautions(self) -> tuple[str, ...]:
+        """Return what this check leaves out, in plain sentences."""
+        lines = [
+            "Timber: values recommended by EN 1995-1-1 are used; a national annex may differ"
+            " (γM, kmod for the load durations of snow and wind, service class).",
+            "Timber: joints are not designed. Tension members count the net section factor of"
+            " their group and nothing else; dowelled joints commonly reach only about 60 % of"
+            " the member (common practice), so give that factor.",
+            "Timber: compression uses the gross section, with fasteners that fill their holes,"
+            " and straightness within the limits of EN 1995-1-1 section 10.",
+            "Timber: slip in joints, bearing across the grain, bending, splitting, fire,"
+            " durability and treatment are not checked.",
+        ]
+        if self.service_class_assumed:
+            lines.append(
+                f"Timber: service class {self.service_class} is assumed; outdoors exposed to rain"
+                " it is 3 and the strength is less."
+            )
+        return tuple(lines)
+
+
+DURATIONS: tuple[LoadDuration, ...] = ("permanent", "long", "medium", "short", "instantaneous")
+
+
+def _step(
+    symbol: str, expression: str, value: float, unit: str, clause: str, meaning: str = ""
+) -> Step:
+    return Step(
+        symbol=symbol, expression=expression, value=value, unit=unit, clause=clause, meaning=meaning
+    )
+
+
+def make_en1995(grade: str | None, settings: Mapping[str, Any]) -> EN1995:
+    """Return the standard for a strength class such as ``C24`` or ``GL24h``.
+
+    Settings: ``service_class`` 1, 2 (usual) or 3; ``gamma_M``, Table 2.3 unless given;
+    ``edition_338`` ``"2016"`` (usual) or ``"2009"``. Raises :class:`SettingsError`.
+    """
+    reader = SettingsReader(NAME, settings, KEYS)
+    edition = reader.choice("edition_338", tuple(EDITIONS_338), "2016")
+    strength_class = _strength_class(grade, edition)
+    service_class = reader.number("service_class", USUAL_SERVICE_CLASS)
+    if service_class not in K_DEF:
+        raise SettingsError(
+            key="service_class",
+            found=f"{service_class:g}",
+            expected="1 (heated indoors), 2 (covered outdoors) or 3 (exposed)",
+        )
+    return EN1995(
+        grade=strength_class,
+        service_class=int(service_class),
+        service_class_assumed=not reader.has("service_class"),
+        gamma_M=reader.number("gamma_M", GAMMA_M[strength_class.product], at_least=1.0),
+        material=Material(
+            name=strength_class.name,
+            E=strength_class.E0_mean,
+            density=strength_class.rho_mean,
+            creep=K_DEF[int(service_class)],
+        ),
+    )
+
+
+def _strength_class(grade: str | None, edition: str) -> TimberGrade:
+    names = grade_names(edition)
+    for name in names:
+        if grade is not None and name.casefold() == grade.strip().casefold():
+            return timber_grade(name, edition)
+    close = None if grade is None else nearest(grade, names)
+    raise SettingsError(
+        key="grade",
+        found="nothing" if grade is None else f'"{grade}"',
+        expected=f"a strength class of EN 338:{edition} or EN 14080:2013: {', '.join(names)}",
+        fix=f'Did you mean "{close}"?' if close else "",
+    )
