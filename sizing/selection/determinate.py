@@ -1,0 +1,204 @@
+"""The exact pick for statically determinate trusses: integer programs with rows added lazily.
+
+The linear relaxation collects the rows that matter; integer programs over them follow. Each
+answer is analysed exactly: a design that passes is the lightest, one that fails is cut off by the
+exact rows it breaks (or, where only rounding lets it through, by itself) and the next is sought.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy import sparse
+
+from sizing.selection.analysis import DesignAnalysis, Evaluation
+from sizing.selection.choices import Choices
+from sizing.selection.determinate_forces import DeterminateForces
+from sizing.selection.determinate_rows import (
+    DeflectionRows,
+    StrengthRows,
+    remove_too_weak,
+    strength_rows,
+)
+from sizing.selection.highs import LinearModel, LinearProgram, solve
+from sizing.selection.problem import SizingProblem
+from sizing.selection.watch import Watch
+
+FloatArray = NDArray[np.float64]
+IntArray = NDArray[np.intp]
+BoolArray = NDArray[np.bool_]
+
+VIOLATION = 1e-7
+"""Relative violation above which a row is added to the linear relaxation; integer answers are
+held to the exact analysis instead."""
+
+NEAR_LIMIT = 1e-8
+"""A failing design that breaks no row by more than this fails by rounding: only it is cut off."""
+
+ROWS_A_ROUND = 40
+"""Most strength rows (and as many deflection rows) added in one round."""
+
+ROUNDS = 60
+"""Most rounds of the linear relaxation; it only prepares, so ending early loses nothing."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ExactAnswer:
+    """What the integer programs found: the best checked design and a valid lower bound.
+
+    ``finished`` is False when time or a stop request ended the search. Without a design,
+    ``bound`` = inf says that none is feasible.
+    """
+
+    best: Evaluation | None
+    bound: float
+    finished: bool
+
+
+class RowPool:
+    """Rows in force, each once, with the way to find more at a point x."""
+
+    def __init__(self, problem: SizingProblem, forces: DeterminateForces, choices: Choices) -> None:
+        self.problem = problem
+        self.choices = choices
+        self.strength: StrengthRows = strength_rows(problem, forces, choices)
+        self.deflection = DeflectionRows(problem=problem, forces=forces, choices=choices)
+        self.rows: list[FloatArray] = []
+        self.bounds: list[float] = []
+        self._in_force: set[int] = set()
+
+    def add(self, coefficients: FloatArray, bound: float) -> None:
+        """Put coefficients · x <= bound in force."""
+        self.rows.append(coefficients)
+        self.bounds.append(bound)
+
+    def add_violated(self, x: FloatArray, tolerance: float) -> int:
+        """Put the rows most violated at x (v,) in force; return how many."""
+        problem, choices = self.problem, self.choices
+        before = len(self.rows)
+        w = choices.averages(problem.weight, x)
+        excess = self.strength.violation(choices, x, w)
+        for t in _worst(excess, tolerance):
+            if t not in self._in_force:
+                self._in_force.add(t)
+                self.add(*self.strength.row(t, choices, problem.weight))
+        if problem.deflection_limit.size:
+            y = choices.averages(1.0 / problem.stiffness, x)
+            u = self.deflection.movements(y, w)
+            limit = problem.deflection_limit
+            excess = (np.abs(u) - limit) / np.where(limit > 0.0, limit, np.abs(u).max() or 1.0)
+            for r in _worst(excess, tolerance):
+                self.add(*self.deflection.row(r, math.copysign(1.0, u[r]), y))
+        return len(self.rows) - before
+
+    def forbid(self, design: IntArray) -> None:
+        """Cut off one design: not all its choices together."""
+        taken = np.asarray(self.choices.section == design[self.choices.group], dtype=np.float64)
+        self.add(taken, float(len(design) - 1))
+
+    def model(self, scale: float, *, integer: bool) -> LinearModel:
+        """Build the model: cost over ``scale``, one choice for each group, all rows in force."""
+        return build_model(self.problem, self.choices, self.rows, self.bounds, scale, integer)
+
+
+def build_model(
+    problem: SizingProblem,
+    choices: Choices,
+    rows: list[FloatArray],
+    bounds: list[float],
+    scale: float,
+    integer: bool,
+) -> LinearModel:
+    """Build min cost · x / scale over one choice for each group and rows · x <= bounds."""
+    v, groups = choices.count, len(choices.slices)
+    matrix = choices.one_each()
+    if rows:
+        matrix = sparse.vstack([matrix, sparse.csr_array(np.array(rows))], format="csr")
+    return LinearModel(
+        cost=choices.cost(problem) / scale,
+        lower=np.zeros(v),
+        upper=np.ones(v),
+        matrix=matrix,
+        row_lower=np.concatenate([np.ones(groups), np.full(len(rows), -np.inf)]),
+        row_upper=np.concatenate([np.ones(groups), np.array(bounds)]),
+        integer=np.ones(v, dtype=bool) if integer else None,
+    )
+
+
+def cost_scale(problem: SizingProblem, mask: BoolArray) -> float:
+    """Return the unit in which the dearest design costs 1000: a size that solvers like."""
+    return float(np.where(mask, problem.cost, 0.0).max(axis=1).sum()) / 1000.0 or 1.0
+
+
+def solve_determinate(
+    problem: SizingProblem, forces: DeterminateForces, analysis: DesignAnalysis, watch: Watch
+) -> ExactAnswer:
+    """Find the cheapest feasible design of a determinate truss and prove it."""
+    mask = remove_too_weak(problem, forces, problem.allowed)
+    if not mask.any(axis=1).all():
+        return ExactAnswer(best=None, bound=math.inf, finished=True)
+    pool = RowPool(problem, forces, Choices.of(mask))
+    scale = cost_scale(problem, mask)
+    bound = _relax(pool, scale, watch)
+    if math.isinf(bound):
+        return ExactAnswer(best=None, bound=math.inf, finished=True)
+    return _integer_rounds(pool, scale, analysis, watch, bound)
+
+
+def _relax(pool: RowPool, scale: float, watch: Watch) -> float:
+    # Cutting planes on the linear relaxation; returns its bound (inf: nothing fits).
+    program = LinearProgram(pool.model(scale, integer=False))
+    bound = -math.inf
+    for _ in range(ROUNDS):
+        answer = program.run(seconds=watch.left)
+        if answer.status == "infeasible":
+            return math.inf
+        if answer.status != "optimal" or answer.values is None:
+            return bound
+        bound = answer.bound * scale
+        watch.report("bounding", None, bound, 0)
+        first = len(pool.rows)
+        if watch.stop() or pool.add_violated(answer.values, VIOLATION) == 0:
+            return bound
+        new = sparse.csr_array(np.array(pool.rows[first:]))
+        upper = np.array(pool.bounds[first:])
+        program.add_rows(new, np.full(upper.size, -np.inf), upper)
+    return bound
+
+
+def _integer_rounds(
+    pool: RowPool, scale: float, analysis: DesignAnalysis, watch: Watch, bound: float
+) -> ExactAnswer:
+    best: Evaluation | None = None
+    seen: set[bytes] = set()
+    while not watch.stop():
+        start = None if best is None else pool.choices.point(best.sections)
+        answer = solve(
+            pool.model(scale, integer=True), seconds=watch.left, start=start, stop=watch.asked
+        )
+        if answer.status == "infeasible":
+            return ExactAnswer(best=best, bound=math.inf, finished=True)
+        bound = max(bound, answer.bound * scale)
+        if answer.values is None:
+            break
+        found = analysis.evaluate(pool.choices.design(answer.values))
+        if found.feasible and (best is None or found.objective < best.objective):
+            best = found
+        watch.report("proving", best.objective if best else None, bound, analysis.count)
+        if answer.status != "optimal":
+            break
+        if found.feasible:
+            return ExactAnswer(best=best, bound=min(bound, found.objective), finished=True)
+        x = pool.choices.point(found.sections)
+        if x is None or pool.add_violated(x, NEAR_LIMIT) == 0 or found.sections.tobytes() in seen:
+            pool.forbid(found.sections)
+        seen.add(found.sections.tobytes())
+    return ExactAnswer(best=best, bound=bound, finished=False)
+
+
+def _worst(excess: FloatArray, tolerance: float) -> list[int]:
+    order = np.argsort(-excess, kind="stable")[:ROWS_A_ROUND]
+    return [int(t) for t in order if excess[t] > tolerance]
