@@ -27,17 +27,18 @@ def reduction_factor(slenderness: FloatArray, alpha: FloatArray) -> FloatArray:
     Φ = 0.5 [1 + α (λ̄ − 0.2) + λ̄²],  χ = 1 / (Φ + √(Φ² − λ̄²)) ≤ 1.  χ = 1 for λ̄ ≤ 0.2.
     """
     phi = buckling_phi(slenderness, alpha)
-    return np.minimum(1.0, 1.0 / (phi + np.sqrt(np.square(phi) - np.square(slenderness))))
+    root = np.sqrt(np.square(phi) - np.square(slenderness))
+    return np.asarray(np.minimum(1.0, 1.0 / (phi + root)))
 
 
 def buckling_phi(slenderness: FloatArray, alpha: FloatArray) -> FloatArray:
     """Return Φ = 0.5 [1 + α (λ̄ − 0.2) + λ̄²], 6.3.1.2(1)."""
-    return 0.5 * (1.0 + alpha * (slenderness - 0.2) + np.square(slenderness))
+    return np.asarray(0.5 * (1.0 + alpha * (slenderness - 0.2) + np.square(slenderness)))
 
 
 def reference_slenderness(E: float, fy: FloatArray) -> FloatArray:
     """Return λ₁ = π √(E / fy), 6.3.1.3."""
-    return math.pi * np.sqrt(E / fy)
+    return np.asarray(math.pi * np.sqrt(E / fy))
 
 
 def buckling_curves(

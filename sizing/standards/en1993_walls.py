@@ -28,7 +28,6 @@ class Dimensions:
     thickness: float
     flange: float
     root_radius: float
-    welded: bool = False
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
