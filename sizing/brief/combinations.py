@@ -1,0 +1,156 @@
+"""Combinations of a brief: those written out, each with its shortest load duration."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from typing import Any, get_args
+
+from sizing.brief.findings import Findings, KeyPath, Names, Quantities, quoted
+from sizing.brief.load_cases import CaseTable
+from sizing.brief.model import ActionKind, Combination, LoadCase, LoadDuration
+from sizing.brief.raw_tables import RawCombination, read_entry
+
+USUAL_DURATION: dict[ActionKind, LoadDuration] = {
+    "permanent": "permanent",
+    "imposed": "medium",
+    "imposed roof": "short",
+    "snow": "medium",
+    "wind": "short",
+    "temperature": "medium",
+    "settlement": "permanent",
+    "other": "medium",
+}
+"""EN 1995-1-1:2004 Table 2.2 (from memory): self-weight permanent, imposed floor load medium,
+wind short or instantaneous, snow medium or short by national choice (the longer is taken here,
+on the safe side); roof access short: EN 1991-1-1 category H, national choice (from memory).
+Temperature, settlement and other: common practice. A case's own ``duration`` overrides."""
+
+GREATEST_FACTOR = 10.0
+"""Partial and combination factors lie below 2; ten times a load case is a slip."""
+
+
+def read_combinations(
+    raw: Sequence[Any],
+    cases: CaseTable,
+    findings: Findings,
+    quantities: Quantities,
+    *,
+    complete: bool,
+) -> tuple[tuple[Combination, ...], Names]:
+    """Return all combinations in brief order, and their names.
+
+    ``complete`` is False when the list itself could not be read.
+    """
+    entries = [_entry(place, value, findings) for place, value in enumerate(raw, start=1)]
+    declared = [e.name for _, e, faulty in entries if e is not None and "name" not in faulty]
+    names = Names(
+        findings, "combination", declared, complete=complete and len(declared) == len(raw)
+    )
+    combinations: list[Combination] = []
+    faultless = complete
+    for path, entry, faulty in entries:
+        if entry is None:
+            faultless = False
+            continue
+        factors, good = _factors(path, entry, faulty, cases, findings, quantities)
+        faultless = faultless and good and not faulty
+        if entry.name in names.index:
+            findings.add(
+                (*path, "name"),
+                found=f"combination {quoted(entry.name)} for the second time",
+                expected="a name of its own for each combination",
+            )
+            continue
+        if "name" in faulty:
+            continue
+        names.index[entry.name] = len(combinations)
+        combinations.append(
+            Combination(
+                name=entry.name,
+                state=entry.state,
+                factors=factors,
+                duration=entry.duration or shortest_duration(cases.cases[q] for q in factors),
+            )
+        )
+    if faultless:
+        _check_all(combinations, cases.cases, findings)
+    return tuple(combinations), names
+
+
+def shortest_duration(cases: Iterable[LoadCase]) -> LoadDuration:
+    """Return the shortest load duration of the cases (EN 1995-1-1 3.1.3(2), from memory)."""
+    order: tuple[LoadDuration, ...] = get_args(LoadDuration)
+    durations = [case.duration or USUAL_DURATION[case.kind] for case in cases]
+    return max(durations, key=order.index, default="permanent")
+
+
+def _entry(
+    place: int, value: Any, findings: Findings
+) -> tuple[KeyPath, RawCombination | None, frozenset[str]]:
+    path = named_place("combinations", place, value)
+    entry, faulty = read_entry(RawCombination, value, path, findings, "a table [[combinations]]")
+    if entry is not None and "name" not in faulty and not entry.name.strip():
+        findings.add((*path, "name"), found="an empty name", expected="a name as text")
+        faulty |= {"name"}
+    return path, entry, faulty
+
+
+def named_place(table: str, place: int, value: Any) -> KeyPath:
+    """Return the key path of an entry of a list, by its name where it has one."""
+    name = value.get("name") if isinstance(value, dict) else None
+    if isinstance(name, str) and name.strip() and not name.isdigit():
+        return (table, f"[{name}]")
+    return (table, place)
+
+
+def _factors(
+    path: KeyPath,
+    entry: RawCombination,
+    faulty: frozenset[str],
+    cases: CaseTable,
+    findings: Findings,
+    quantities: Quantities,
+) -> tuple[dict[int, float], bool]:
+    """Return the factors that are not zero by case index, and whether all are good."""
+    factors: dict[int, float] = {}
+    good = "factors" not in faulty
+    for name, value in entry.factors.items():
+        place = (*path, "factors", name)
+        case = cases.names.resolve(place, name)
+        factor = quantities.read(place, value, "dimensionless")
+        if factor is not None and abs(factor) > GREATEST_FACTOR:
+            findings.add(
+                place, found=f"{factor:g}", expected=f"a factor of at most {GREATEST_FACTOR:g}"
+            )
+        if case is None or factor is None:
+            good = False
+        elif factor != 0.0:
+            factors[case] = factor
+    if good and not factors:
+        found = "only zero factors" if entry.factors else "no factors"
+        findings.add((*path, "factors"), found=found, expected="at least one factor that is not 0")
+    return factors, good
+
+
+def _check_all(
+    combinations: Sequence[Combination], cases: Sequence[LoadCase], findings: Findings
+) -> None:
+    if not any(c.state == "strength" for c in combinations):
+        findings.add(
+            ("combinations",),
+            found=f"no strength combination among {len(combinations)}"
+            if combinations
+            else "nothing",
+            expected='at least one table [[combinations]] with state = "strength"',
+        )
+    used = {q for c in combinations for q in c.factors}
+    for q, case in enumerate(cases):
+        if q not in used and combinations:
+            findings.caution(f"Load case {case.name} is in no combination.")
+    for c in combinations:
+        own = [cases[q].name for q in c.factors if cases[q].self_weight]
+        if len(own) > 1:
+            findings.caution(
+                f"Combination {c.name} counts self-weight {len(own)} times, in the load cases "
+                f"{', '.join(own)}."
+            )

@@ -1,0 +1,179 @@
+"""Collecting every mistake of one file, and saying each the same way.
+
+A *key path* is a tuple of names and positions (counted from 1) such as
+``("groups", "bottom-chord", "members", 3)``. A reader of another file format passes its own
+``place`` to turn key paths into sheet and cell.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Collection, Iterable, Sequence
+from difflib import get_close_matches
+
+from sizing.errors import InputError, Problem
+from sizing.units import Kind, QuantityError, UnitPair, parse
+
+KeyPath = tuple[str | int, ...]
+
+MOST_SUGGESTIONS = 200
+"""Looking up near names is slow in a hopeless file; nobody reads so many suggestions."""
+LONGEST_SHOWN = 60
+
+
+def key_path_text(path: KeyPath) -> str:
+    """Return ``groups.bottom-chord.members[3]``; the whole file for an empty path."""
+    text = ""
+    for part in path:
+        if isinstance(part, int):
+            text += f"[{part}]"
+        elif part.startswith("["):
+            text += part
+        else:
+            text += f".{part}" if text else part
+    return text or "the file"
+
+
+def shown(value: object) -> str:
+    """Return a value as a message shows it: text quoted, lists and tables by their size."""
+    if isinstance(value, bool):
+        return "true" if value else "false"
+    if isinstance(value, str):
+        return quoted(value)
+    if isinstance(value, dict):
+        return "an empty table" if not value else f"a table with {counted(len(value), 'key')}"
+    if isinstance(value, (list, tuple)):
+        return "an empty list" if not value else f"a list of {counted(len(value), 'value')}"
+    if value is None:
+        return "nothing"
+    text = str(value)
+    return text if len(text) <= LONGEST_SHOWN else text[: LONGEST_SHOWN - 3] + "..."
+
+
+def quoted(text: str) -> str:
+    """Return the text in quotation marks, cut when it is very long, line breaks made visible."""
+    flat = text.replace("\r", "").replace("\n", " / ")
+    return f'"{flat}"' if len(flat) <= LONGEST_SHOWN else f'"{flat[: LONGEST_SHOWN - 3]}..."'
+
+
+def counted(number: int, noun: str) -> str:
+    """Return ``1 node`` or ``3 nodes``."""
+    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"
+
+
+def listed(names: Collection[str], most: int = 12) -> str:
+    """Return the names in a row; a long row is cut and its whole length told."""
+    names = list(names)
+    if len(names) <= most:
+        return ", ".join(names)
+    return ", ".join(names[:most]) + f" ... ({len(names)} in all)"
+
+
+class Findings:
+    """The mistakes and cautions found so far in one file."""
+
+    def __init__(self, file: str, place: Callable[[KeyPath], str] = key_path_text) -> None:
+        self.file = file
+        self.problems: list[Problem] = []
+        self.cautions: list[str] = []
+        self._place = place
+        self._suggestions = 0
+
+    def add(self, path: KeyPath, *, found: str, expected: str, fix: str = "") -> None:
+        """Record one mistake."""
+        problem = Problem(
+            file=self.file, place=self._place(path), found=found, expected=expected, fix=fix
+        )
+        if problem not in self.problems:
+            self.problems.append(problem)
+
+    def caution(self, text: str) -> None:
+        """Record something that is allowed but that a checking engineer wants to know."""
+        if text not in self.cautions:
+            self.cautions.append(text)
+
+    def did_you_mean(self, name: str, known: Iterable[str]) -> str:
+        """Return a question that names the nearest known name; empty when none is near."""
+        self._suggestions += 1
+        if self._suggestions > MOST_SUGGESTIONS:
+            return ""
+        names = list(known)
+        folded = {candidate.casefold(): candidate for candidate in reversed(names)}
+        close = get_close_matches(name.casefold(), folded, n=1, cutoff=0.6)
+        return f"Did you mean {quoted(folded[close[0]])}?" if close else ""
+
+    def raise_if_any(self) -> None:
+        """Raise :class:`InputError` with every mistake, when there is one."""
+        if self.problems:
+            raise InputError(self.problems)
+
+
+class Quantities:
+    """Reads quantities in one brief's units and records what is wrong with them."""
+
+    def __init__(self, findings: Findings, units: UnitPair) -> None:
+        self._findings = findings
+        self._units = units
+
+    def read(self, path: KeyPath, value: object, kind: Kind) -> float | None:
+        """Return the quantity in SI units; None, with the mistake recorded, when it is none."""
+        try:
+            return parse(value, kind, self._units)
+        except QuantityError as error:
+            self._findings.add(path, found=error.found, expected=error.expected, fix=error.fix)
+            return None
+
+    def vector(self, path: KeyPath, values: Sequence[object], kind: Kind) -> tuple[float, ...]:
+        """Return all components in SI units; NaN stands for one whose mistake was recorded."""
+        read = [self.read((*path, i), v, kind) for i, v in enumerate(values, start=1)]
+        return tuple(math.nan if component is None else component for component in read)
+
+
+class Names:
+    """The declared names of one table, and which of them turned out usable.
+
+    A reference to a name that is declared but faulty is silent: its own mistake is reported
+    where it stands. ``complete`` is False when the table itself could not be read.
+    """
+
+    def __init__(
+        self, findings: Findings, noun: str, declared: Iterable[str], *, complete: bool = True
+    ) -> None:
+        self._findings = findings
+        self._noun = noun
+        self.declared = tuple(dict.fromkeys(declared))
+        self.complete = complete
+        self.index: dict[str, int] = {}
+
+    def resolve(self, path: KeyPath, name: str) -> int | None:
+        """Return the index of a name; None, with the mistake recorded, when it is unknown."""
+        if name in self.index:
+            return self.index[name]
+        if name not in self.declared and self.complete:
+            self._findings.add(
+                path,
+                found=f"the unknown {self._noun} {quoted(name)}",
+                expected=f"one of {listed(self.declared)}"
+                if self.declared
+                else f"a {self._noun} of this brief",
+                fix=self._findings.did_you_mean(name, self.declared),
+            )
+        return None
+
+    def resolve_all(self, path: KeyPath, names: Sequence[str]) -> list[int]:
+        """Return the indices of the names that are known; a name given twice is a mistake."""
+        found: list[int] = []
+        for place, name in enumerate(names, start=1):
+            index = self.resolve((*path, place), name)
+            if index is None:
+                continue
+            if index in found:
+                self._findings.add(
+                    (*path, place),
+                    found=f"{self._noun} {quoted(name)} for the second time",
+                    expected=f"each {self._noun} once",
+                    fix="Delete it.",
+                )
+                continue
+            found.append(index)
+        return found

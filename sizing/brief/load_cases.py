@@ -1,0 +1,120 @@
+"""Load cases of a brief: from the tables as written to records in SI units."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import Any
+
+from sizing.brief.findings import Findings, KeyPath, Names, Quantities, counted, quoted, shown
+from sizing.brief.model import LoadCase
+from sizing.brief.nodes_and_supports import NodeTable
+from sizing.brief.raw_tables import RawCase, read_entry
+
+GREATEST_FORCE = 1e9
+"""N. No truss node carries 1 GN: such a force is in another unit than the brief says."""
+
+GRAVITY_KINDS = ("permanent", "imposed", "imposed roof", "snow")
+
+
+@dataclass(frozen=True, kw_only=True)
+class CaseTable:
+    """The load cases and their names."""
+
+    cases: tuple[LoadCase, ...]
+    names: Names
+
+
+def read_cases(
+    raw: dict[str, Any],
+    nodes: NodeTable,
+    findings: Findings,
+    quantities: Quantities,
+    *,
+    present: bool,
+) -> CaseTable:
+    """Return the load cases in the order of the brief."""
+    names = Names(findings, "load case", raw, complete=present)
+    before = len(findings.problems)
+    if present and not raw:
+        findings.add(("cases",), found="an empty table", expected="at least one load case")
+    cases: list[LoadCase] = []
+    for name, value in raw.items():
+        path: KeyPath = ("cases", name)
+        entry, faulty = read_entry(
+            RawCase, value, path, findings, 'a table such as { kind = "snow", nodal = { ... } }'
+        )
+        if entry is None:
+            continue
+        nodal = _read_nodal(entry, (*path, "nodal"), nodes, findings, quantities)
+        if not entry.nodal and not entry.self_weight and not faulty & {"nodal", "self_weight"}:
+            findings.add(
+                path,
+                found="a load case without loads",
+                expected="nodal = { ... } or self_weight = true",
+            )
+        names.index[name] = len(cases)
+        cases.append(
+            LoadCase(
+                name=name,
+                kind=entry.kind,
+                nodal=nodal,
+                self_weight=entry.self_weight,
+                duration=entry.duration,
+            )
+        )
+    if present and len(findings.problems) == before:
+        _check_cases(cases, findings)
+    return CaseTable(cases=tuple(cases), names=names)
+
+
+def _read_nodal(
+    entry: RawCase, path: KeyPath, nodes: NodeTable, findings: Findings, quantities: Quantities
+) -> dict[int, tuple[float, ...]]:
+    nodal: dict[int, tuple[float, ...]] = {}
+    for name, value in entry.nodal.items():
+        place = (*path, name)
+        node = nodes.names.resolve(place, name)
+        wanted = nodes.dimensions
+        if not isinstance(value, list) or (wanted and len(value) != wanted):
+            what = f"{wanted or 2} force components"
+            example = [0.0, 0.0, -9.6][-(wanted or 2) :]
+            found = counted(len(value), "component") if isinstance(value, list) else shown(value)
+            findings.add(place, found=found, expected=f"{what}, such as {example}")
+            continue
+        force = quantities.vector(place, value, "force")
+        for component, f in enumerate(force, start=1):
+            if abs(f) > GREATEST_FORCE:
+                findings.add(
+                    (*place, component),
+                    found=f"a force of {f / 1e6:.6g} MN",
+                    expected="at most 1000 MN",
+                    fix="Check the unit of force.",
+                )
+        if node is not None and all(math.isfinite(f) for f in force):
+            nodal[node] = force
+    return nodal
+
+
+def _check_cases(cases: list[LoadCase], findings: Findings) -> None:
+    """Record a brief without any load but self-weight; caution against likely slips."""
+    if not any(any(force) for case in cases for force in case.nodal.values()):
+        findings.add(
+            ("cases",),
+            found="no load other than self-weight",
+            expected="at least one nodal force that is not zero",
+        )
+        return
+    for case in cases:
+        total = sum(force[-1] for force in case.nodal.values())
+        if case.nodal and not any(any(force) for force in case.nodal.values()):
+            findings.caution(f"Load case {case.name}: all its nodal forces are zero.")
+        if case.kind in GRAVITY_KINDS and total > 0.0:
+            findings.caution(
+                f"Load case {case.name} ({case.kind}) acts upwards in all; forces count positive "
+                "along the axes, so a load that acts downwards is negative."
+            )
+        if case.self_weight and case.kind != "permanent":
+            findings.caution(
+                f"Load case {case.name}: self-weight stands in a case of kind {quoted(case.kind)}."
+            )

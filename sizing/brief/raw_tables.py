@@ -1,0 +1,279 @@
+"""The tables of a brief as written: which keys exist, of what type, and what each one holds.
+
+Every field's description says what belongs there; messages quote it. Quantities stay as
+written here (``Any``); :mod:`sizing.units` reads them later. All fields have a default, so
+that an entry with one faulty key still gives the others; ``REQUIRED`` names what may not be
+missing.
+"""
+
+from __future__ import annotations
+
+import copy
+from typing import Any, ClassVar, Literal, TypeVar, get_args
+
+from pydantic import BaseModel, ConfigDict, Field, ValidationError
+
+from sizing.brief.findings import Findings, KeyPath, listed, quoted, shown
+from sizing.brief.model import ActionKind, LoadDuration, Objective, State
+
+Held = Literal["x", "y", "z", "X", "Y", "Z"]
+
+
+class RawTable(BaseModel):
+    """A table of the brief; unknown keys and wrong types are mistakes."""
+
+    model_config = ConfigDict(extra="forbid", strict=True)
+    REQUIRED: ClassVar[tuple[str, ...]] = ()
+
+
+class RawBrief(RawTable):
+    """The top level."""
+
+    REQUIRED = ("units", "nodes", "supports", "groups", "cases", "options")
+    title: str = Field("", description='a title, such as "Roof truss R1"')
+    notes: str = Field("", description="notes as text")
+    units: dict[str, Any] = Field({}, description='{ force = "kN", length = "m" }')
+    minimise: Objective = Field("mass", description='"mass", "cost" or "carbon"')
+    nodes: dict[str, Any] = Field({}, description="a table of nodes, such as A0 = [0.0, 0.0]")
+    supports: dict[str, Any] = Field(
+        {}, description='a table of supports, such as A0 = { held = ["x", "y"] }'
+    )
+    groups: dict[str, Any] = Field({}, description="tables [groups.NAME], one for each group")
+    cases: dict[str, Any] = Field({}, description="tables [cases.NAME], one for each load case")
+    combinations: list[Any] = Field([], description="tables [[combinations]]")
+    deflection_limits: list[Any] = Field([], description="tables [[deflection_limits]]")
+    options: dict[str, Any] = Field({}, description="tables [options.NAME], one for each option")
+
+
+class RawUnits(RawTable):
+    """``units``."""
+
+    REQUIRED = ("force", "length")
+    force: Literal["N", "kN", "MN", "lbf", "kip"] = Field(
+        "kN", description='"N", "kN", "MN", "lbf" or "kip"'
+    )
+    length: Literal["mm", "cm", "m", "in", "ft"] = Field(
+        "m", description='"mm", "cm", "m", "in" or "ft"'
+    )
+
+
+class RawSupport(RawTable):
+    """One support."""
+
+    REQUIRED = ("held",)
+    held: list[Held] = Field([], description='directions held, such as ["x", "y"]')
+
+
+class RawSlenderness(RawTable):
+    """``slenderness_limits`` of a group or an option."""
+
+    compression: Any = Field(None, description="a slenderness L/i, such as 180")
+    tension: Any = Field(None, description="a slenderness L/i, such as 300")
+
+
+class RawGroup(RawTable):
+    """One group."""
+
+    REQUIRED = ("members",)
+    members: list[str] = Field(
+        [], description='members named by their two nodes, such as ["A0-A1", "A1-A2"]'
+    )
+    buckling_length: Any = None
+    restrained_nodes: list[str] = Field(
+        [], description='nodes held out of plane, such as ["A0", "A3"]'
+    )
+    unrestrained_ends: dict[str, Any] = Field(
+        {}, description="free chain ends with their factor, such as { A8 = 2.0 }"
+    )
+    continues_in: list[str] = Field([], description="groups that carry the same chord on, by name")
+    section_depth: Literal["in plane", "out of plane"] = Field(
+        "in plane", description='"in plane" or "out of plane"'
+    )
+    net_section_factor: Any = 1.0
+    utilisation_cap: Any = 1.0
+    slenderness_limits: dict[str, Any] | None = Field(
+        None, description="{ compression = 180, tension = 300 }"
+    )
+    families: list[str] = Field([], description='section families, such as ["SHS"]')
+    sections: list[str] = Field(
+        [], description='designations or patterns with * and ?, such as ["SHS 100*"]'
+    )
+
+
+class RawCase(RawTable):
+    """One load case."""
+
+    REQUIRED = ("kind",)
+    kind: ActionKind = Field("other", description=f"one of {', '.join(get_args(ActionKind))}")
+    nodal: dict[str, Any] = Field({}, description="forces at nodes, such as { B1 = [0, -9.6] }")
+    self_weight: bool = Field(False, description="true or false")
+    duration: LoadDuration | None = Field(
+        None, description=f"one of {', '.join(get_args(LoadDuration))}"
+    )
+
+
+class RawCombination(RawTable):
+    """One combination."""
+
+    REQUIRED = ("name", "state", "factors")
+    name: str = Field("", description="a name as text")
+    state: State = Field("strength", description='"strength" or "serviceability"')
+    factors: dict[str, Any] = Field(
+        {}, description="factors by load case, such as { permanent = 1.35, snow = 1.5 }"
+    )
+    duration: LoadDuration | None = Field(
+        None, description=f"one of {', '.join(get_args(LoadDuration))}"
+    )
+
+
+class RawLimit(RawTable):
+    """One deflection limit."""
+
+    REQUIRED = ("name", "nodes", "limit")
+    name: str = Field("", description="a name as text")
+    nodes: Any = None
+    direction: Any = None
+    limit: Any = None
+    span: Any = None
+    combinations: Any = None
+    relative_to: str | None = Field(None, description="the name of a node")
+
+
+class RawOption(RawTable):
+    """One option; every further key belongs to the standard and passes untouched."""
+
+    model_config = ConfigDict(extra="allow", strict=True)
+    REQUIRED = ("standard", "catalogue")
+    standard: str = Field("", description='the name of a standard, such as "EN 1993-1-1"')
+    grade: str | None = Field(None, description='a grade as text, such as "S355"')
+    catalogue: str = Field("", description="a shipped catalogue's name or a file path")
+    slenderness_limits: dict[str, Any] | None = Field(
+        None, description="{ compression = 180, tension = 300 }"
+    )
+    connection_allowance: Any = 0.0
+
+
+Table = TypeVar("Table", bound=RawTable)
+
+DESCRIBED_HERE: dict[str, str] = {
+    "nodes": 'a list of nodes, such as ["A4"], or "all"',
+    "limit": 'a length, such as "25 mm", or a part of the span, such as "span/250"',
+}
+"""What belongs in keys that may hold more than one type, for the message when they are missing."""
+
+OTHER_WORDS = {
+    "dead": "permanent",
+    "live": "imposed",
+    "variable": "imposed",
+    "imposed_roof": "imposed roof",
+    "roof": "imposed roof",
+    "medium-term": "medium",
+    "short-term": "short",
+    "long-term": "long",
+    "uls": "strength",
+    "sls": "serviceability",
+    "ultimate": "strength",
+    "weight": "mass",
+    "co2": "carbon",
+    "kips": "kip",
+    "lb": "lbf",
+    "inch": "in",
+    "feet": "ft",
+    "foot": "ft",
+    "metre": "m",
+}
+"""Other words of the trade for the words of the brief, for the question "did you mean"."""
+
+
+def read_entry(
+    model: type[Table], value: object, path: KeyPath, findings: Findings, what: str
+) -> tuple[Table | None, frozenset[str]]:
+    """Return the entry's good keys as a record, and the names of its faulty or missing keys.
+
+    Every mistake goes to ``findings``. None when ``value`` is not a table at all.
+    """
+    if not isinstance(value, dict):
+        findings.add(path, found=shown(value), expected=what)
+        return None, frozenset()
+    faulty = set()
+    for key in model.REQUIRED:
+        if key not in value:
+            faulty.add(key)
+            _add_missing(model, value, (*path, key), key, findings)
+    try:
+        return model.model_validate(value), frozenset(faulty)
+    except ValidationError as error:
+        good = copy.deepcopy(value)
+        for mistake in reversed(error.errors(include_url=False)):
+            faulty.add(str(mistake["loc"][0]))
+            _remove(good, mistake["loc"])
+        for mistake in error.errors(include_url=False):
+            _add_mistake(model, value, mistake, path, findings)
+    return model.model_validate(good), frozenset(faulty)
+
+
+def _remove(good: dict[str, Any], location: tuple[str | int, ...]) -> None:
+    """Take the faulty value out: an item of a list alone, otherwise the whole key."""
+    key = location[0]
+    if len(location) > 1 and isinstance(location[1], int) and isinstance(good.get(str(key)), list):
+        del good[str(key)][location[1]]
+    else:
+        good.pop(str(key), None)
+
+
+def _add_missing(
+    model: type[RawTable],
+    value: dict[str, Any],
+    path: KeyPath,
+    key: str,
+    findings: Findings,
+) -> None:
+    description = model.model_fields[key].description or DESCRIBED_HERE[key]
+    strangers = [k for k in value if k not in model.model_fields]
+    near = findings.did_you_mean(key, strangers)
+    fix = f"Rename the key {near[len('Did you mean ') : -1]} to {quoted(key)}." if near else ""
+    findings.add(path, found="nothing", expected=description, fix=fix)
+
+
+def _add_mistake(
+    model: type[RawTable],
+    value: dict[str, Any],
+    mistake: Any,
+    path: KeyPath,
+    findings: Findings,
+) -> None:
+    location: tuple[str | int, ...] = mistake["loc"]
+    place = (*path, *(p + 1 if isinstance(p, int) else p for p in location))
+    key, given = str(location[0]), mistake["input"]
+    if mistake["type"] == "extra_forbidden":
+        _add_unknown_key(model, value, place, key, findings)
+        return
+    field = model.model_fields[key]
+    fix = ""
+    if mistake["type"] == "literal_error" and isinstance(given, str):
+        words = str(mistake["ctx"]["expected"])
+        known = [w.strip("'") for w in words.replace(" or ", ", ").split(", ")]
+        other = OTHER_WORDS.get(given.casefold())
+        fix = (
+            f"Did you mean {quoted(other)}?"
+            if other in known
+            else findings.did_you_mean(given, known)
+        )
+    findings.add(place, found=shown(given), expected=str(field.description), fix=fix)
+
+
+def _add_unknown_key(
+    model: type[RawTable],
+    value: dict[str, Any],
+    place: KeyPath,
+    key: str,
+    findings: Findings,
+) -> None:
+    known = list(model.model_fields)
+    missing = [name for name in known if name not in value]
+    fix = findings.did_you_mean(key, missing) or findings.did_you_mean(key, known)
+    if key in RawBrief.model_fields and model is not RawBrief:
+        fix = f"A key of the whole brief stands before the first table: move {key} there."
+    findings.add(
+        place, found=f"the unknown key {quoted(key)}", expected=f"one of {listed(known)}", fix=fix
+    )
