@@ -28,6 +28,15 @@ class Catalogue:
     ``width`` the other, ``thickness`` the wall, web or leg, ``flange`` the flange thickness,
     ``root_radius`` the root radius. ``surface`` is m² of outer surface per m.
     ``price`` is per m in the user's currency, NaN where not given.
+
+    ``mass`` is kg per m, and NaN in a timber catalogue whose header says ``density = from
+    grade``: the mass is then area × density of the grade (``Standard.material.density``), which
+    the formulation puts in. ``plies`` counts the boards side by side across ``width`` (1 for
+    every section in one piece; empty means 1 throughout). A built-up row states ``width`` as the
+    overall width, but second moments as if the boards slipped freely on one another: what their
+    nails or bolts add is for the standard to say.
+
+    ``remarks`` says, in sentences, what was detected, assumed or found odd while reading.
     """
 
     name: str
@@ -49,6 +58,7 @@ class Catalogue:
     root_radius: FloatArray
     surface: FloatArray
     price: FloatArray
+    plies: tuple[int, ...] = ()
     remarks: tuple[str, ...] = ()
 
     def __len__(self) -> int:

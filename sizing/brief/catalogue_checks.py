@@ -1,0 +1,546 @@
+"""Do the numbers of a row agree with one another? Unit slips and typing errors come to light.
+
+Published tables print three figures, which alone makes properties differ by up to 0.5 % (EN
+10210-2, EN 10219-2 and EN 10056-1 tables against the formulas of their Annex A: 0.44 % at most;
+tubes of ASTM A53: 3.3 %). So every comparison first grants the rounding of the printed figures,
+keeps quiet up to a small deviation, remarks on a larger one and refuses what no table explains.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+from sizing.brief import section_geometry as geometry
+from sizing.brief.catalogue_rows import Entry, Findings, place_of
+
+QUIET = 0.01
+"""Relative deviation, beyond rounding, that is not worth a word: twice that of published tables."""
+
+REFUSED = 0.03
+"""Relative deviation of mass against area, and of i against sqrt(I/A), that is an error.
+
+Within it lie other steel densities in use (7800 to 8000 kg/m³) and rounded walls; a slip of
+neighbouring rows, of hot for cold (5 %) or of a unit lies beyond it.
+"""
+
+SHAPE_REFUSED = 0.06
+"""Relative deviation of the area from the shape's own formula that is an error.
+
+Corner radii, which tables leave out, move the area by up to 3 % outside the range of the
+formulas tried here (US tubes with three-wall corners).
+"""
+
+INERTIA_REFUSED = 0.10
+"""The same for second moments, which feel a corner about twice as much."""
+
+LEAST_POLAR = 1.0 / (2.0 * math.pi)
+"""Least (I major + I minor)/A² of any shape: a solid disc has it; no shape has less."""
+
+GREATEST_POLAR = 50.0
+"""Greatest (I major + I minor)/A² met: a tube of D/t = 100 has 8."""
+
+TIMBER_DENSITIES = (250.0, 1300.0)
+"""kg/m³, lightest softwood to heaviest hardwood class with a margin (EN 338: 290 to 1080)."""
+
+CAUSE_MARGIN = 0.05
+"""Relative distance within which a ratio is taken as the sign of a known slip."""
+
+AREA_CAUSES = {
+    100.0: "mm2 given as cm2", 0.01: "cm2 given as mm2", 645.16: "mm2 given as in2",
+    6.4516: "cm2 given as in2", 1 / 6.4516: "in2 given as cm2", 1 / 645.16: "in2 given as mm2",
+    10.0: "a figure with the decimal mark one place too far right",
+    0.1: "a figure with the decimal mark one place too far left",
+}  # fmt: skip
+INERTIA_CAUSES = {
+    1e4: "mm4 given as cm4", 1e-4: "cm4 given as mm4", 416231.4: "mm4 given as in4",
+    41.62314: "cm4 given as in4", 1 / 41.62314: "in4 given as cm4",
+    10.0: "a figure with the decimal mark one place too far right",
+    0.1: "a figure with the decimal mark one place too far left",
+}  # fmt: skip
+LENGTH_CAUSES = {
+    10.0: "mm given as cm", 0.1: "cm given as mm",
+    25.4: "mm given as in", 1 / 25.4: "in given as mm",
+}  # fmt: skip
+MASS_CAUSES = {
+    1.488164: "kg/m given as lb/ft", 1 / 1.488164: "lb/ft given as kg/m",
+    9.80665: "N/m given as kg/m", 0.01: "kN/m given as kg/m", 1000.0: "g/m given as kg/m",
+}  # fmt: skip
+
+
+def likely_cause(ratio: float, causes: dict[float, str]) -> str:
+    """Return the slip that explains found/expected = ``ratio``, empty when none does."""
+    nearest = min(causes, key=lambda known: abs(math.log(ratio / known)))
+    return causes[nearest] if abs(ratio / nearest - 1.0) <= CAUSE_MARGIN else ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Checked:
+    """A row with its second moments settled (m⁴) and the density its mass was held against."""
+
+    entry: Entry
+    area: float
+    i_major: float
+    i_minor: float
+    i_least: float
+
+
+def check_rows(rows: Sequence[Checked], density: float | str | None, findings: Findings) -> None:
+    """Hold every row against itself; problems and remarks go to ``findings``."""
+    suspects = _check_masses(rows, density, findings)
+    deviations: dict[str, list[tuple[float, Entry]]] = {}
+    for row in rows:
+        entry = row.entry
+        if not _check_order(row, findings):
+            continue
+        for axis in ("major", "minor", "least"):
+            _check_radius(row, axis, findings, deviations)
+        if entry.line in suspects:
+            continue
+        if not _check_extent(row, findings):
+            continue
+        if not _check_shape(row, findings, deviations):
+            continue
+        _check_polar(row, findings)
+    for what, found in deviations.items():
+        greatest, entry = max(found, key=lambda item: abs(item[0]))
+        findings.remarks.append(
+            f"{what} in {_rows(len(found))}; greatest {100 * greatest:+.1f} % in "
+            f"{place_of(entry.line, entry.designation)}."
+        )
+
+
+def _rows(count: int) -> str:
+    return "1 row" if count == 1 else f"{count} rows"
+
+
+def _has_thin_us_wall(entry: Entry) -> bool:
+    """ASTM A500 and A53 tables print the mass of the nominal wall, the area of 0.93 of it."""
+    product = entry.product.upper().replace(" ", "")
+    if product:
+        return product.startswith(("ASTMA500", "ASTMA53", "A500", "A53"))
+    return entry.designation.upper().startswith(("HSS", "PIPE"))
+
+
+def _outside(value: float, low: float, high: float) -> float:
+    """Return how far a value lies outside a range, relative to the nearer end (0 inside)."""
+    if value < low:
+        return value / low - 1.0
+    return value / high - 1.0 if value > high else 0.0
+
+
+def _beyond(deviation: float, rounding: float) -> float:
+    """Take the rounding of the printed figures off a deviation, towards zero."""
+    return math.copysign(max(0.0, abs(deviation) - rounding), deviation)
+
+
+def _check_masses(
+    rows: Sequence[Checked], density: float | str | None, findings: Findings
+) -> set[int]:
+    """Compare mass with area × density; return the lines that were refused."""
+    if isinstance(density, str):
+        return set()
+    refused: list[tuple[Checked, float, float]] = []
+    small: list[tuple[float, Entry]] = []
+    judged = 0
+    for row in rows:
+        mass = row.entry.value("mass")
+        if mass is None:
+            continue
+        judged += 1
+        ratio = mass / row.area
+        unstated = density is None and row.entry.family == "rectangle"
+        if unstated and TIMBER_DENSITIES[0] <= ratio <= TIMBER_DENSITIES[1]:
+            continue
+        low = density if density is not None else geometry.STEEL_DENSITY
+        high = low / geometry.US_WALL_FACTOR if _has_thin_us_wall(row.entry) else low
+        rounding = row.entry.rounding("mass") + row.entry.rounding("area")
+        deviation = _beyond(_outside(ratio, low, high), rounding)
+        if abs(deviation) > REFUSED:
+            refused.append((row, ratio, low))
+        elif abs(deviation) > QUIET:
+            small.append((deviation, row.entry))
+    if small:
+        greatest, entry = max(small, key=lambda item: abs(item[0]))
+        findings.remarks.append(
+            f"Mass differs from area × density by more than 1 % in {_rows(len(small))}; greatest "
+            f"{100 * greatest:+.1f} % in {place_of(entry.line, entry.designation)}."
+        )
+    ratios = [ratio for _, ratio, _ in refused]
+    common = judged > 1 and len(refused) == judged and max(ratios) / min(ratios) < 1.0 + REFUSED
+    if common:
+        _refuse_common_mass(refused, findings)
+    else:
+        for row, ratio, expected in refused:
+            _refuse_mass(row, ratio, expected, findings)
+    return {row.entry.line for row, _, _ in refused}
+
+
+def _mass_cause(ratio: float) -> str:
+    """Return the likely slip behind mass/(area × density) = ``ratio``."""
+    cause = likely_cause(1.0 / ratio, AREA_CAUSES)
+    if cause and "decimal" not in cause:
+        return f"The area looks like {cause}."
+    by_mass = likely_cause(ratio, MASS_CAUSES)
+    if by_mass:
+        return f"The mass looks like {by_mass}."
+    if cause:
+        return "A decimal mark has slipped by one place in mass or area."
+    return ""
+
+
+def _refuse_common_mass(refused: list[tuple[Checked, float, float]], findings: Findings) -> None:
+    row, _, expected = refused[0]
+    typical = sorted(ratio for _, ratio, _ in refused)[len(refused) // 2]
+    cause = _mass_cause(typical / expected)
+    advice = (
+        f"{cause} Correct the unit in the column head."
+        if cause
+        else f"If the material is not steel, write: # density = {typical:.0f} kg/m3"
+    )
+    findings.problem(
+        place=f"every row ({place_of(row.entry.line, row.entry.designation)} first), "
+        f"columns {findings.head('area')!r} and {findings.head('mass')!r}",
+        found=f"mass over area of {typical:.4g} kg/m3",
+        expected=f"a density of {expected:.0f} kg/m3",
+        fix=advice,
+    )
+
+
+def _refuse_mass(row: Checked, ratio: float, expected: float, findings: Findings) -> None:
+    mass = row.entry.value("mass") or 0.0
+    findings.in_row(
+        row.entry,
+        "mass",
+        found=f"{mass:.4g} kg/m with an area of {row.area * 1e4:.4g} cm2 ({ratio:.4g} kg/m3)",
+        expected=f"about {row.area * expected:.4g} kg/m (area × {expected:.0f} kg/m3)",
+        fix=_mass_cause(ratio / expected) or "Compare area and mass with the printed table.",
+        kind="mass against area",
+    )
+
+
+def _check_order(row: Checked, findings: Findings) -> bool:
+    """Require minor <= major and least <= minor, within rounding."""
+    entry, good = row.entry, True
+    pairs = (
+        ("minor", row.i_minor, "major", row.i_major),
+        ("least", row.i_least, "minor", row.i_minor),
+    )
+    for small, i_small, great, i_great in pairs:
+        rounding = _axis_rounding(entry, small) + _axis_rounding(entry, great)
+        if i_small <= i_great * (1.0 + QUIET / 2.0 + rounding):
+            continue
+        good = False
+        key = _axis_key(entry, small)
+        findings.in_row(
+            entry,
+            key,
+            found=f"a {small} second moment of {i_small * 1e8:.4g} cm4, greater than the {great} "
+            f"one of {i_great * 1e8:.4g} cm4",
+            expected=f"{small} not above {great}",
+            fix="Swap the columns, or name them major and minor if the axis letters mean otherwise."
+            if small == "minor"
+            else "The least axis of an angle is its v-v axis, not u-u.",
+            kind="order",
+        )
+    return good
+
+
+def _axis_key(entry: Entry, axis: str) -> str:
+    """Return the key under which the row states its second moment about an axis."""
+    for key in (f"I {axis}", f"i {axis}", "I", "i"):
+        if key in entry.numbers:
+            return key
+    return f"I {axis}"
+
+
+def _axis_rounding(entry: Entry, axis: str) -> float:
+    key = _axis_key(entry, axis)
+    if key not in entry.numbers:
+        return 0.0
+    rounding = entry.rounding(key)
+    return 2.0 * rounding + entry.rounding("area") if key.startswith("i") else rounding
+
+
+def _check_radius(
+    row: Checked, axis: str, findings: Findings, deviations: dict[str, list[tuple[float, Entry]]]
+) -> None:
+    """Compare a stated radius of gyration with sqrt(I/A) where both are given."""
+    entry = row.entry
+    i_key, r_key = _stated(entry, "I", axis), _stated(entry, "i", axis)
+    if i_key is None or r_key is None or (axis != "major" and r_key == "i"):
+        return
+    stated = entry.numbers[r_key].value
+    formed = math.sqrt(entry.numbers[i_key].value / row.area)
+    rounding = entry.rounding(r_key) + (entry.rounding(i_key) + entry.rounding("area")) / 2.0
+    deviation = _beyond(stated / formed - 1.0, rounding)
+    if abs(deviation) <= QUIET:
+        return
+    if abs(deviation) <= REFUSED:
+        name = "Radius of gyration differs from sqrt(I/A) by more than 1 %"
+        deviations.setdefault(name, []).append((deviation, entry))
+        return
+    cause = likely_cause(stated / formed, LENGTH_CAUSES)
+    by_inertia = likely_cause((formed / stated) ** 2, INERTIA_CAUSES)
+    by_area = likely_cause((stated / formed) ** 2, AREA_CAUSES)
+    advice = "Compare i, I and A with the printed table."
+    if by_area and "decimal" not in by_area and entry.value("mass") is None:
+        advice = f"The area looks like {by_area}."
+    elif by_inertia and ("decimal" not in by_inertia or not cause):
+        advice = f"The second moment looks like {by_inertia}."
+    elif cause:
+        advice = f"The radius looks like {cause}."
+    findings.in_row(
+        entry,
+        r_key,
+        found=f"{stated * 1e2:.4g} cm",
+        expected=f"about {formed * 1e2:.4g} cm, the square root of I/A",
+        fix=advice,
+        kind="radius",
+    )
+
+
+def _stated(entry: Entry, symbol: str, axis: str) -> str | None:
+    for key in (f"{symbol} {axis}", symbol):
+        if key in entry.numbers and not (axis == "least" and key == symbol):
+            return key
+    return None
+
+
+def _check_extent(row: Checked, findings: Findings) -> bool:
+    """No radius of gyration exceeds half the depth, no area the enclosing rectangle."""
+    entry = row.entry
+    depth, width = entry.value("depth"), entry.value("width")
+    if entry.family == "angle" or depth is None:
+        return True
+    for extent, axis, inertia in ((depth, "major", row.i_major), (width, "minor", row.i_minor)):
+        if extent is None or math.sqrt(inertia / row.area) <= 0.5 * extent * (1.0 + QUIET):
+            continue
+        radius = math.sqrt(inertia / row.area)
+        key = "depth" if axis == "major" else "width"
+        swapped = width is not None and axis == "major" and radius <= 0.5 * width
+        findings.in_row(
+            entry,
+            key,
+            found=f"{extent * 1e3:.4g} mm, with a radius of gyration about the {axis} axis of "
+            f"{radius * 1e3:.4g} mm",
+            expected=f"a radius of at most half the {key}",
+            fix="Depth and width look swapped: depth is the dimension across the major axis."
+            if swapped
+            else "Compare the units of this column, of the area and of the second moment.",
+            kind="extent",
+        )
+        return False
+    return True
+
+
+def _check_polar(row: Checked, findings: Findings) -> None:
+    """(I major + I minor)/A² of any shape is at least that of a disc, 1/(2π)."""
+    polar = (row.i_major + row.i_minor) / row.area**2
+    if LEAST_POLAR * (1.0 - REFUSED) <= polar <= GREATEST_POLAR:
+        return
+    key = _axis_key(row.entry, "major")
+    small = polar < LEAST_POLAR
+    findings.in_row(
+        row.entry,
+        key,
+        found=f"a second moment of {row.i_major * 1e8:.4g} cm4 with an area of "
+        f"{row.area * 1e4:.4g} cm2",
+        expected="a second moment that this area can have (a solid disc has the least, "
+        f"{row.area**2 / (4.0 * math.pi) * 1e8:.4g} cm4)"
+        if small
+        else "a second moment that this area can have (a tube of D/t = 100 has (I + I)/A2 of 8)",
+        fix="The second moment looks like cm4 given as mm4, or the area like mm2 given as cm2."
+        if small
+        else "The second moment looks like mm4 given as cm4, or the area like cm2 given as mm2.",
+        kind="polar",
+    )
+
+
+Shape = Callable[[Entry], list[geometry.SectionProperties]]
+
+
+def _hollow(entry: Entry) -> list[geometry.SectionProperties]:
+    h, b, t = _dimensions(entry)
+    sharp = geometry.rectangular_hollow(
+        depth=h, width=b, wall=t, outside_radius=0.0, inside_radius=0.0
+    )
+    hot = geometry.hot_finished_hollow(depth=h, width=b, wall=t)
+    cold = geometry.cold_formed_hollow(depth=h, width=b, wall=t)
+    if entry.product.upper().startswith("EN 10210"):
+        return [hot]
+    if entry.product.upper().startswith("EN 10219"):
+        return [cold]
+    found = [sharp, hot, cold]
+    if _has_thin_us_wall(entry):
+        found.append(geometry.us_square_hollow(depth=h, width=b, nominal_wall=t))
+    return found
+
+
+def _tube(entry: Entry) -> list[geometry.SectionProperties]:
+    d, _, t = _dimensions(entry)
+    found = [geometry.circular_hollow(diameter=d, wall=t)]
+    if _has_thin_us_wall(entry):
+        found.append(geometry.us_pipe(diameter=d, nominal_wall=t))
+    return found
+
+
+def _angle(entry: Entry) -> list[geometry.SectionProperties]:
+    a, b, t = _dimensions(entry)
+    root = entry.value("root_radius")
+    radii = [0.0, 1.6 * t] if root is None else [root]
+    return [
+        geometry.angle(leg=a, other_leg=b, thickness=t, root_radius=r, toe_radius=r / 2.0)
+        for r in radii
+    ]
+
+
+def _i_section(entry: Entry) -> list[geometry.SectionProperties]:
+    h, b, t = _dimensions(entry)
+    flange = entry.numbers["flange"].value
+    root = entry.value("root_radius")
+    radii = [0.0, 0.15 * h] if root is None else [root]
+    return [
+        geometry.i_section(depth=h, width=b, web=t, flange=flange, root_radius=r) for r in radii
+    ]
+
+
+def _rectangle(entry: Entry) -> list[geometry.SectionProperties]:
+    depth, width = entry.numbers["depth"].value, entry.numbers["width"].value
+    plies = entry.value("plies") or 1.0
+    apart = geometry.built_up_plies(depth=depth, ply=width / plies, plies=round(plies))
+    return [apart, geometry.rectangle(depth=depth, width=width)]
+
+
+def _dimensions(entry: Entry) -> tuple[float, float, float]:
+    return (
+        entry.numbers["depth"].value,
+        entry.numbers["width"].value,
+        entry.numbers["thickness"].value,
+    )
+
+
+SHAPES: dict[str, tuple[tuple[str, ...], Shape]] = {
+    "SHS": (("depth", "width", "thickness"), _hollow),
+    "RHS": (("depth", "width", "thickness"), _hollow),
+    "CHS": (("depth", "width", "thickness"), _tube),
+    "angle": (("depth", "width", "thickness"), _angle),
+    "I": (("depth", "width", "thickness", "flange"), _i_section),
+    "rectangle": (("depth", "width"), _rectangle),
+}
+"""Dimensions that each family's formula needs, and the formulas that its tables may follow."""
+
+
+def _check_shape(
+    row: Checked, findings: Findings, deviations: dict[str, list[tuple[float, Entry]]]
+) -> bool:
+    """Hold area and second moments against the family's own formulas."""
+    entry = row.entry
+    needed, shape = SHAPES.get(entry.family, ((), _rectangle))
+    if not needed or any(key not in entry.numbers for key in needed):
+        return True
+    if not _fits(entry, findings):
+        return False
+    formed = shape(entry)
+    if not _check_area(row, formed, findings, deviations):
+        return False
+    good = True
+    for axis, found in (("major", row.i_major), ("minor", row.i_minor), ("least", row.i_least)):
+        values = [getattr(properties, f"i_{axis}") for properties in formed]
+        deviation = _beyond(_outside(found, min(values), max(values)), _axis_rounding(entry, axis))
+        if abs(deviation) > INERTIA_REFUSED:
+            good = False
+            ratio = found / values[0]
+            cause = likely_cause(ratio, INERTIA_CAUSES)
+            findings.in_row(
+                entry,
+                _axis_key(entry, axis),
+                found=f"{found * 1e8:.4g} cm4 about the {axis} axis",
+                expected=f"about {values[0] * 1e8:.4g} cm4 for these dimensions",
+                fix=f"This looks like {cause}."
+                if cause
+                else "Compare dimensions and second moment with the printed table.",
+                kind=f"inertia {axis}",
+            )
+        elif abs(deviation) > REFUSED:
+            name = f"I {axis} differs from the formula of the shape by more than 3 %"
+            deviations.setdefault(name, []).append((deviation, entry))
+    return good
+
+
+def _fits(entry: Entry, findings: Findings) -> bool:
+    """Walls must fit into the section before a formula means anything."""
+    t = entry.value("thickness")
+    if t is None:
+        return True
+    depth, width = entry.numbers["depth"].value, entry.numbers["width"].value
+    room = min(depth, width) / (2.0 if entry.family in {"SHS", "RHS", "CHS"} else 1.0)
+    flange = entry.value("flange") if entry.family == "I" else None
+    if t < room and (flange is None or 2.0 * flange < depth):
+        return True
+    findings.in_row(
+        entry,
+        "thickness",
+        found=f"{t * 1e3:.4g} mm in a section of {depth * 1e3:.4g} × {width * 1e3:.4g} mm",
+        expected="walls that leave room inside",
+        fix="Compare the units of depth, width and thickness.",
+        kind="walls",
+    )
+    return False
+
+
+def _check_area(
+    row: Checked,
+    formed: Sequence[geometry.SectionProperties],
+    findings: Findings,
+    deviations: dict[str, list[tuple[float, Entry]]],
+) -> bool:
+    entry = row.entry
+    areas = [properties.area for properties in formed]
+    deviation = _beyond(_outside(row.area, min(areas), max(areas)), entry.rounding("area"))
+    other = _other_make(row, deviation)
+    if other:
+        findings.in_row(
+            entry,
+            "area",
+            found=f"{row.area * 1e4:.4g} cm2, the area of the {other} section",
+            expected=f"{areas[0] * 1e4:.4g} cm2 for {entry.product}",
+            fix="Hot finished and cold formed sections of one size differ in area and in buckling "
+            "curve: correct the product standard, or take the row from the right table.",
+            kind="make",
+        )
+        return False
+    if abs(deviation) > SHAPE_REFUSED:
+        cause = likely_cause(row.area / areas[0], AREA_CAUSES)
+        findings.in_row(
+            entry,
+            "area",
+            found=f"{row.area * 1e4:.4g} cm2",
+            expected=f"about {areas[0] * 1e4:.4g} cm2 for these dimensions",
+            fix=f"This looks like {cause}."
+            if cause
+            else "Compare dimensions and area with the printed table.",
+            kind="shape",
+        )
+        return False
+    if abs(deviation) > 2.0 * QUIET:
+        name = "Area differs from the formula of the shape by more than 2 %"
+        deviations.setdefault(name, []).append((deviation, entry))
+    return True
+
+
+def _other_make(row: Checked, deviation: float) -> str:
+    """Say whether a row of one EN product has the area of the other one."""
+    entry = row.entry
+    if entry.family not in {"SHS", "RHS"} or abs(deviation) <= 2.0 * QUIET:
+        return ""
+    h, b, t = _dimensions(entry)
+    product = entry.product.upper()
+    if product.startswith("EN 10210"):
+        other, name = geometry.cold_formed_hollow(depth=h, width=b, wall=t), "cold formed"
+    elif product.startswith("EN 10219"):
+        other, name = geometry.hot_finished_hollow(depth=h, width=b, wall=t), "hot finished"
+    else:
+        return ""
+    return name if abs(row.area / other.area - 1.0) <= QUIET / 2.0 + entry.rounding("area") else ""

@@ -1,0 +1,365 @@
+"""Column heads of a catalogue: which property each column holds, about which axis, in what unit.
+
+A head is a name and a unit: ``area [cm2]``, ``I major (cm⁴)``, ``t in mm``. Trade words and the
+usual letters are understood; where a letter has two meanings (A: area or leg; i and I: radius of
+gyration or second moment) the unit decides.
+"""
+
+from __future__ import annotations
+
+import difflib
+import re
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Literal
+
+from sizing.brief.catalogue_units import unit_factor
+from sizing.errors import Problem
+
+Axis = Literal["major", "minor", "least", "any"]
+
+TEXT_NAMES: Mapping[str, frozenset[str]] = {
+    "designation": frozenset(
+        {"designation", "section", "size", "name", "profile", "bezeichnung", "profil"}
+    ),
+    "family": frozenset({"family", "shape", "kind", "profilart"}),
+    "product": frozenset({"product", "product standard", "standard", "norm", "produktnorm"}),
+}
+"""Columns of text."""
+
+NUMBER_NAMES: Mapping[str, tuple[frozenset[str], tuple[str, ...]]] = {
+    "area": (
+        frozenset(
+            {"area", "a", "cross section area", "cross sectional area", "section area"}
+            | {"fläche", "querschnittsfläche"}
+        ),
+        ("area",),
+    ),
+    "mass": (
+        frozenset(
+            {"mass", "m", "mass per metre", "mass per length", "weight", "w", "g"}
+            | {"weight per foot", "weight per metre", "gewicht", "masse"}
+        ),
+        ("mass per length", "weight per length"),
+    ),
+    "depth": (
+        frozenset(
+            {"depth", "h", "height", "overall depth", "diameter", "outside diameter", "od", "d"}
+            | {"leg", "leg length", "a", "höhe", "durchmesser", "schenkel"}
+        ),
+        ("length",),
+    ),
+    "width": (
+        frozenset({"width", "b", "breadth", "bf", "flange width", "other leg", "breite"}),
+        ("length",),
+    ),
+    "thickness": (
+        frozenset(
+            {"thickness", "t", "wall", "wall thickness", "design wall", "t des", "tdes", "tw"}
+            | {"web", "web thickness", "leg thickness", "s", "dicke", "wanddicke", "stegdicke"}
+        ),
+        ("length",),
+    ),
+    "flange": (frozenset({"flange", "flange thickness", "tf", "flanschdicke"}), ("length",)),
+    "root_radius": (
+        frozenset({"root radius", "fillet", "fillet radius", "r1", "ausrundungsradius"}),
+        ("length",),
+    ),
+    "surface": (
+        frozenset({"surface", "surface area", "painted area", "perimeter", "u"})
+        | frozenset({"mantelfläche", "oberfläche", "umfang"}),
+        ("length",),
+    ),
+    "plies": (frozenset({"plies", "lagen"}), ()),
+}
+"""Columns of numbers: accepted names, and what the unit must measure."""
+
+STRENGTH_OF_AXIS_LETTER = {
+    "x y": {"x": "major", "y": "minor", "z": "least"},
+    "y z": {"y": "major", "z": "minor"},
+    "x": {"x": "major"},
+}
+"""x-x major, y-y minor (z-z least, of angles) where x is used; else y-y major, z-z minor (EN)."""
+
+PLAIN_HEADS = (
+    "designation, family, product, area [cm2], mass [kg/m], I major [cm4], I minor [cm4], "
+    "I least [cm4], i major [cm], i minor [cm], i least [cm], depth [mm], width [mm], "
+    "thickness [mm], flange [mm], root radius [mm], surface [m2/m], price [EUR/m], plies"
+)
+"""Every head in its plain form."""
+
+_BRACKETED = re.compile(r"^(.*?)[\s_]*[\[(]\s*(.*?)\s*[\])]\s*$")
+_WORDED = re.compile(r"^(.+?)(?:\s+in\s+|\s*/\s*)(\S+)$")
+_CURRENCY = re.compile(r"^\s*([^/\d]{0,12}?)\s*(?:/|\bper\b)\s*([A-Za-z]+)\s*$")
+
+_CONCEPTS = {
+    "i": "", "r": "", "radius": "radius of gyration", "gyration": "radius of gyration",
+    "trägheitsradius": "radius of gyration", "inertia": "second moment",
+    "second": "second moment", "trägheitsmoment": "second moment",
+    "flächenmoment": "second moment",
+}  # fmt: skip
+_AXES = {
+    "major": "major", "strong": "major", "stark": "major", "max": "major",
+    "minor": "minor", "weak": "minor", "schwach": "minor",
+    "least": "least", "min": "least", "v": "least", "vv": "least",
+    "x": "x", "xx": "x", "y": "y", "yy": "y", "z": "z", "zz": "z",
+}  # fmt: skip
+_FILLERS = frozenset({"of", "the", "area", "axis", "about", "moment"})
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Column:
+    """One column: its ``property``, ``axis`` (second moments, radii), unit and factor to SI.
+
+    ``property`` is a key of the tables above, ``second moment``, ``radius`` or ``price``.
+    ``unit`` is as written; ``per`` is what a price is per: ``m`` or ``kg``.
+    """
+
+    index: int
+    head: str
+    property: str
+    axis: Axis = "any"
+    unit: str = ""
+    kind: str = ""
+    factor: float = 1.0
+    per: str = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Heads:
+    """What the column heads say: understood columns, heads not used, remarks, problems."""
+
+    columns: tuple[Column, ...]
+    unused: tuple[str, ...]
+    remarks: tuple[str, ...]
+    problems: tuple[Problem, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class _Head:
+    index: int
+    text: str
+    name: str
+    unit: str
+
+
+def read_heads(cells: tuple[str, ...], *, file: str, line: int) -> Heads:
+    """Return what each column holds; problems are collected, none is raised."""
+    heads = [_split(i, cell) for i, cell in enumerate(cells) if cell]
+    letters, problems, remarks = _axis_letters(heads, file=file, line=line)
+    columns: list[Column] = []
+    unused: list[str] = []
+    for head in heads:
+        column = _understand(head, letters, file=file, line=line)
+        if isinstance(column, Problem):
+            problems.append(column)
+        elif column is None:
+            unused.append(head.text)
+        else:
+            columns.append(column)
+    columns = _one_depth(columns, unused)
+    problems += _twice(columns, file=file, line=line)
+    if unused:
+        remarks.append(_unused_remark(unused))
+    return Heads(
+        columns=tuple(columns),
+        unused=tuple(unused),
+        remarks=tuple(remarks),
+        problems=tuple(problems),
+    )
+
+
+def _split(index: int, cell: str) -> _Head:
+    match = _BRACKETED.match(cell)
+    if match is None:
+        worded = _WORDED.match(cell)  # A/V and the like are names, not units
+        match = worded if worded and unit_factor(worded[2]) is not None else None
+    name, unit = (match[1], match[2]) if match else (cell, "")
+    words = re.sub(r"[\s_\-.,:]+", " ", name).strip().casefold()
+    return _Head(index=index, text=cell, name=words, unit=unit)
+
+
+def _understand(
+    head: _Head, letters: Mapping[str, str], *, file: str, line: int
+) -> Column | Problem | None:
+    """Return the column, a problem with its unit, or None for a head that is not used."""
+    for name, words in TEXT_NAMES.items():
+        if head.name in words:
+            return Column(index=head.index, head=head.text, property=name)
+    if head.name in {"price", "cost", "preis"}:
+        return _price(head, file=file, line=line)
+    if head.name in NUMBER_NAMES["plies"][0]:
+        return Column(index=head.index, head=head.text, property="plies")
+    measured = unit_factor(head.unit) if head.unit else None
+    gyration = _gyration(head.name, letters)
+    wanted = _wanted(head.name, gyration)
+    if not wanted:
+        return None
+    if measured is None or measured[0] not in wanted.values():
+        return _unit_problem(head, wanted, measured, file=file, line=line)
+    kind, factor = measured
+    prop = next(key for key, value in wanted.items() if value == kind)
+    return Column(
+        index=head.index,
+        head=head.text,
+        property="mass" if prop == "weight" else prop,
+        axis=gyration[1] if gyration is not None else "any",
+        unit=head.unit,
+        kind=kind,
+        factor=factor,
+    )
+
+
+def _wanted(name: str, gyration: tuple[str, Axis] | None) -> dict[str, str]:
+    """Return {property: kind of unit} that a name may stand for; empty when it is not used."""
+    if gyration is not None:
+        both = {"second moment": "second moment", "radius": "length"}
+        concept = gyration[0]
+        if concept:
+            key = "radius" if concept == "radius of gyration" else concept
+            return {key: both[key]}
+        return both
+    wanted: dict[str, str] = {}
+    for prop, (names, kinds) in NUMBER_NAMES.items():
+        if name in names:
+            for kind in kinds:
+                wanted["weight" if kind == "weight per length" else prop] = kind
+    return wanted
+
+
+def _gyration(name: str, letters: Mapping[str, str]) -> tuple[str, Axis] | None:
+    """Return (concept, axis) of a second moment or radius of gyration, None for other heads."""
+    words = name.split()
+    glued = re.match(r"^([ir])(max|min|xx?|yy?|zz?|vv?)$", words[0]) if words else None
+    if glued:
+        words = [glued[1], glued[2], *words[1:]]
+    concepts = [word for word in words if word in _CONCEPTS]
+    axes = [_AXES[word] for word in words if word in _AXES]
+    known = set(_CONCEPTS) | set(_AXES) | _FILLERS
+    if not concepts or any(word not in known for word in words) or len(set(axes)) > 1:
+        return None
+    if name == "r":  # root radius in one table, radius of gyration in the next
+        return None
+    axis = axes[0] if axes else "any"
+    axis = letters.get(axis, axis)
+    if axis not in {"major", "minor", "least", "any"}:
+        return None
+    return _CONCEPTS[concepts[-1]], axis  # type: ignore[return-value]  # one of the four words
+
+
+def _axis_letters(
+    heads: list[_Head], *, file: str, line: int
+) -> tuple[dict[str, str], list[Problem], list[str]]:
+    """Decide what the axis letters x, y, z stand for, from those that the file uses."""
+    used: dict[str, str] = {}
+    for head in heads:
+        for letter in "xyz":
+            probe = _gyration(head.name, {letter: "major"})
+            if probe is not None and re.search(rf"(?:^[ir]|\s){letter}{letter}?$", head.name):
+                used.setdefault(letter, head.text)
+    if not used:
+        return {}, [], []
+    key = "x y" if {"x", "y"} <= set(used) else "y z" if {"y", "z"} <= set(used) else "".join(used)
+    meaning = STRENGTH_OF_AXIS_LETTER.get(key)
+    if meaning is None or not set(used) <= set(meaning):
+        first = next(iter(used.values()))
+        problem = Problem(
+            file=file,
+            place=f"line {line}, column {first!r}",
+            found="an axis letter whose partner is missing",
+            expected="the pair x and y, or the pair y and z",
+            fix="Write I major and I minor instead: the same letter is the strong axis in one "
+            "country and the weak one in the next.",
+        )
+        return {}, [problem], []
+    said = ", ".join(f"{letter}-{letter} {meaning[letter]}" for letter in sorted(used))
+    return dict(meaning), [], [f"Axis letters are read as {said}."]
+
+
+def _price(head: _Head, *, file: str, line: int) -> Column | Problem:
+    match = _CURRENCY.match(head.unit)
+    measured = unit_factor(match[2]) if match else None
+    if match and measured is not None and measured[0] in {"length", "mass"}:
+        return Column(
+            index=head.index,
+            head=head.text,
+            property="price",
+            unit=head.unit,
+            kind=match[1],
+            factor=1.0 / measured[1],
+            per="m" if measured[0] == "length" else "kg",
+        )
+    return Problem(
+        file=file,
+        place=f"line {line}, column {head.text!r}",
+        found=repr(head.unit) if head.unit else "no unit",
+        expected="a currency per length or per mass, such as EUR/m, USD/ft or EUR/t",
+        fix="Write for instance: price [EUR/m]",
+    )
+
+
+def _unit_problem(
+    head: _Head, wanted: Mapping[str, str], measured: tuple[str, float] | None,
+    *, file: str, line: int,
+) -> Problem:  # fmt: skip
+    examples = {
+        "length": "mm, cm or in", "area": "cm2, mm2 or in2", "second moment": "cm4, mm4 or in4",
+        "mass per length": "kg/m or lb/ft", "weight per length": "N/m or kN/m",
+    }  # fmt: skip
+    expected = " or ".join(f"{examples[kind]}" for kind in dict.fromkeys(wanted.values()))
+    if not head.unit:
+        found = "no unit"
+    elif measured is None:
+        found = f"unknown unit {head.unit!r}"
+    else:
+        found = f"{head.unit!r}, a unit of {measured[0]}"
+    first = examples[next(iter(wanted.values()))].split(",")[0].split(" or ")[0]
+    name = _WORDED.sub(r"\1", _BRACKETED.sub(r"\1", head.text))
+    return Problem(
+        file=file,
+        place=f"line {line}, column {head.text!r}",
+        found=found,
+        expected=f"a unit in square brackets: {expected}",
+        fix=f"Write for instance: {name} [{first}]",
+    )
+
+
+def _one_depth(columns: list[Column], unused: list[str]) -> list[Column]:
+    """Drop a column ``d`` beside a plain depth: in I tables it is the depth between fillets."""
+    depths = [column for column in columns if column.property == "depth"]
+    if len(depths) < 2:
+        return columns
+    letter_d = [c for c in depths if re.match(r"^d\b", c.head.strip(), re.IGNORECASE)]
+    if len(letter_d) == 1:
+        unused.append(letter_d[0].head)
+        return [column for column in columns if column is not letter_d[0]]
+    return columns
+
+
+def _twice(columns: list[Column], *, file: str, line: int) -> list[Problem]:
+    problems = []
+    seen: dict[tuple[str, str], Column] = {}
+    for column in columns:
+        key = (column.property, column.axis)
+        if key in seen:
+            problems.append(
+                Problem(
+                    file=file,
+                    place=f"line {line}, column {column.head!r}",
+                    found=f"a second column for what {seen[key].head!r} holds already",
+                    expected="each property once",
+                    fix="Remove one of the two columns.",
+                )
+            )
+        seen.setdefault(key, column)
+    return problems
+
+
+def _unused_remark(unused: list[str]) -> str:
+    plain = [re.sub(r"\s*\[.*$", "", head) for head in PLAIN_HEADS.split(", ")]
+    said = []
+    for head in unused:
+        name = _split(0, head).name
+        near = difflib.get_close_matches(name, plain, n=1, cutoff=0.8) if len(name) > 4 else []
+        said.append(f"{head!r} (is {near[0]} meant?)" if near else repr(head))
+    return f"Columns not used: {', '.join(said)}."

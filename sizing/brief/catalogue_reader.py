@@ -1,0 +1,334 @@
+"""Reading a section catalogue: a shipped one by name, or the user's own file.
+
+A catalogue is a text table with one row per section. Header lines begin with ``#``; some of
+them are settings: ``# decimal = comma``, ``# delimiter = ;``, ``# density = 7850 kg/m3`` (or
+``from grade``), ``# family = SHS``, ``# product = EN 10210-2``. Then a line of column heads, each
+with its unit in square brackets, then the rows::
+
+    designation, family, product, area [cm2], mass [kg/m], I major [cm4], I minor [cm4], ...
+
+Needed are the designation, the area, the mass (or a density in the header), and the second
+moment or radius of gyration about the major and the minor axis; for angles also about the least
+axis.
+"""
+
+from __future__ import annotations
+
+import difflib
+import hashlib
+from collections.abc import Iterable, Sequence
+from pathlib import Path
+
+import numpy as np
+
+from sizing.brief.catalogue_checks import Checked, check_rows
+from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, read_heads
+from sizing.brief.catalogue_rows import (
+    Entry,
+    Findings,
+    key_of,
+    place_of,
+    read_density,
+    read_entries,
+)
+from sizing.brief.catalogue_text import LARGEST_FILE, TextProblemsError, decode, split
+from sizing.brief.model import SourceFile
+from sizing.brief.sections import Catalogue, FloatArray
+from sizing.errors import InputError, Problem
+
+SUFFIX = ".csv"
+ALIKE_ON_BOTH_AXES = frozenset({"SHS", "CHS"})
+"""Families with one second moment; equal angles too, about their geometric axes."""
+
+
+def shipped_folder() -> Path:
+    """Return the folder of the shipped catalogues, in a source tree and in an installed package."""
+    package = Path(__file__).resolve().parents[1]
+    installed = package / "catalogs"
+    return installed if installed.is_dir() else package.parent / "catalogs"
+
+
+def shipped_catalogues() -> tuple[str, ...]:
+    """Return the names of the shipped catalogues, sorted."""
+    return tuple(sorted(path.stem for path in shipped_folder().glob(f"*{SUFFIX}")))
+
+
+def read_catalogue(name_or_path: str, base: Path) -> Catalogue:
+    """Read a shipped catalogue by name, or a file relative to the folder ``base``.
+
+    Raises :class:`sizing.errors.InputError` with every problem found, each with file, line,
+    column, what was found, what belongs there and how to mend it.
+    """
+    path = _find(name_or_path, base)
+    try:
+        size = path.stat().st_size
+        data = path.read_bytes() if size <= LARGEST_FILE else b" " * (LARGEST_FILE + 1)
+    except OSError as error:
+        raise InputError([_unreadable(name_or_path, error)]) from error
+    source = SourceFile(name=name_or_path, path=path, sha256=hashlib.sha256(data).hexdigest())
+    return catalogue_from_bytes(data, name=name_or_path, source=source)
+
+
+def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catalogue:
+    """Build a catalogue from the bytes of its file; raises as :func:`read_catalogue` does."""
+    file = source.name
+    try:
+        text, encoding = decode(data, file)
+        table = split(text, file)
+    except TextProblemsError as error:
+        raise InputError(error.problems) from error
+    findings = Findings(file=file, remarks=[*encoding, *table.remarks])
+    heads = read_heads(table.heads.cells, file=file, line=table.heads.line)
+    findings.heads = {key_of(column): column.head for column in heads.columns}
+    findings.remarks += heads.remarks
+    findings.add(heads.problems)
+    density = read_density(table, findings)
+    unclear = {problem.place for problem in heads.problems}
+    _require_columns(heads.columns, density, bool(unclear), table.heads.line, findings)
+    if not table.rows:
+        findings.problem(
+            place="file", found="column heads but no rows", expected="at least one section"
+        )
+    if "designation" not in findings.heads:
+        raise InputError(findings.problems())
+    entries = read_entries(table, heads.columns, findings)
+    _refuse_twice(entries, findings)
+    if heads.problems or "area" not in findings.heads:
+        raise InputError(findings.problems())
+    entries = tuple(_with_equal_sides(entry, findings) for entry in entries)
+    rows = [row for entry in entries if (row := _settle(entry, density, findings)) is not None]
+    check_rows(rows, density, findings)
+    if findings.any:
+        raise InputError(findings.problems())
+    price = next((column for column in heads.columns if column.property == "price"), None)
+    return _catalogue(name, source, table.header, rows, density, price, findings)
+
+
+def _find(name: str, base: Path) -> Path:
+    """Return the path of a shipped catalogue or of the user's file."""
+    if not name.strip() or "\x00" in name:
+        raise InputError([_not_found(name, base)])
+    shipped = shipped_folder() / f"{name}{SUFFIX}"
+    if name in shipped_catalogues():
+        return shipped
+    path = base / Path(name).expanduser()
+    try:
+        if path.is_file():
+            return path.resolve()
+        if not path.exists():
+            raise InputError([_not_found(name, base)])
+    except OSError as error:
+        raise InputError([_unreadable(name, error)]) from error
+    raise InputError(
+        [
+            Problem(
+                file=name,
+                place="file",
+                found="something that is not a file",
+                expected="a text table (CSV)",
+            )
+        ]
+    )
+
+
+def _not_found(name: str, base: Path) -> Problem:
+    shipped = shipped_catalogues()
+    words = name.strip().casefold().replace("_", "-").replace(" ", "-").removesuffix(SUFFIX)
+    near = difflib.get_close_matches(words, shipped, n=1, cutoff=0.5)
+    hint = f"Did you mean {near[0]}? " if near else ""
+    return Problem(
+        file=name or "(empty)",
+        place="file",
+        found=f"no shipped catalogue of this name and no such file in {base}",
+        expected="a shipped name or the path of a file",
+        fix=f"{hint}Shipped are: {', '.join(shipped)}.",
+    )
+
+
+def _unreadable(name: str, error: OSError) -> Problem:
+    return Problem(
+        file=name,
+        place="file",
+        found=f"a file that cannot be read ({error.strerror or error})",
+        expected="a readable text table (CSV)",
+    )
+
+
+def _require_columns(
+    columns: Iterable[Column],
+    density: float | str | None,
+    unclear: bool,
+    line: int,
+    findings: Findings,
+) -> None:
+    """Every needed property must have a column; axes beyond the major one depend on the row."""
+    have = {key_of(column) for column in columns}
+    missing = []
+    if "designation" not in have:
+        missing.append("designation")
+    if "area" not in have:
+        missing.append("area [cm2]")
+    if "mass" not in have and density is None:
+        missing.append("mass [kg/m] (or # density = 7850 kg/m3 in the header)")
+    if not have & {"I major", "i major", "I", "i"}:
+        missing.append("I major [cm4] (or i major [cm])")
+    if unclear:  # a column may be there with a wrong unit, which is reported already
+        missing = missing if "designation" not in have else []
+    for column in missing:
+        findings.problem(
+            place=f"line {line}",
+            found=f"no column {column}",
+            expected="a column for it, with its unit in square brackets",
+            fix=f"Heads that are understood: {PLAIN_HEADS}.",
+        )
+
+
+def _refuse_twice(entries: Sequence[Entry], findings: Findings) -> None:
+    seen: dict[str, Entry] = {}
+    for entry in entries:
+        key = entry.designation.casefold().replace(" ", "")
+        first = seen.setdefault(key, entry)
+        if first is not entry:
+            findings.problem(
+                place=f"line {entry.line}, column {findings.head('designation')!r}",
+                found=f"{entry.designation!r} again",
+                expected="each designation once",
+                fix=f"It stands in line {first.line} already; remove one or tell them apart "
+                "by their designation.",
+                kind="twice",
+                line=entry.line,
+            )
+
+
+def _with_equal_sides(entry: Entry, findings: Findings) -> Entry:
+    """Squares, tubes and angles given by one side have the other one alike."""
+    alike = entry.family in ALIKE_ON_BOTH_AXES or (
+        entry.family == "angle" and "width" not in findings.heads
+    )
+    if not alike or "depth" not in entry.numbers or "width" in entry.numbers:
+        return entry
+    numbers = {**entry.numbers, "width": entry.numbers["depth"]}
+    return Entry(
+        line=entry.line,
+        designation=entry.designation,
+        family=entry.family,
+        product=entry.product,
+        numbers=numbers,
+    )
+
+
+def _settle(entry: Entry, density: float | str | None, findings: Findings) -> Checked | None:
+    """Settle area and second moments of a row; None when something needed is missing."""
+    area = entry.value("area")
+    if area is None:
+        _missing(entry, "area", "the area", findings)
+        return None
+    if entry.value("mass") is None and density is None and "mass" in findings.heads:
+        _missing(entry, "mass", "the mass", findings)
+    plies = entry.value("plies")
+    if plies is not None and plies != round(plies):
+        findings.in_row(
+            entry, "plies", found=f"{plies:g}", expected="a whole number of plies", fix="",
+            kind="plies",
+        )  # fmt: skip
+    major = _about(entry, "major", area)
+    if major is None:
+        if findings.heads.keys() & {"I major", "i major", "I", "i"}:
+            key = next(k for k in ("I major", "i major", "I", "i") if k in findings.heads)
+            _missing(entry, key, "the major second moment or radius of gyration", findings)
+        return None
+    minor = _about(entry, "minor", area)
+    if minor is None:
+        minor = _alike(entry, major)
+    least = _about(entry, "least", area)
+    if minor is None:
+        _missing(entry, "I minor", "the minor second moment or radius of gyration", findings)
+        return None
+    if least is None and entry.family == "angle":
+        _missing(
+            entry, "I least", "the least second moment or radius of gyration (v-v axis)", findings
+        )
+        return None
+    return Checked(
+        entry=entry,
+        area=area,
+        i_major=major,
+        i_minor=minor,
+        i_least=minor if least is None else min(least, minor),
+    )
+
+
+def _about(entry: Entry, axis: str, area: float) -> float | None:
+    """Return the second moment about an axis: as stated, else A i²."""
+    inertia, radius = entry.value(f"I {axis}"), entry.value(f"i {axis}")
+    if inertia is not None:
+        return inertia
+    return None if radius is None else area * radius**2
+
+
+def _alike(entry: Entry, major: float) -> float | None:
+    """Return the minor second moment of a section that has one for both sides."""
+    if entry.family in ALIKE_ON_BOTH_AXES:
+        return major
+    legs = entry.value("depth"), entry.value("width")
+    return major if entry.family == "angle" and legs[0] == legs[1] else None
+
+
+def _missing(entry: Entry, key: str, what: str, findings: Findings) -> None:
+    has_column = key in findings.heads
+    column = f", column {findings.head(key)!r}" if has_column else ""
+    unit = {"area": "cm2", "mass": "kg/m"}.get(key, "cm4" if key.startswith("I") else "cm")
+    findings.problem(
+        place=f"{place_of(entry.line, entry.designation)}{column}",
+        found="an empty cell" if has_column else f"no column for {what}",
+        expected=what,
+        fix="" if has_column else f"Add a column: {key} [{unit}]",
+        kind=f"missing {key}",
+        line=entry.line,
+    )
+
+
+def _catalogue(
+    name: str,
+    source: SourceFile,
+    header: tuple[str, ...],
+    rows: Sequence[Checked],
+    density: float | str | None,
+    price: Column | None,
+    findings: Findings,
+) -> Catalogue:
+    def column(key: str) -> FloatArray:
+        found = (row.entry.value(key) for row in rows)
+        return np.array([np.nan if v is None else v for v in found], dtype=np.float64)
+
+    area = np.array([row.area for row in rows], dtype=np.float64)
+    mass = column("mass")
+    if isinstance(density, float):
+        mass = np.where(np.isnan(mass), area * density, mass)
+    prices = column("price")
+    if price is not None and price.per == "kg":
+        prices = prices * mass
+    plies = column("plies")
+    return Catalogue(
+        name=name,
+        source=source,
+        header=header,
+        designation=tuple(row.entry.designation for row in rows),
+        row=tuple(row.entry.line for row in rows),
+        family=tuple(row.entry.family for row in rows),
+        product=tuple(row.entry.product for row in rows),
+        area=area,
+        i_major=np.array([row.i_major for row in rows], dtype=np.float64),
+        i_minor=np.array([row.i_minor for row in rows], dtype=np.float64),
+        i_least=np.array([row.i_least for row in rows], dtype=np.float64),
+        mass=mass,
+        depth=column("depth"),
+        width=column("width"),
+        thickness=column("thickness"),
+        flange=column("flange"),
+        root_radius=column("root_radius"),
+        surface=column("surface"),
+        price=prices,
+        plies=tuple(1 if np.isnan(n) else round(float(n)) for n in plies),
+        remarks=tuple(findings.remarks),
+    )
