@@ -337,7 +337,8 @@ def _check_extent(row: Checked, findings: Findings) -> bool:
 
 def _check_polar(row: Checked, findings: Findings) -> None:
     """(I major + I minor)/A² of any shape is at least that of a disc, 1/(2π)."""
-    polar = (row.i_major + row.i_minor) / row.area**2
+    plies = row.entry.value("plies") or 1.0  # boards that slip count one by one
+    polar = plies * (row.i_major + row.i_minor) / row.area**2
     if LEAST_POLAR * (1.0 - REFUSED) <= polar <= GREATEST_POLAR:
         return
     key = _axis_key(row.entry, "major")

@@ -22,7 +22,7 @@ from pathlib import Path
 import numpy as np
 
 from sizing.brief.catalogue_checks import Checked, check_rows
-from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, read_heads
+from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, Heads, read_heads
 from sizing.brief.catalogue_rows import (
     Entry,
     Findings,
@@ -101,7 +101,8 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
     if findings.any:
         raise InputError(findings.problems())
     price = next((column for column in heads.columns if column.property == "price"), None)
-    return _catalogue(name, source, table.header, rows, density, price, findings)
+    columns = _said_columns(heads, density)
+    return _catalogue(name, source, table.header, columns, rows, density, price, findings)
 
 
 def _find(name: str, base: Path) -> Path:
@@ -288,10 +289,29 @@ def _missing(entry: Entry, key: str, what: str, findings: Findings) -> None:
     )
 
 
+def _said_columns(heads: Heads, density: float | str | None) -> tuple[tuple[str, str], ...]:
+    """Say for every column head what it was taken for."""
+    said = []
+    for column in sorted(heads.columns, key=lambda column: column.index):
+        what = column.property.replace("_", " ")
+        if column.property in {"second moment", "radius"}:
+            what = "radius of gyration" if column.property == "radius" else what
+            what += " about both axes" if column.axis == "any" else f", {column.axis} axis"
+        if column.kind == "weight per length":
+            what += " from weight"
+        said.append((column.head, f"{what} in {column.unit}" if column.unit else what))
+    if isinstance(density, float):
+        said.append(("(header)", f"density {density:.4g} kg/m3"))
+    elif density is not None:
+        said.append(("(header)", "mass from the density of the grade"))
+    return (*said, *((head, "not used") for head in heads.unused))
+
+
 def _catalogue(
     name: str,
     source: SourceFile,
     header: tuple[str, ...],
+    columns: tuple[tuple[str, str], ...],
     rows: Sequence[Checked],
     density: float | str | None,
     price: Column | None,
@@ -330,5 +350,6 @@ def _catalogue(
         surface=column("surface"),
         price=prices,
         plies=tuple(1 if np.isnan(n) else round(float(n)) for n in plies),
+        columns=columns,
         remarks=tuple(findings.remarks),
     )

@@ -220,7 +220,7 @@ def read_entries(
                     line=row.line,
                     designation=designation,
                     family=entry_family,
-                    product=" ".join(product.split()),
+                    product=_product(product, numbers),
                     numbers=numbers,
                 )
             )
@@ -238,6 +238,15 @@ def _text(row: Row, column: Column | None) -> str:
     if column is None or column.index >= len(row.cells):
         return ""
     return "".join(c for c in row.cells[column.index] if c.isprintable() or c == " ")
+
+
+def _product(said: str, numbers: Mapping[str, Number]) -> str:
+    """Return the product; one of several plies always says that it is built up."""
+    product = " ".join(said.split())
+    plies = numbers.get("plies")
+    if plies is None or plies.value <= 1.0 or "built-up" in product.casefold():
+        return product
+    return f"{product} built-up".strip()
 
 
 def _setting_family(table: TextTable, findings: Findings) -> str:

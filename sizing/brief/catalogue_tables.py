@@ -47,6 +47,7 @@ class Line:
     flange: float | None = None
     root_radius: float | None = None
     plies: int | None = None
+    product: str = ""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -69,7 +70,12 @@ def text_of(table: Table) -> str:
     heads = ",".join(["designation", "family", "product", *(head for head, _ in columns)])
     rows = (
         ",".join(
-            [line.designation, table.family, table.product, *(cell(line) for _, cell in columns)]
+            [
+                line.designation,
+                table.family,
+                line.product or table.product,
+                *(cell(line) for _, cell in columns),
+            ]
         )
         for line in lines
     )
@@ -289,6 +295,7 @@ def _lumber() -> Iterator[Line]:
                 depth=h,
                 width=plies * b,
                 plies=plies,
+                product="NDS built-up",
             )
 
 

@@ -12,6 +12,9 @@ from sizing.brief.model import SourceFile
 
 FloatArray = NDArray[np.float64]
 
+ABOUT_THE_FILE = frozenset({"header", "columns", "remarks"})
+"""Fields of a catalogue that are not one entry per row."""
+
 
 @dataclass(frozen=True, kw_only=True)
 class Catalogue:
@@ -32,11 +35,12 @@ class Catalogue:
     ``mass`` is kg per m, and NaN in a timber catalogue whose header says ``density = from
     grade``: the mass is then area × density of the grade (``Standard.material.density``), which
     the formulation puts in. ``plies`` counts the boards side by side across ``width`` (1 for
-    every section in one piece; empty means 1 throughout). A built-up row states ``width`` as the
-    overall width, but second moments as if the boards slipped freely on one another: what their
-    nails or bolts add is for the standard to say.
+    every section in one piece; empty means 1 throughout). The ``product`` of a built-up row always
+    holds the word ``built-up``; it states ``width`` as the overall width, but second moments as
+    if the boards slipped freely on one another: what their nails or bolts add is for the
+    standard to say.
 
-    ``remarks`` says, in sentences, what was detected, assumed or found odd while reading.
+    ``columns`` pairs every column head of the file with what it was taken for. ``remarks`` says, in sentences, what was detected, assumed or found odd while reading.
     """
 
     name: str
@@ -59,6 +63,7 @@ class Catalogue:
     surface: FloatArray
     price: FloatArray
     plies: tuple[int, ...] = ()
+    columns: tuple[tuple[str, str], ...] = ()
     remarks: tuple[str, ...] = ()
 
     def __len__(self) -> int:
@@ -84,8 +89,6 @@ class Catalogue:
         picked: dict[str, Any] = {}
         for field in fields(self):
             value = getattr(self, field.name)
-            if isinstance(value, np.ndarray):
-                picked[field.name] = value[section : section + 1]
-            elif isinstance(value, tuple) and field.name not in ("header", "remarks"):
+            if isinstance(value, (np.ndarray, tuple)) and field.name not in ABOUT_THE_FILE:
                 picked[field.name] = value[section : section + 1]
         return replace(self, **picked)
