@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from typing import Any, get_args
 
 from sizing.brief.findings import Findings, KeyPath, Names, Quantities, quoted
@@ -52,7 +52,17 @@ def read_combinations(
         if entry is None:
             faultless = False
             continue
-        factors, good = _factors(path, entry, faulty, cases, findings, quantities)
+        factors, good = read_factors(
+            (*path, "factors"), entry.factors, cases.names, findings, quantities
+        )
+        good = good and "factors" not in faulty
+        if good and not factors:
+            findings.add(
+                (*path, "factors"),
+                found="only zero factors" if entry.factors else "no factors",
+                expected="at least one factor that is not 0",
+            )
+        long_term = _long_term(path, entry, factors, cases, findings, quantities)
         faultless = faultless and good and not faulty
         if entry.name in names.index:
             findings.add(
@@ -70,6 +80,7 @@ def read_combinations(
                 state=entry.state,
                 factors=factors,
                 duration=entry.duration or shortest_duration(cases.cases[q] for q in factors),
+                long_term=long_term,
             )
         )
     if faultless:
@@ -103,33 +114,57 @@ def named_place(table: str, place: int, value: Any) -> KeyPath:
     return (table, place)
 
 
-def _factors(
+def read_factors(
     path: KeyPath,
-    entry: RawCombination,
-    faulty: frozenset[str],
-    cases: CaseTable,
+    raw: Mapping[str, object],
+    cases: Names,
     findings: Findings,
     quantities: Quantities,
 ) -> tuple[dict[int, float], bool]:
     """Return the factors that are not zero by case index, and whether all are good."""
     factors: dict[int, float] = {}
-    good = "factors" not in faulty
-    for name, value in entry.factors.items():
-        place = (*path, "factors", name)
-        case = cases.names.resolve(place, name)
-        factor = quantities.read(place, value, "dimensionless")
+    good = True
+    for name, value in raw.items():
+        case = cases.resolve((*path, name), name)
+        factor = quantities.read((*path, name), value, "dimensionless")
         if factor is not None and abs(factor) > GREATEST_FACTOR:
             findings.add(
-                place, found=f"{factor:g}", expected=f"a factor of at most {GREATEST_FACTOR:g}"
+                (*path, name),
+                found=f"{factor:g}",
+                expected=f"a factor of at most {GREATEST_FACTOR:g}",
             )
         if case is None or factor is None:
             good = False
         elif factor != 0.0:
             factors[case] = factor
-    if good and not factors:
-        found = "only zero factors" if entry.factors else "no factors"
-        findings.add((*path, "factors"), found=found, expected="at least one factor that is not 0")
     return factors, good
+
+
+def _long_term(
+    path: KeyPath,
+    entry: RawCombination,
+    factors: Mapping[int, float],
+    cases: CaseTable,
+    findings: Findings,
+    quantities: Quantities,
+) -> dict[int, float]:
+    """Return the long-term part; only a serviceability combination has one."""
+    place = (*path, "long_term")
+    part, _ = read_factors(place, entry.long_term, cases.names, findings, quantities)
+    if entry.long_term and entry.state == "strength":
+        findings.add(
+            place,
+            found="a long-term part of a strength combination",
+            expected="long_term in serviceability combinations only",
+            fix="Delete it.",
+        )
+    for case in part.keys() - factors.keys() if factors else ():
+        findings.add(
+            (*place, cases.cases[case].name),
+            found="a load case that is not among the factors",
+            expected="load cases of the combination",
+        )
+    return part
 
 
 def _check_all(

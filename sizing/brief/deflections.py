@@ -8,8 +8,9 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from sizing.brief.combinations import named_place
+from sizing.brief.combinations import named_place, read_factors
 from sizing.brief.findings import Findings, KeyPath, Names, Quantities, listed, quoted, shown
+from sizing.brief.load_cases import CaseTable
 from sizing.brief.model import Combination, DeflectionLimit, Support
 from sizing.brief.nodes_and_supports import FARTHEST, NodeTable
 from sizing.brief.raw_tables import DESCRIBED_HERE, RawLimit, read_entry
@@ -25,6 +26,7 @@ class _Known:
     """What limits refer to. ``states_known``: the combinations were read without a mistake."""
 
     nodes: NodeTable
+    cases: CaseTable
     supports: tuple[Support, ...]
     combinations: tuple[Combination, ...]
     names: Names
@@ -37,6 +39,7 @@ def read_deflection_limits(
     raw: Sequence[Any],
     nodes: NodeTable,
     supports: tuple[Support, ...],
+    cases: CaseTable,
     combinations: tuple[Combination, ...],
     names: Names,
     findings: Findings,
@@ -47,6 +50,7 @@ def read_deflection_limits(
     """Return the deflection limits in the order of the brief."""
     known = _Known(
         nodes=nodes,
+        cases=cases,
         supports=supports,
         combinations=combinations,
         names=names,
@@ -85,6 +89,8 @@ def _read(
     direction, direction_text = _direction((*path, "direction"), entry.direction, known)
     limit = None if "limit" in faulty else _limit(path, entry, nodes, known)
     combinations = _combinations((*path, "combinations"), entry.combinations, known)
+    precamber = _precamber((*path, "precamber"), entry, faulty, known)
+    _must_creep((*path, "component"), entry, combinations, known)
     if not nodes or not direction or limit is None or not combinations:
         return None
     return DeflectionLimit(
@@ -96,7 +102,46 @@ def _read(
         limit_text=entry.limit if isinstance(entry.limit, str) else f"{entry.limit}",
         combinations=tuple(combinations),
         relative_to=origin,
+        component=entry.component,
+        precamber=precamber,
     )
+
+
+def _precamber(
+    path: KeyPath, entry: RawLimit, faulty: frozenset[str], known: _Known
+) -> dict[int, float]:
+    """Return the precamber as factors on load cases; it belongs to the net final deflection."""
+    if not faulty & {"component", "precamber"}:
+        if entry.precamber and entry.component != "net final":
+            known.findings.add(
+                path,
+                found=f"a precamber beside component = {quoted(entry.component)}",
+                expected='component = "net final"',
+            )
+        elif entry.component == "net final" and not entry.precamber:
+            known.findings.add(
+                path,
+                found="nothing",
+                expected="the load cases that the precamber takes up, such as { permanent = 1.0 }",
+            )
+    factors, _ = read_factors(
+        path, entry.precamber, known.cases.names, known.findings, known.quantities
+    )
+    return factors
+
+
+def _must_creep(path: KeyPath, entry: RawLimit, combinations: Sequence[int], known: _Known) -> None:
+    """Record a final deflection in combinations that do not say what acts for long."""
+    chosen = [known.combinations[c] for c in combinations]
+    silent = [c.name for c in chosen if c.state == "serviceability" and not c.long_term]
+    if entry.component != "instantaneous" and silent and known.states_known:
+        known.findings.add(
+            path,
+            found=f"{quoted(entry.component)} in {listed(silent)} without a long-term part",
+            expected="long_term in every combination of a final deflection",
+            fix="Write long_term = { permanent = 1.0, ... }: permanent loads in full, variable "
+            "ones times psi2.",
+        )
 
 
 def _nodes(path: KeyPath, value: Any, origin: int | None, known: _Known) -> list[int]:

@@ -53,6 +53,13 @@ def read_cases(
                 found="a load case without loads",
                 expected="nodal = { ... } or self_weight = true",
             )
+        if entry.may_be_absent and entry.kind != "permanent" and "kind" not in faulty:
+            findings.add(
+                (*path, "may_be_absent"),
+                found=f"true in a case of kind {quoted(entry.kind)}",
+                expected="true for permanent loads only",
+                fix="Every other load may be absent as it is.",
+            )
         names.index[name] = len(cases)
         cases.append(
             LoadCase(
@@ -61,6 +68,9 @@ def read_cases(
                 nodal=nodal,
                 self_weight=entry.self_weight,
                 duration=entry.duration,
+                action=entry.action,
+                alternative_set=entry.alternative_set,
+                may_be_absent=entry.may_be_absent,
             )
         )
     if present and len(findings.problems) == before:

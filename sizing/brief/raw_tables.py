@@ -14,7 +14,7 @@ from typing import Any, ClassVar, Literal, TypeVar, get_args
 from pydantic import BaseModel, ConfigDict, Field, ValidationError
 
 from sizing.brief.findings import Findings, KeyPath, listed, quoted, shown
-from sizing.brief.model import ActionKind, LoadDuration, Objective, State
+from sizing.brief.model import ActionKind, DeflectionComponent, LoadDuration, Objective, State
 
 Held = Literal["x", "y", "z", "X", "Y", "Z"]
 
@@ -110,6 +110,11 @@ class RawCase(RawTable):
     duration: LoadDuration | None = Field(
         None, description=f"one of {', '.join(get_args(LoadDuration))}"
     )
+    action: str | None = Field(None, description="the name of the action that the case is part of")
+    alternative_set: str | None = Field(
+        None, description="a name shared by cases of which only one acts at a time"
+    )
+    may_be_absent: bool = Field(False, description="true or false")
 
 
 class RawCombination(RawTable):
@@ -124,6 +129,9 @@ class RawCombination(RawTable):
     duration: LoadDuration | None = Field(
         None, description=f"one of {', '.join(get_args(LoadDuration))}"
     )
+    long_term: dict[str, Any] = Field(
+        {}, description="the part that acts for long, such as { permanent = 1.0, snow = 0.2 }"
+    )
 
 
 class RawLimit(RawTable):
@@ -137,6 +145,12 @@ class RawLimit(RawTable):
     span: Any = None
     combinations: Any = None
     relative_to: str | None = Field(None, description="the name of a node")
+    component: DeflectionComponent = Field(
+        "instantaneous", description='"instantaneous", "final" or "net final"'
+    )
+    precamber: dict[str, Any] = Field(
+        {}, description="load cases with factors, such as { permanent = 1.0 }"
+    )
 
 
 class RawOption(RawTable):

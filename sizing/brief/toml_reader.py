@@ -61,6 +61,7 @@ def brief_from_tables(
         raw.deflection_limits,
         nodes,
         supports,
+        cases,
         combinations,
         names,
         findings,
