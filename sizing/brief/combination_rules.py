@@ -1,0 +1,159 @@
+"""Load combinations from a rule: cases with their kinds in, named combinations out.
+
+In a brief the rule is a name, or a table of its settings::
+
+    combination_rule = "EN 1990"
+
+    [combination_rule]
+    rule = "EN 1990"
+    expression = "6.10a and 6.10b"
+    psi = { snow = "snow Nordic", wind = [0.5, 0.2, 0.0] }
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+
+from sizing.brief.combination_rules_actions import Actions, action_name, actions_of
+from sizing.brief.combination_rules_asce7 import asce7, read_asce7
+from sizing.brief.combination_rules_draft import finished
+from sizing.brief.combination_rules_durations import usual_durations
+from sizing.brief.combination_rules_en1990 import USUAL_PSI, en1990, read_en1990
+from sizing.brief.findings import Findings, KeyPath, quoted, shown
+from sizing.brief.model import Combination, LoadCase
+
+EN_1990 = "EN 1990"
+ASCE_7: dict[str, tuple[str, str]] = {
+    f"ASCE {edition} {method}": (edition, method)
+    for edition in ("7-16", "7-22")
+    for method in ("LRFD", "ASD")
+}
+RULES = (EN_1990, *ASCE_7)
+
+MOST_COMBINATIONS = 2000
+"""More than this is no set that anyone can check; alternatives are then not told apart."""
+
+
+def expand(
+    rule: str,
+    cases: Sequence[LoadCase],
+    settings: Mapping[str, object],
+    standards: Iterable[str] = (),
+) -> tuple[Combination, ...]:
+    """Return the combinations of ``rule`` (see :data:`RULES`) for the cases.
+
+    ``standards`` are the names of the options' standards: they settle the usual load durations.
+    Raises :class:`sizing.errors.InputError` with every mistake in the settings.
+    """
+    findings = Findings("combination rule")
+    combinations = read_rule(findings, (), {"rule": rule, **settings}, cases, standards)
+    findings.raise_if_any()
+    return combinations
+
+
+def read_rule(
+    findings: Findings,
+    path: KeyPath,
+    value: object,
+    cases: Sequence[LoadCase],
+    standards: Iterable[str] = (),
+) -> tuple[Combination, ...]:
+    """Return the combinations of the brief's ``combination_rule``, at key path ``path``.
+
+    ``value`` is the rule's name or its table. Mistakes are recorded in ``findings``; the answer
+    is then empty.
+    """
+    table = {"rule": value} if isinstance(value, str) else value
+    if not isinstance(table, Mapping):
+        expected = f"the name of a rule ({', '.join(RULES)}) or a table with the key rule"
+        findings.add(path, found=shown(value), expected=expected)
+        return ()
+    rule = _rule_name(findings, (*path, "rule"), table.get("rule"))
+    settings = {str(key): item for key, item in table.items() if key != "rule"}
+    before = len(findings.problems)
+    _check_actions(findings, cases)
+    if rule is None:
+        return ()
+    actions = actions_of(cases, by_kind=rule != EN_1990)
+    if _too_many(findings, path, actions) or len(findings.problems) > before:
+        return ()
+    usual = usual_durations(standards)
+    if rule == EN_1990:
+        european = read_en1990(findings, path, settings, actions)
+        drafts = en1990(cases, actions, european)
+    else:
+        american = read_asce7(findings, path, settings, cases, *ASCE_7[rule])
+        drafts = asce7(cases, actions, american)
+    if len(findings.problems) > before:
+        return ()
+    return finished(drafts, cases, usual, rule)
+
+
+def usual_long_term(factors: Mapping[int, float], cases: Sequence[LoadCase]) -> dict[int, float]:
+    """Return the long-term part of a serviceability combination that is written out by hand.
+
+    Permanent actions with their factor, variable ones with ψ2 of EN 1990 Table A1.1 (of their
+    kind), but not more than their factor.
+    """
+    parts: dict[int, float] = {}
+    for q, factor in factors.items():
+        kind = cases[q].kind
+        psi2 = USUAL_PSI[kind][2] if kind in USUAL_PSI else abs(factor)
+        share = min(psi2, abs(factor))
+        if share != 0.0:
+            parts[q] = share if factor > 0.0 else -share
+    return parts
+
+
+def _rule_name(findings: Findings, path: KeyPath, value: object) -> str | None:
+    folded = {"".join(name.casefold().split()): name for name in RULES}
+    if isinstance(value, str):
+        known = folded.get("".join(value.casefold().split()))
+        if known is not None:
+            return known
+    findings.add(
+        path,
+        found=shown(value),
+        expected="one of " + ", ".join(quoted(name) for name in RULES),
+        fix=findings.did_you_mean(value, RULES) if isinstance(value, str) else "",
+    )
+    return None
+
+
+def _check_actions(findings: Findings, cases: Sequence[LoadCase]) -> None:
+    """Record cases of different kinds in one action, and permanent keys on variable cases."""
+    kinds: dict[str, str] = {}
+    for case in cases:
+        path = ("cases", case.name)
+        if case.kind in ("permanent", "settlement"):
+            continue
+        kind = kinds.setdefault(action_name(case), case.kind)
+        if kind != case.kind:
+            findings.add(
+                (*path, "action"),
+                found=f"a {case.kind} case in the action {quoted(action_name(case))}",
+                expected=f"cases of one kind in one action; its first case is {kind}",
+            )
+        if case.may_be_absent:
+            findings.add(
+                (*path, "may_be_absent"),
+                found=f"true for a {case.kind} case",
+                expected="it on permanent cases only; a variable action may always be absent",
+            )
+
+
+def _too_many(findings: Findings, path: KeyPath, actions: Actions) -> bool:
+    count = 2 * len(actions.optional) * len(actions.settlements)
+    for action in actions.variable:
+        count *= len(action.or_none)
+    if count <= MOST_COMBINATIONS:
+        return False
+    widest = max(actions.variable, key=lambda action: len(action.choices), default=None)
+    name = "the permanent cases that may be absent" if widest is None else widest.name
+    findings.add(
+        path,
+        found=f"more than {MOST_COMBINATIONS} combinations of the cases",
+        expected=f"at most {MOST_COMBINATIONS}",
+        fix=f"Give cases of {quoted(name)} that never act together the same alternative_set.",
+    )
+    return True
