@@ -1,0 +1,167 @@
+"""Issues the documents: all of them whole, or none and what stood there before."""
+
+from __future__ import annotations
+
+import os
+import secrets
+from collections.abc import Sequence
+from contextlib import suppress
+from dataclasses import dataclass
+from datetime import UTC, date, datetime
+from pathlib import Path
+
+from sizing.errors import OutputError
+from sizing.results import JobResult
+
+WORKBOOK, DRAWING, RESULT, REPORT = "schedule.xlsx", "truss.svg", "result.json", "report.html"
+DOCUMENTS = (WORKBOOK, REPORT, DRAWING, RESULT)
+"""File names of the documents, in the order in which they are named to the user."""
+
+
+def write_documents(
+    result: JobResult, folder: Path, *, issued: date | None = None
+) -> tuple[Path, ...]:
+    """Write all documents of ``result`` into ``folder`` and return their paths.
+
+    ``folder`` is made where it is missing. ``issued`` is the date on the documents; by default
+    :func:`issue_date`. Everything is rendered before the first byte is written, each file is
+    written beside its place and then renamed, and a failed rename undoes the earlier ones, so
+    that a failure leaves the folder as it was.
+
+    Raises :class:`OutputError` with file and reason.
+    """
+    contents = render_documents(result, issued or issue_date())
+    return replace_all(folder, contents)
+
+
+def render_documents(result: JobResult, issued: date) -> dict[str, bytes]:
+    """Return the content of every document by file name."""
+    from sizing.documents.drawing import svg_bytes
+    from sizing.documents.report import report_bytes
+    from sizing.documents.result_json import json_bytes
+    from sizing.documents.workbook import workbook_bytes
+
+    return {
+        WORKBOOK: workbook_bytes(result, issued),
+        REPORT: report_bytes(result, issued),
+        DRAWING: svg_bytes(result),
+        RESULT: json_bytes(result),
+    }
+
+
+def issue_date() -> date:
+    """Return the date for documents: SOURCE_DATE_EPOCH (seconds, UTC) where set, else today.
+
+    SOURCE_DATE_EPOCH is the convention of the reproducible-builds project. Raises
+    :class:`OutputError` when it is set to something else than seconds.
+    """
+    epoch = os.environ.get("SOURCE_DATE_EPOCH", "")
+    if not epoch:
+        return datetime.now(tz=UTC).astimezone().date()
+    try:
+        return datetime.fromtimestamp(int(epoch), tz=UTC).date()
+    except (ValueError, OverflowError, OSError):
+        raise OutputError(
+            f"the environment variable SOURCE_DATE_EPOCH is {epoch!r}; expected whole seconds "
+            "since 1970, such as 1767225600. Unset it to date documents with today"
+        ) from None
+
+
+@dataclass(slots=True)
+class _Place:
+    """One file on its way: the new content beside it, and where the old one was put."""
+
+    target: Path
+    fresh: Path
+    old: Path
+    moved_away: bool = False
+    in_place: bool = False
+
+
+def replace_all(folder: Path, contents: dict[str, bytes]) -> tuple[Path, ...]:
+    """Write ``contents`` (file name to bytes) into ``folder``: all files or none."""
+    made = _make(folder)
+    tag = secrets.token_hex(4)
+    places = [
+        _Place(
+            target=folder / name,
+            fresh=folder / f".{name}.{tag}.new",
+            old=folder / f".{name}.{tag}.old",
+        )
+        for name in contents
+    ]
+    current = folder
+    try:
+        for place, content in zip(places, contents.values(), strict=True):
+            current = place.target
+            if place.target.is_dir():
+                raise IsADirectoryError(None, "a folder stands where the file belongs")
+            _write(place.fresh, content)
+        for place in places:
+            current = place.target
+            _exchange(place)
+    except OSError as failure:
+        _undo(places, made)
+        raise OutputError(
+            f"{current}: cannot be written: {failure.strerror or failure}. No document was "
+            "changed; free the file (close it in other programs), or name another folder"
+        ) from failure
+    except BaseException:  # interrupted: tidy up, then let it pass
+        _undo(places, made)
+        raise
+    for place in places:
+        with suppress(OSError):  # the new files stand; a left-over hidden copy does no harm
+            place.old.unlink(missing_ok=True)
+    return tuple(place.target for place in places)
+
+
+def _make(folder: Path) -> tuple[Path, ...]:
+    """Make ``folder`` and return the folders made, the deepest first."""
+    missing = [p for p in (folder, *folder.parents) if not p.exists()]
+    made: list[Path] = []
+    try:
+        if folder.exists() and not folder.is_dir():
+            raise NotADirectoryError(None, "it is a file, not a folder")
+        for path in reversed(missing):
+            path.mkdir(exist_ok=True)
+            made.insert(0, path)
+    except OSError as failure:
+        _remove(made)
+        raise OutputError(
+            f"{folder}: cannot be used as folder for documents: {failure.strerror or failure}. "
+            "Name a folder that can be written to"
+        ) from failure
+    return tuple(made)
+
+
+def _write(path: Path, content: bytes) -> None:
+    with path.open("xb") as file:
+        file.write(content)
+        file.flush()
+        os.fsync(file.fileno())
+
+
+def _exchange(place: _Place) -> None:
+    if place.target.exists() or place.target.is_symlink():
+        os.replace(place.target, place.old)
+        place.moved_away = True
+    os.replace(place.fresh, place.target)
+    place.in_place = True
+
+
+def _undo(places: Sequence[_Place], made: Sequence[Path]) -> None:
+    for place in reversed(places):
+        with suppress(OSError):  # undo what can be undone; the first failure is reported
+            if place.in_place and not place.moved_away:
+                place.target.unlink()
+            if place.moved_away:
+                os.replace(place.old, place.target)
+        with suppress(OSError):
+            place.fresh.unlink(missing_ok=True)
+    _remove(made)
+
+
+def _remove(folders: Sequence[Path]) -> None:
+    for folder in folders:
+        with suppress(OSError):
+            folder.rmdir()

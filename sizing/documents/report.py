@@ -1,0 +1,152 @@
+"""report.html: the calculation report, one file that opens and prints anywhere."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from datetime import date
+from typing import Any
+
+from sizing.documents.drawing import option_svg
+from sizing.documents.plain_text import visible
+from sizing.documents.quantities import Quantity, ShownUnits
+from sizing.documents.rows import job_tables
+from sizing.documents.tables import Cell, Column, Table, essential_part, printed
+from sizing.documents.wording import CLOSING_CAUTION, met, outcome_sentence
+from sizing.results import JobResult, WorkedCheck
+from sizing.standards.contract import Step
+
+FIGURES = 4
+"""Significant figures of a worked line: enough to follow by hand to 1 in 1000."""
+
+TEMPLATE = "report.html.jinja"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class _Line:
+    """One worked line ready for print."""
+
+    symbol: str
+    expression: str
+    value: str
+    clause: str
+    meaning: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class _Worked:
+    """One worked check ready for print."""
+
+    heading: str
+    lines: tuple[_Line, ...]
+    closing: str
+    met: bool
+
+
+def report_bytes(job: JobResult, issued: date) -> bytes:
+    """Return report.html for ``job`` as UTF-8, with drawings inside and no outside links."""
+    tables = job_tables(job, issued)
+    cover, *shared = tables.shared
+    page = _template().render(
+        title=visible(job.brief.title),
+        cover=cover,
+        shared={table.name: table for table in shared},
+        options=[
+            {
+                "name": visible(option.option),
+                "outcome": outcome_sentence(option),
+                "adequate": option.adequate,
+                "drawing": option_svg(job, option),
+                "worked": [_worked(check, tables.units) for check in option.worked],
+                "tables": {table.name: essential_part(table) for table in own},
+            }
+            for option, own in tables.by_option
+        ],
+        brief=f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256}",
+        maker=f"sizing {job.version}",
+        issued=issued.isoformat(),
+        closing=CLOSING_CAUTION,
+        us=tables.units.us,
+    )
+    return (page + "\n").encode("utf-8", "replace")
+
+
+def _template() -> Any:
+    from jinja2 import Environment, PackageLoader, StrictUndefined
+
+    environment = Environment(
+        loader=PackageLoader("sizing.documents", "."),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+    )
+    environment.filters["printed"] = printed
+    environment.filters["cell_class"] = _cell_class
+    environment.filters["css_text"] = _css_text
+    return environment.get_template(TEMPLATE)
+
+
+def _cell_class(cell: Cell, column: Column) -> str:
+    alarm = " alarm" if cell in ("NO", "UPLIFT", "no resistance") else ""
+    return f"{'n' if column.numeric else 't'}{alarm}"
+
+
+def _css_text(words: str) -> str:
+    """Return words as a CSS string in which nothing but letters and digits stands bare."""
+    return (
+        '"' + "".join(c if c.isalnum() and c.isascii() else f"\\{ord(c):x} " for c in words) + '"'
+    )
+
+
+def _worked(check: WorkedCheck, units: ShownUnits) -> _Worked:
+    passes = met(check.utilisation)
+    force = units.force.fitted([check.force])
+    share = f"{check.utilisation:.3f}" if math.isfinite(check.utilisation) else "no resistance"
+    return _Worked(
+        heading=f"Member {visible(check.mark)}, {visible(check.designation)}: {check.sense}",
+        lines=tuple(_line(step, units) for step in check.steps),
+        closing=(
+            f"Force in {visible(check.combination)}: {force.text(check.force)} ({check.sense}); "
+            f"utilisation {share}"
+        ),
+        met=passes,
+    )
+
+
+def _line(step: Step, units: ShownUnits) -> _Line:
+    return _Line(
+        symbol=visible(step.symbol),
+        expression=visible(step.expression),
+        value=quantity_text(step.value, step.unit, units),
+        clause=visible(step.clause),
+        meaning=visible(step.meaning),
+    )
+
+
+def quantity_text(value: float, unit: str, units: ShownUnits) -> str:
+    """Return an SI value in the units of the report, four significant figures."""
+    shown: dict[str, Quantity] = {
+        "N": units.force,
+        "m": units.movement,
+        "m²": units.area,
+        "m2": units.area,
+        "m⁴": units.second_moment,
+        "m4": units.second_moment,
+        "Pa": units.stress,
+    }
+    if not math.isfinite(value):
+        return "unlimited"
+    known = shown.get(unit)
+    if known is not None:
+        return f"{_figures(known.of(value))} {known.unit}"
+    return f"{_figures(value)} {'' if unit == '-' else visible(unit)}".strip()
+
+
+def _figures(value: float) -> str:
+    if value == 0.0:
+        return "0"
+    size = math.floor(math.log10(abs(value)))
+    if -4 <= size <= 8:
+        return f"{value:.{max(0, FIGURES - 1 - size)}f}"
+    return f"{value:.{FIGURES - 1}e}"

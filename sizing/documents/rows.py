@@ -1,0 +1,71 @@
+"""The one set of tables from which every document is written."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import date
+
+from sizing.documents.force_tables import (
+    combinations_table,
+    deflections_table,
+    joint_forces_table,
+    reactions_table,
+)
+from sizing.documents.job_tables import (
+    basis_table,
+    cautions_table,
+    cover_table,
+    loads_table,
+    nodes_table,
+    summary_table,
+)
+from sizing.documents.option_tables import (
+    groups_table,
+    members_table,
+    restraint_table,
+    sections_table,
+)
+from sizing.documents.quantities import ShownUnits, shown_units
+from sizing.documents.tables import Table
+from sizing.results import JobResult, OptionResult
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class JobTables:
+    """All tables of a job: ``shared`` ones, and ``by_option`` pairs of option and its tables."""
+
+    units: ShownUnits
+    shared: tuple[Table, ...]
+    by_option: tuple[tuple[OptionResult, tuple[Table, ...]], ...]
+
+
+def job_tables(job: JobResult, issued: date) -> JobTables:
+    """Return every table of ``job`` in the order in which it is printed."""
+    units = shown_units(job.brief.units)
+    return JobTables(
+        units=units,
+        shared=(
+            cover_table(job, issued),
+            summary_table(job, units),
+            nodes_table(job.brief, units),
+            loads_table(job.brief, units),
+        ),
+        by_option=tuple((option, option_tables(job, option, units)) for option in job.options),
+    )
+
+
+def option_tables(job: JobResult, option: OptionResult, units: ShownUnits) -> tuple[Table, ...]:
+    """Return the tables of one option."""
+    brief = job.brief
+    return (
+        members_table(brief, option, units),
+        sections_table(option, units),
+        groups_table(brief, option, units),
+        combinations_table(brief, option, units),
+        deflections_table(option, units),
+        reactions_table(brief, option, units),
+        joint_forces_table(brief, option, units),
+        restraint_table(brief, option, units),
+        basis_table(job, option, units),
+        cautions_table(option),
+    )

@@ -1,0 +1,329 @@
+"""The schedule workbook: one table per sheet, typed cells, ready to print.
+
+Text goes in as text even where it begins with ``=``, ``+``, ``-`` or ``@``; there are no
+formulas, no macros and no merged cells. The file's bytes depend on the tables alone.
+"""
+
+from __future__ import annotations
+
+import re
+import zipfile
+from collections.abc import Iterable
+from datetime import date
+from io import BytesIO
+from typing import TYPE_CHECKING, Any
+
+from sizing.documents.plain_text import shortened, visible
+from sizing.documents.rows import JobTables, job_tables
+from sizing.documents.tables import Cell, Column, Table
+from sizing.results import JobResult
+
+if TYPE_CHECKING:
+    from openpyxl import Workbook
+    from openpyxl.worksheet.worksheet import Worksheet
+
+LONGEST_SHEET_NAME = 31
+"""Characters in a sheet name (limit of spreadsheet programs)."""
+
+ZIP_DATE = (1980, 1, 1, 0, 0, 0)
+"""The earliest time a ZIP entry can hold; fixed so that equal content gives equal bytes."""
+
+WIDEST_TEXT, WIDEST_PROSE, NARROWEST = 34, 60, 7
+"""Column widths in characters, so that a page stays legible."""
+
+_PAPER = {(False, False): 9, (False, True): 8, (True, False): 1, (True, True): 3}
+"""(US, large) to paper size code of ISO/IEC 29500: A4, A3, letter, tabloid."""
+
+_ILLEGAL_IN_SHEET_NAME = re.compile(r"[\[\]:*?/\\]")
+_ESCAPE_LOOKALIKE = re.compile(r"_(?=x[0-9A-Fa-f]{4}_)")
+
+
+def workbook_bytes(job: JobResult, issued: date) -> bytes:
+    """Return schedule.xlsx for ``job``."""
+    from openpyxl import Workbook
+
+    tables = job_tables(job, issued)
+    book = Workbook()
+    book.remove(book.active)
+    looks = _Looks(book)
+    footer = _Footer(job, issued)
+    names = _SheetNames()
+    for table in tables.shared:
+        sheet = book.create_sheet(names.take(table.name))
+        _fill(sheet, table, visible(job.brief.title), looks, footer, tables)
+        if table.name == "Cover":
+            _signing_boxes(sheet, looks)
+    several = len(tables.by_option) > 1
+    for option, own in tables.by_option:
+        for table in own:
+            wanted = f"{table.name} {option.option}" if several else table.name
+            sheet = book.create_sheet(names.take(wanted))
+            above = f"{visible(job.brief.title)} · option {visible(option.option)}"
+            _fill(sheet, table, above, looks, footer, tables)
+    book.properties.title = shortened(visible(job.brief.title), 200)
+    book.properties.creator = f"sizing {job.version}"
+    return _fixed_bytes(book, issued)
+
+
+class _SheetNames:
+    """Hands out legal sheet names, unique without regard to case."""
+
+    def __init__(self) -> None:
+        self._taken: set[str] = {"history"}  # reserved by spreadsheet programs
+
+    def take(self, wanted: str) -> str:
+        """Return ``wanted`` made legal, shortened and, where taken, numbered."""
+        legal = _ILLEGAL_IN_SHEET_NAME.sub("-", visible(wanted)).strip().strip("'") or "Sheet"
+        name = _utf16_cut(legal, LONGEST_SHEET_NAME).rstrip("' ")
+        number = 2
+        while name.lower() in self._taken:
+            tail = f" {number}"
+            name = _utf16_cut(legal, LONGEST_SHEET_NAME - len(tail)).rstrip("' ") + tail
+            number += 1
+        self._taken.add(name.lower())
+        return name
+
+
+def _utf16_cut(text: str, units: int) -> str:
+    """Cut to ``units`` UTF-16 code units, which is how spreadsheet programs count."""
+    kept = ""
+    used = 0
+    for character in text:
+        used += 1 if ord(character) < 0x10000 else 2
+        if used > units:
+            break
+        kept += character
+    return kept
+
+
+class _Footer:
+    """Traceability on every page: brief and its hash, page n of N, version and date."""
+
+    def __init__(self, job: JobResult, issued: date) -> None:
+        source = job.brief.source
+        name = shortened(visible(source.name), 50)
+        self.left = _no_codes(f"{name} · SHA-256 {source.sha256[:12]}")
+        self.right = _no_codes(f"sizing {job.version} · {issued.isoformat()}")
+        self.title = _no_codes(shortened(visible(job.brief.title), 70))
+
+
+def _no_codes(text: str) -> str:
+    return text.replace("&", "&&")
+
+
+class _Looks:
+    """The styles of the workbook, each registered once."""
+
+    def __init__(self, book: Workbook) -> None:
+        from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
+
+        self.book = book
+        self.fine = Side(style="thin", color="9AA5AE")
+        self.hair = Side(style="hair", color="9AA5AE")
+        self.strong = Side(style="medium", color="2B3A46")
+        self.font = Font(name="Arial", size=9)
+        self.bold = Font(name="Arial", size=9, bold=True)
+        self.title = Font(name="Arial", size=14, bold=True, color="2B3A46")
+        self.quiet = Font(name="Arial", size=9, italic=True, color="4A5560")
+        self.alarm = Font(name="Arial", size=9, bold=True, color="8A2C0D")
+        self.head_fill = PatternFill("solid", start_color="E6EAED")
+        self.under = Border(bottom=self.hair)
+        self.over = Border(top=self.strong)
+        self.box = Border(top=self.fine, bottom=self.fine, left=self.fine, right=self.fine)
+        self.head_border = Border(top=self.fine, bottom=self.strong)
+        self.alignment = Alignment
+        self._known: dict[tuple[object, ...], Any] = {}
+
+    def of(self, column: Column, *, text: bool, total: bool, alarm: bool) -> str:
+        """Return the name of the style for one kind of cell."""
+        key = (column.style, column.places, text, total, alarm)
+        if key not in self._known:
+            from openpyxl.styles import NamedStyle
+
+            name = f"cell {len(self._known) + 1}"
+            style = NamedStyle(name=name)
+            style.font = self.alarm if alarm else self.bold if total else self.font
+            style.border = self.over if total else self.under
+            style.number_format = "@" if text else _number_format(column)
+            style.alignment = self.alignment(
+                horizontal="right" if column.numeric else "left",
+                vertical="top",
+                wrap_text=text and not column.numeric,
+            )
+            self.book.add_named_style(style)
+            self._known[key] = name
+        return str(self._known[key])
+
+
+def _number_format(column: Column) -> str:
+    if column.style == "whole":
+        return "0"
+    places = 2 if column.style == "ratio" else column.places
+    plain = "0." + "0" * places if places else "0"
+    return f'{plain} "T";-{plain} "C";{plain}' if column.style == "force" else plain
+
+
+def _fill(
+    sheet: Worksheet,
+    table: Table,
+    above: str,
+    looks: _Looks,
+    footer: _Footer,
+    tables: JobTables,
+) -> None:
+    _put(sheet, 1, 1, table.title).font = looks.title
+    lines = (above, *table.notes)
+    for i, line in enumerate(lines, 2):
+        _put(sheet, i, 1, line).font = looks.quiet
+    head = len(lines) + 2
+    for j, column in enumerate(table.columns, 1):
+        cell = _put(sheet, head, j, f"{column.head}\n{column.unit}" if column.unit else column.head)
+        cell.font, cell.fill, cell.border = looks.bold, looks.head_fill, looks.head_border
+        cell.alignment = looks.alignment(
+            horizontal="right" if column.numeric else "left", vertical="bottom", wrap_text=True
+        )
+    for i, row in enumerate(table.rows, head + 1):
+        for j, (value, column) in enumerate(zip(row, table.columns, strict=True), 1):
+            _put_styled(sheet, i, j, value, column, looks, total=False)
+    last = head + len(table.rows)
+    if table.totals is not None:
+        for j, (value, column) in enumerate(zip(table.totals, table.columns, strict=True), 1):
+            _put_styled(sheet, last + 1, j, value, column, looks, total=True)
+    _size_columns(sheet, table, head, looks)
+    _page(sheet, table, head, last, footer, tables)
+
+
+def _put(sheet: Worksheet, row: int, column: int, value: Cell) -> Any:
+    cell = sheet.cell(row=row, column=column)
+    if isinstance(value, str):
+        cell.value = _ESCAPE_LOOKALIKE.sub("_x005F_", value)
+        cell.data_type = "s"  # whatever the text looks like
+        if value.startswith(("=", "+", "-", "@")):
+            cell.quotePrefix = True
+    elif value is not None:
+        cell.value = value
+    return cell
+
+
+def _put_styled(
+    sheet: Worksheet, row: int, j: int, value: Cell, column: Column, looks: _Looks, *, total: bool
+) -> None:
+    alarm = value in ("NO", "UPLIFT", "no resistance")
+    cell = _put(sheet, row, j, value)
+    prefixed = cell.quotePrefix
+    cell.style = looks.of(column, text=isinstance(value, str), total=total, alarm=alarm)
+    if prefixed:
+        cell.quotePrefix = True
+
+
+def _size_columns(sheet: Worksheet, table: Table, head: int, looks: _Looks) -> None:
+    from openpyxl.utils import get_column_letter
+
+    from sizing.documents.tables import printed
+
+    deepest = 1
+    for j, column in enumerate(table.columns):
+        cells = [*table.rows, *([table.totals] if table.totals else [])]
+        widest = max((len(printed(row[j], column)) for row in cells), default=0)
+        cap = WIDEST_PROSE if column.style == "prose" else WIDEST_TEXT
+        if len(table.columns) == 2 and column.style == "prose":
+            cap = 110
+        words = max(len(word) for word in f"{column.head} {column.unit}".split())
+        width = min(max(widest, words, NARROWEST - 2), cap) + 2
+        sheet.column_dimensions[get_column_letter(j + 1)].width = width
+        deepest = max(deepest, _lines(column.head, width) + (1 if column.unit else 0))
+    sheet.row_dimensions[head].height = 12.5 * deepest + 3
+    for i, row in enumerate(table.rows, head + 1):
+        lines = 1
+        for j, (value, column) in enumerate(zip(row, table.columns, strict=True), 1):
+            if isinstance(value, str) and not column.numeric:
+                width = sheet.column_dimensions[get_column_letter(j)].width
+                lines = max(lines, _lines(value, width - 1))
+        if lines > 1:
+            sheet.row_dimensions[i].height = min(12.5 * lines + 1, 400)
+
+
+def _lines(text: str, width: float) -> int:
+    """Return how many lines the words of ``text`` take in a column of ``width`` characters."""
+    lines, used = 1, 0
+    for word in text.split(" "):
+        length = len(word)
+        if used and used + 1 + length > width:
+            lines, used = lines + 1, 0
+        if length > width:
+            lines += int(length // width)
+            length = int(length % width)
+        used += length + (1 if used else 0)
+    return lines
+
+
+def _page(
+    sheet: Worksheet, table: Table, head: int, last: int, footer: _Footer, tables: JobTables
+) -> None:
+    from openpyxl.utils import get_column_letter
+
+    right = get_column_letter(len(table.columns))
+    bottom = last + (1 if table.totals is not None else 0)
+    items = len(table.columns) == 2
+    keys = 0 if items else table.keys
+    sheet.sheet_view.showGridLines = False
+    sheet.freeze_panes = sheet.cell(row=head + 1, column=keys + 1)
+    if table.rows and not items:
+        sheet.auto_filter.ref = f"A{head}:{right}{last}"
+    sheet.print_area = f"A1:{right}{bottom}"
+    sheet.print_title_rows = f"1:{head}"
+    if table.pages_wide > 1:
+        sheet.print_title_cols = f"A:{get_column_letter(keys)}"
+    setup = sheet.page_setup
+    setup.orientation = "landscape"
+    setup.paperSize = _PAPER[tables.units.us, table.large_paper]
+    setup.pageOrder = "overThenDown"
+    setup.fitToWidth, setup.fitToHeight = table.pages_wide, 0
+    sheet.sheet_properties.pageSetUpPr.fitToPage = True
+    margins = sheet.page_margins
+    margins.left = margins.right = 0.5
+    margins.top, margins.bottom, margins.header, margins.footer = 0.7, 0.7, 0.35, 0.35
+    sheet.oddHeader.left.text = footer.title
+    sheet.oddHeader.right.text = _no_codes(sheet.title)
+    sheet.oddFooter.left.text = footer.left
+    sheet.oddFooter.center.text = "Page &P of &N"
+    sheet.oddFooter.right.text = footer.right
+    for part in (sheet.oddHeader.left, sheet.oddHeader.right, sheet.oddFooter.left,
+                 sheet.oddFooter.center, sheet.oddFooter.right):  # fmt: skip
+        part.size = 8
+
+
+def _signing_boxes(sheet: Worksheet, looks: _Looks) -> None:
+    """Add empty boxes for who prepared and who checked, on the cover below the facts."""
+    row = sheet.max_row + 2
+    for label in ("Prepared by, date", "Checked by, date", "Revision"):
+        name, box = _put(sheet, row, 1, label), _put(sheet, row, 2, None)
+        name.font, name.border, box.border = looks.bold, looks.box, looks.box
+        name.alignment = looks.alignment(vertical="center")
+        sheet.row_dimensions[row].height = 28
+        row += 1
+    sheet.print_area = f"A1:B{row - 1}"
+
+
+def _fixed_bytes(book: Workbook, issued: date) -> bytes:
+    """Save the book with fixed times: document properties by ``issued``, ZIP entries by 1980."""
+    raw = BytesIO()
+    book.save(raw)
+    fixed = BytesIO()
+    stamp = f"{issued.isoformat()}T00:00:00Z".encode()
+    with zipfile.ZipFile(raw) as source, zipfile.ZipFile(fixed, "w") as target:
+        for name in _sorted_parts(source.namelist()):
+            content = source.read(name)
+            if name == "docProps/core.xml":
+                content = re.sub(
+                    rb"(<dcterms:(?:created|modified)[^>]*>)[^<]*", rb"\g<1>" + stamp, content
+                )
+            entry = zipfile.ZipInfo(name, date_time=ZIP_DATE)
+            entry.external_attr = 0o644 << 16
+            target.writestr(entry, content, compress_type=zipfile.ZIP_DEFLATED, compresslevel=6)
+    return fixed.getvalue()
+
+
+def _sorted_parts(names: Iterable[str]) -> list[str]:
+    """Content types first, as readers expect, the rest by name."""
+    return sorted(names, key=lambda name: (name != "[Content_Types].xml", name))
