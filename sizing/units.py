@@ -278,7 +278,7 @@ def _converted(digits: str, shown: str, expected: str, size: Fraction) -> float:
     if math.isfinite(number) and abs(int(exponent or 0)) < _LARGEST_EXPONENT:
         result = float(Fraction(digits) * size)
     if not math.isfinite(result):
-        raise QuantityError(found=shown, expected=f"{expected}; a finite number")
+        raise QuantityError(found=shown, expected=f"{expected}, and finite")
     return result
 
 

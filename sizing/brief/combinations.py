@@ -47,10 +47,8 @@ def read_combinations(
         findings, "combination", declared, complete=complete and len(declared) == len(raw)
     )
     combinations: list[Combination] = []
-    faultless = complete
     for path, entry, faulty in entries:
         if entry is None:
-            faultless = False
             continue
         factors, good = read_factors(
             (*path, "factors"), entry.factors, cases.names, findings, quantities
@@ -63,7 +61,6 @@ def read_combinations(
                 expected="at least one factor that is not 0",
             )
         long_term = _long_term(path, entry, factors, cases, findings, quantities)
-        faultless = faultless and good and not faulty
         if entry.name in names.index:
             findings.add(
                 (*path, "name"),
@@ -83,8 +80,9 @@ def read_combinations(
                 long_term=long_term,
             )
         )
-    if faultless:
-        _check_all(combinations, cases.cases, findings)
+    if complete and all(e is not None and "state" not in faulty for _, e, faulty in entries):
+        _must_hold_strength([e for _, e, _ in entries if e is not None], findings)
+    _caution(combinations, cases.cases, findings)
     return tuple(combinations), names
 
 
@@ -100,9 +98,8 @@ def _entry(
 ) -> tuple[KeyPath, RawCombination | None, frozenset[str]]:
     path = named_place("combinations", place, value)
     entry, faulty = read_entry(RawCombination, value, path, findings, "a table [[combinations]]")
-    if entry is not None and "name" not in faulty and not entry.name.strip():
-        findings.add((*path, "name"), found="an empty name", expected="a name as text")
-        faulty |= {"name"}
+    if entry is not None and "name" not in faulty:
+        findings.check_name((*path, "name"), entry.name, "combination")
     return path, entry, faulty
 
 
@@ -167,20 +164,22 @@ def _long_term(
     return part
 
 
-def _check_all(
-    combinations: Sequence[Combination], cases: Sequence[LoadCase], findings: Findings
-) -> None:
-    if not any(c.state == "strength" for c in combinations):
+def _must_hold_strength(entries: Sequence[RawCombination], findings: Findings) -> None:
+    if not any(entry.state == "strength" for entry in entries):
+        found = f"no strength combination among {len(entries)}" if entries else "nothing"
         findings.add(
             ("combinations",),
-            found=f"no strength combination among {len(combinations)}"
-            if combinations
-            else "nothing",
+            found=found,
             expected='at least one table [[combinations]] with state = "strength"',
         )
+
+
+def _caution(
+    combinations: Sequence[Combination], cases: Sequence[LoadCase], findings: Findings
+) -> None:
     used = {q for c in combinations for q in c.factors}
     for q, case in enumerate(cases):
-        if q not in used and combinations:
+        if q not in used:
             findings.caution(f"Load case {case.name} is in no combination.")
     for c in combinations:
         own = [cases[q].name for q in c.factors if cases[q].self_weight]

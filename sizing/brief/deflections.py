@@ -23,7 +23,10 @@ LEAST_DIVISOR = 10.0
 
 @dataclass(frozen=True, kw_only=True)
 class _Known:
-    """What limits refer to. ``states_known``: the combinations were read without a mistake."""
+    """What limits refer to.
+
+    ``supports_known``, ``states_known``: supports and combinations were read without a mistake.
+    """
 
     nodes: NodeTable
     cases: CaseTable
@@ -32,6 +35,7 @@ class _Known:
     names: Names
     findings: Findings
     quantities: Quantities
+    supports_known: bool
     states_known: bool
 
 
@@ -45,6 +49,7 @@ def read_deflection_limits(
     findings: Findings,
     quantities: Quantities,
     *,
+    supports_known: bool,
     states_known: bool,
 ) -> tuple[DeflectionLimit, ...]:
     """Return the deflection limits in the order of the brief."""
@@ -56,6 +61,7 @@ def read_deflection_limits(
         names=names,
         findings=findings,
         quantities=quantities,
+        supports_known=supports_known,
         states_known=states_known,
     )
     limits: list[DeflectionLimit] = []
@@ -65,11 +71,12 @@ def read_deflection_limits(
         entry, faulty = read_entry(RawLimit, value, path, findings, "a table [[deflection_limits]]")
         if entry is None:
             continue
-        if "name" not in faulty and (entry.name in taken or not entry.name.strip()):
-            again = f"deflection limit {quoted(entry.name)} for the second time"
+        if "name" not in faulty:
+            findings.check_name((*path, "name"), entry.name, "deflection limit")
+        if "name" not in faulty and entry.name in taken:
             findings.add(
                 (*path, "name"),
-                found=again if entry.name.strip() else "an empty name",
+                found=f"deflection limit {quoted(entry.name)} for the second time",
                 expected="a name of its own for each deflection limit",
             )
         taken.add(entry.name)
@@ -240,7 +247,7 @@ def _span(
             known.findings.add(place, found=shown(entry.span), expected="a length above 0")
             return None
         return span
-    if not nodes or not known.supports:
+    if not nodes or not known.supports_known:
         return None  # told where it stands
     points = known.nodes.nodes
     if word == "height":

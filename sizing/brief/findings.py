@@ -69,28 +69,57 @@ def listed(names: Collection[str], most: int = 12) -> str:
     return ", ".join(names[:most]) + f" ... ({len(names)} in all)"
 
 
-class Findings:
-    """The mistakes and cautions found so far in one file."""
+LONGEST_NAME = 60
 
-    def __init__(self, file: str, place: Callable[[KeyPath], str] = key_path_text) -> None:
+
+class Findings:
+    """The mistakes and cautions found so far in one file.
+
+    ``place`` says a key path in words; ``order`` gives its position in the file, for sorting.
+    """
+
+    def __init__(
+        self,
+        file: str,
+        place: Callable[[KeyPath], str] = key_path_text,
+        order: Callable[[KeyPath], tuple[int, ...]] = lambda _: (),
+    ) -> None:
         self.file = file
         self.problems: list[Problem] = []
         self.cautions: list[str] = []
-        self._place = place
+        self.place = place
+        self._order = order
+        self._paths: list[KeyPath] = []
         self._suggestions = 0
 
     def add(self, path: KeyPath, *, found: str, expected: str, fix: str = "") -> None:
         """Record one mistake."""
         problem = Problem(
-            file=self.file, place=self._place(path), found=found, expected=expected, fix=fix
+            file=self.file, place=self.place(path), found=found, expected=expected, fix=fix
         )
         if problem not in self.problems:
             self.problems.append(problem)
+            self._paths.append(path)
 
     def caution(self, text: str) -> None:
         """Record something that is allowed but that a checking engineer wants to know."""
         if text not in self.cautions:
             self.cautions.append(text)
+
+    def check_name(self, path: KeyPath, name: str, noun: str) -> None:
+        """Record a name that cannot be printed in a schedule."""
+        if not name.strip() or name != name.strip() or not name.isprintable():
+            self.add(
+                path,
+                found=f"the {noun} name {quoted(name)}",
+                expected="a name without spaces around it, line breaks or the like",
+            )
+        elif len(name) > LONGEST_NAME:
+            self.add(
+                path,
+                found=f"a {noun} name of {len(name)} characters",
+                expected=f"at most {LONGEST_NAME}",
+            )
 
     def did_you_mean(self, name: str, known: Iterable[str]) -> str:
         """Return a question that names the nearest known name; empty when none is near."""
@@ -103,9 +132,10 @@ class Findings:
         return f"Did you mean {quoted(folded[close[0]])}?" if close else ""
 
     def raise_if_any(self) -> None:
-        """Raise :class:`InputError` with every mistake, when there is one."""
+        """Raise :class:`InputError` with every mistake in the file's order, if there is one."""
         if self.problems:
-            raise InputError(self.problems)
+            pairs = zip(self._paths, self.problems, strict=True)
+            raise InputError([p for _, p in sorted(pairs, key=lambda pair: self._order(pair[0]))])
 
 
 class Quantities:
@@ -160,12 +190,15 @@ class Names:
             )
         return None
 
-    def resolve_all(self, path: KeyPath, names: Sequence[str]) -> list[int]:
-        """Return the indices of the names that are known; a name given twice is a mistake."""
+    def resolve_all(self, path: KeyPath, names: Sequence[str | None]) -> list[int]:
+        """Return the indices of the names that are known; a name given twice is a mistake.
+
+        None stands for an item whose mistake is recorded already.
+        """
         found: list[int] = []
         for place, name in enumerate(names, start=1):
-            index = self.resolve((*path, place), name)
-            if index is None:
+            index = None if name is None else self.resolve((*path, place), name)
+            if name is None or index is None:
                 continue
             if index in found:
                 self._findings.add(

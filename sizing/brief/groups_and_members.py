@@ -65,9 +65,10 @@ def read_groups(
     if present and not raw:
         findings.add(("groups",), found="an empty table", expected="at least one group of members")
     drafts: list[_Draft] = []
-    seen: dict[frozenset[int], str] = {}
+    seen: dict[frozenset[str], str] = {}
     whole = present
     for name, value in raw.items():
+        findings.check_name(("groups", name), name, "group")
         entry, faulty = read_entry(
             RawGroup, value, ("groups", name), findings, "a table with the members of the group"
         )
@@ -104,37 +105,39 @@ def _read_members(
     faulty: frozenset[str],
     nodes: NodeTable,
     findings: Findings,
-    seen: dict[frozenset[int], str],
+    seen: dict[frozenset[str], str],
 ) -> tuple[list[tuple[int, int]], bool]:
     path: KeyPath = ("groups", group, "members")
-    all_good = "members" not in faulty
-    if not entry.members and all_good:
+    all_good = "members" not in faulty and bool(entry.members)
+    if not entry.members and "members" not in faulty:
         findings.add(
             path, found="an empty list", expected="at least one member", fix="Delete the group."
         )
     ends: list[tuple[int, int]] = []
     for place, text in enumerate(entry.members, start=1):
-        pair = _end_nodes((*path, place), text, nodes, findings)
-        if pair is None:
+        names = None if text is None else _end_names((*path, place), text, findings)
+        if names is None:
             all_good = False
             continue
-        key = frozenset(pair)
+        key = frozenset(names)
         if key in seen:
             findings.add(
                 (*path, place),
-                found=f"member {quoted(text)}, which stands already in {seen[key]}",
+                found=f"member {quoted(str(text))}, which stands already in {seen[key]}",
                 expected="each member once, in one group",
                 fix="Delete one of the two.",
             )
             continue
-        seen[key] = f"groups.{group}.members[{place}]"
-        ends.append(pair)
+        seen[key] = findings.place((*path, place))
+        start, end = (nodes.names.resolve((*path, place), name) for name in names)
+        if start is None or end is None:
+            all_good = False
+        else:
+            ends.append((start, end))
     return ends, all_good
 
 
-def _end_nodes(
-    path: KeyPath, text: str, nodes: NodeTable, findings: Findings
-) -> tuple[int, int] | None:
+def _end_names(path: KeyPath, text: str, findings: Findings) -> tuple[str, str] | None:
     parts = [part.strip() for part in text.translate(_OTHER_HYPHENS).split("-")]
     if len(parts) != 2 or not all(parts):
         findings.add(
@@ -148,8 +151,7 @@ def _end_nodes(
             expected="a member between two nodes",
         )
         return None
-    start, end = (nodes.names.resolve(path, part) for part in parts)
-    return None if start is None or end is None else (start, end)
+    return parts[0], parts[1]
 
 
 def _make_members(drafts: list[_Draft], nodes: NodeTable) -> list[Member]:
@@ -274,13 +276,13 @@ def _plain_group(
             (*path, "utilisation_cap"), entry.utilisation_cap, findings, quantities
         ),
         slenderness=slenderness,
-        families=tuple(_words(entry.families, (*path, "families"), findings)),
-        designations=tuple(_words(entry.sections, (*path, "sections"), findings)),
+        families=_words(entry.families, (*path, "families"), findings),
+        designations=_words(entry.sections, (*path, "sections"), findings),
     )
 
 
-def _words(words: list[str], path: KeyPath, findings: Findings) -> list[str]:
+def _words(words: list[str | None], path: KeyPath, findings: Findings) -> tuple[str, ...]:
     for place, word in enumerate(words, start=1):
-        if not word.strip():
+        if word is not None and not word.strip():
             findings.add((*path, place), found="an empty text", expected="a name or a pattern")
-    return words
+    return tuple(word for word in words if word is not None)

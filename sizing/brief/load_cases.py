@@ -41,6 +41,7 @@ def read_cases(
     cases: list[LoadCase] = []
     for name, value in raw.items():
         path: KeyPath = ("cases", name)
+        findings.check_name(path, name, "load case")
         entry, faulty = read_entry(
             RawCase, value, path, findings, 'a table such as { kind = "snow", nodal = { ... } }'
         )

@@ -53,7 +53,8 @@ def read_nodes(
     raw: dict[str, Any], findings: Findings, quantities: Quantities, *, present: bool
 ) -> NodeTable:
     """Return the nodes; all must have the same number of coordinates, 2 or 3."""
-    names = Names(findings, "node", raw, complete=present)
+    own = [name for name in raw if name not in RawBrief.model_fields]
+    names = Names(findings, "node", own, complete=present)
     before = len(findings.problems)
     if present and not raw:
         findings.add(("nodes",), found="an empty table", expected="at least two nodes")
@@ -167,14 +168,16 @@ def _directions(
     findings: Findings,
 ) -> tuple[bool, ...]:
     axes = nodes.axes
-    wanted = [axis.lower() for axis in entry.held]
+    wanted = ["" if axis is None else axis.lower() for axis in entry.held]
     if not wanted and "held" not in faulty:
         findings.add(path, found="an empty list", expected='directions held, such as ["x", "y"]')
     for place, axis in enumerate(wanted, start=1):
+        if not axis:
+            continue
         if axes and axis not in axes:
             findings.add(
                 (*path, place),
-                found=quoted(entry.held[place - 1]),
+                found=quoted(axis),
                 expected=f"one of {listed(axes)}: the nodes have {len(axes)} coordinates",
                 fix=f"In a plane truss {axes[-1]} points up.",
             )

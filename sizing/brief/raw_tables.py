@@ -3,12 +3,11 @@
 Every field's description says what belongs there; messages quote it. Quantities stay as
 written here (``Any``); :mod:`sizing.units` reads them later. All fields have a default, so
 that an entry with one faulty key still gives the others; ``REQUIRED`` names what may not be
-missing.
+missing. A faulty item of a list becomes None, so that the others keep their positions.
 """
 
 from __future__ import annotations
 
-import copy
 from typing import Any, ClassVar, Literal, TypeVar, get_args
 
 from pydantic import BaseModel, ConfigDict, Field, ValidationError
@@ -61,7 +60,7 @@ class RawSupport(RawTable):
     """One support."""
 
     REQUIRED = ("held",)
-    held: list[Held] = Field([], description='directions held, such as ["x", "y"]')
+    held: list[Held | None] = Field([], description='directions held, such as ["x", "y"]')
 
 
 class RawSlenderness(RawTable):
@@ -75,17 +74,19 @@ class RawGroup(RawTable):
     """One group."""
 
     REQUIRED = ("members",)
-    members: list[str] = Field(
+    members: list[str | None] = Field(
         [], description='members named by their two nodes, such as ["A0-A1", "A1-A2"]'
     )
     buckling_length: Any = None
-    restrained_nodes: list[str] = Field(
+    restrained_nodes: list[str | None] = Field(
         [], description='nodes held out of plane, such as ["A0", "A3"]'
     )
     unrestrained_ends: dict[str, Any] = Field(
         {}, description="free chain ends with their factor, such as { A8 = 2.0 }"
     )
-    continues_in: list[str] = Field([], description="groups that carry the same chord on, by name")
+    continues_in: list[str | None] = Field(
+        [], description="groups that carry the same chord on, by name"
+    )
     section_depth: Literal["in plane", "out of plane"] = Field(
         "in plane", description='"in plane" or "out of plane"'
     )
@@ -94,8 +95,8 @@ class RawGroup(RawTable):
     slenderness_limits: dict[str, Any] | None = Field(
         None, description="{ compression = 180, tension = 300 }"
     )
-    families: list[str] = Field([], description='section families, such as ["SHS"]')
-    sections: list[str] = Field(
+    families: list[str | None] = Field([], description='section families, such as ["SHS"]')
+    sections: list[str | None] = Field(
         [], description='designations or patterns with * and ?, such as ["SHS 100*"]'
     )
 
@@ -217,8 +218,8 @@ def read_entry(
     try:
         return model.model_validate(value), frozenset(faulty)
     except ValidationError as error:
-        good = copy.deepcopy(value)
-        for mistake in reversed(error.errors(include_url=False)):
+        good = {k: list(v) if isinstance(v, list) else v for k, v in value.items()}
+        for mistake in error.errors(include_url=False):
             faulty.add(str(mistake["loc"][0]))
             _remove(good, mistake["loc"])
         for mistake in error.errors(include_url=False):
@@ -228,11 +229,11 @@ def read_entry(
 
 def _remove(good: dict[str, Any], location: tuple[str | int, ...]) -> None:
     """Take the faulty value out: an item of a list alone, otherwise the whole key."""
-    key = location[0]
-    if len(location) > 1 and isinstance(location[1], int) and isinstance(good.get(str(key)), list):
-        del good[str(key)][location[1]]
+    key = str(location[0])
+    if len(location) > 1 and isinstance(good.get(key), list):
+        good[key][location[1]] = None
     else:
-        good.pop(str(key), None)
+        good.pop(key, None)
 
 
 def _add_missing(

@@ -6,7 +6,7 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
-from sizing.brief.combinations import read_combinations
+from sizing.brief.combinations import named_place, read_combinations
 from sizing.brief.deflections import read_deflection_limits
 from sizing.brief.findings import Findings, KeyPath, Quantities, key_path_text
 from sizing.brief.groups_and_members import read_groups
@@ -39,7 +39,7 @@ def brief_from_tables(
     ``place`` turns a key path into the words of that file for messages. Raises
     :class:`~sizing.errors.InputError` as :func:`read_brief` does.
     """
-    findings = Findings(source.name, place)
+    findings = Findings(source.name, place, document_order(tables))
     entry, faulty = read_entry(RawBrief, tables, (), findings, "tables")
     raw = entry or RawBrief.model_validate({})
     units = _read_units(raw, faulty, findings)
@@ -49,7 +49,9 @@ def brief_from_tables(
         return key not in faulty
 
     nodes = read_nodes(raw.nodes, findings, quantities, present=present("nodes"))
+    before = len(findings.problems)
     supports = read_supports(raw.supports, nodes, findings, present=present("supports"))
+    supports_known = nodes.whole and bool(supports) and len(findings.problems) == before
     groups = read_groups(raw.groups, nodes, findings, quantities, present=present("groups"))
     check_truss(nodes, groups, findings)
     cases = read_cases(raw.cases, nodes, findings, quantities, present=present("cases"))
@@ -66,6 +68,7 @@ def brief_from_tables(
         names,
         findings,
         quantities,
+        supports_known=supports_known,
         states_known=present("combinations") and len(findings.problems) == before,
     )
     options = read_options(raw.options, findings, quantities, present=present("options"))
@@ -86,6 +89,32 @@ def brief_from_tables(
         notes=raw.notes,
         cautions=tuple(findings.cautions),
     )
+
+
+def document_order(tables: dict[str, Any]) -> Callable[[KeyPath], tuple[int, ...]]:
+    """Return a sort key for key paths: the order in which tables and entries are written."""
+    heads = {head: i for i, head in enumerate(tables)}
+    entries = {
+        head: {_entry_key(k, v): i for i, (k, v) in enumerate(_items(table))}
+        for head, table in tables.items()
+    }
+
+    def order(path: KeyPath) -> tuple[int, ...]:
+        head = str(path[0]) if path else ""
+        entry = path[1] if len(path) > 1 else ""
+        return heads.get(head, len(heads)), entries.get(head, {}).get(entry, -1)
+
+    return order
+
+
+def _items(table: object) -> list[tuple[str | int, object]]:
+    if isinstance(table, dict):
+        return list(table.items())
+    return list(enumerate(table, start=1)) if isinstance(table, list) else []
+
+
+def _entry_key(key: str | int, value: object) -> str | int:
+    return named_place("", key, value)[1] if isinstance(key, int) else key
 
 
 def _read_units(raw: RawBrief, faulty: frozenset[str], findings: Findings) -> Units:
