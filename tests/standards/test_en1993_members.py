@@ -323,7 +323,7 @@ def test_words_for_the_documents():
 lengths = st.floats(0.05, 25.0)
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=60)
 @given(
     reach=st.tuples(lengths, lengths, st.floats(1.0, 3.0)),
     net=st.floats(0.3, 1.0),
