@@ -8,7 +8,7 @@ chosen sections only.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from sizing.brief.model import Brief, Combination, LoadDuration, Option
 from sizing.brief.sections import Catalogue
 from sizing.errors import DisagreementError, SolverError
-from sizing.formulate import GRAVITY, mass_per_metre, member_conditions
+from sizing.formulate import GRAVITY, limit_factors, mass_per_metre, member_conditions
 from sizing.mechanics.analysis import Analysis, analyse
 from sizing.mechanics.brief_loads import geometry_of
 from sizing.results import DeflectionResult, Extreme, MemberResult
@@ -43,8 +43,8 @@ ADEQUATE = 1.0 + 1e-9
 class CheckedDesign:
     """The outcome of the check; ``sections`` are catalogue indices per group.
 
-    ``analysis`` covers all combinations of the brief in order (its last axis).
-    ``residual`` is per combination; ``applied`` (c, d) is the sum of loads.
+    The last axis of ``analysis`` holds all combinations of the brief in order, then what final
+    deflections add; ``applied`` (the same, d) is the sum of loads.
     """
 
     sections: tuple[int, ...]
@@ -82,7 +82,8 @@ def check_design(
     picked = np.array([sections[member.group] for member in brief.members], dtype=np.intp)
     mass = mass_per_metre(catalogue, standard)[picked]
     weight = mass * GRAVITY * (1.0 + option.connection_allowance)
-    loads = combination_loads(brief, weight)
+    sets, movements = _factor_sets(brief, standard.material.creep)
+    loads = factored_loads(brief, weight, sets)
     analysis = analyse(geometry_of(brief), standard.material.E * catalogue.area[picked], loads)
     residual = float(np.max(analysis.residual, initial=0.0))
     if not residual <= RESIDUAL_LIMIT:
@@ -96,19 +97,45 @@ def check_design(
         analysis=analysis,
         applied=loads.sum(axis=0).T,
         members=members,
-        deflections=check_deflections(brief, analysis),
+        deflections=_check_deflections(brief, analysis, movements),
     )
 
 
-def combination_loads(brief: Brief, weight: FloatArray) -> FloatArray:
-    """Return nodal loads in N (nodes, d, combinations) with member weights ``weight`` in N/m."""
+def _factor_sets(
+    brief: Brief, creep: float
+) -> tuple[list[dict[int, float]], dict[tuple[int, int], int]]:
+    """Return the factored sums to analyse, and which of them each (limit, combination) uses.
+
+    The combinations of the brief come first, in order; final deflections (creep, precamber)
+    add sums of their own behind them.
+    """
+    sets = [dict(combination.factors) for combination in brief.combinations]
+    movements: dict[tuple[int, int], int] = {}
+    for k, limit in enumerate(brief.deflection_limits):
+        for c in limit.combinations:
+            factors = limit_factors(brief, k, c, creep)
+            if factors == sets[c]:
+                movements[k, c] = c
+                continue
+            if factors not in sets[len(brief.combinations) :]:
+                sets.append(factors)
+            movements[k, c] = len(brief.combinations) + sets[len(brief.combinations) :].index(
+                factors
+            )
+    return sets, movements
+
+
+def factored_loads(
+    brief: Brief, weight: FloatArray, sets: Sequence[Mapping[int, float]]
+) -> FloatArray:
+    """Return nodal loads in N (nodes, d, sets) with member weights ``weight`` in N/m."""
     own = np.zeros(len(brief.nodes))
     for member, w in zip(brief.members, weight, strict=True):
         own[member.start] += 0.5 * w * member.length
         own[member.end] += 0.5 * w * member.length
-    loads = np.zeros((len(brief.nodes), brief.dimensions, len(brief.combinations)))
-    for c, combination in enumerate(brief.combinations):
-        for q, factor in combination.factors.items():
+    loads = np.zeros((len(brief.nodes), brief.dimensions, len(sets)))
+    for c, factors in enumerate(sets):
+        for q, factor in factors.items():
             case = brief.cases[q]
             for node, force in case.nodal.items():
                 loads[node, :, c] += factor * np.asarray(force)
@@ -117,16 +144,19 @@ def combination_loads(brief: Brief, weight: FloatArray) -> FloatArray:
     return loads
 
 
-def check_deflections(brief: Brief, analysis: Analysis) -> tuple[DeflectionResult, ...]:
+def _check_deflections(
+    brief: Brief, analysis: Analysis, movements: Mapping[tuple[int, int], int]
+) -> tuple[DeflectionResult, ...]:
     """Return every deflection limit at every node in every combination that it holds for."""
     results = []
-    for limit in brief.deflection_limits:
+    for k, limit in enumerate(brief.deflection_limits):
         direction = np.asarray(limit.direction)
         for node in limit.nodes:
             for c in limit.combinations:
-                movement = analysis.displacement[node, :, c]
+                at = movements[k, c]
+                movement = analysis.displacement[node, :, at]
                 if limit.relative_to is not None:
-                    movement = movement - analysis.displacement[limit.relative_to, :, c]
+                    movement = movement - analysis.displacement[limit.relative_to, :, at]
                 value = float(direction @ movement)
                 results.append(
                     DeflectionResult(
@@ -143,6 +173,19 @@ def check_deflections(brief: Brief, analysis: Analysis) -> tuple[DeflectionResul
     return tuple(results)
 
 
+@dataclass(frozen=True, kw_only=True)
+class _Terms:
+    """What all members are judged by: the strength combinations and the standard."""
+
+    brief: Brief
+    standard: Standard
+    catalogue: Catalogue
+    conditions: MemberConditions
+    combinations: list[Combination]
+    durations: tuple[LoadDuration, ...]
+    zero: float
+
+
 def _check_members(
     brief: Brief,
     option: Option,
@@ -152,68 +195,106 @@ def _check_members(
     mass: FloatArray,
     analysis: Analysis,
 ) -> tuple[MemberResult, ...]:
-    conditions = member_conditions(brief, option)
-    strength = brief.combinations_of("strength")
+    strength = list(brief.combinations_of("strength"))
     combinations = [brief.combinations[c] for c in strength]
-    durations = tuple(dict.fromkeys(c.duration for c in combinations))
-    force = analysis.force[:, list(strength)]
-    zero = FORCE_ZERO * float(np.max(np.abs(analysis.force), initial=0.0))
-    results: list[MemberResult] = []
+    terms = _Terms(
+        brief=brief,
+        standard=standard,
+        catalogue=catalogue,
+        conditions=member_conditions(brief, option),
+        combinations=combinations,
+        durations=tuple(dict.fromkeys(c.duration for c in combinations)),
+        zero=FORCE_ZERO * float(np.max(np.abs(analysis.force[:, strength]), initial=0.0)),
+    )
     tables = {
-        int(s): standard.resistances(catalogue.only(int(s)), conditions, durations)
+        int(s): standard.resistances(catalogue.only(int(s)), terms.conditions, terms.durations)
         for s in np.unique(picked)
     }
-    for i in range(len(brief.members)):
-        judge = _Judge(
-            combinations=combinations,
-            durations=durations,
+    return tuple(
+        _Judge(
+            terms=terms,
             table=tables[int(picked[i])],
             member=i,
-            force=force[i],
-            zero=zero,
-            cap=brief.groups[brief.members[i].group].utilisation_cap,
-        )
-        tension, compression = judge.extreme("tension"), judge.extreme("compression")
-        _agree(standard, catalogue, int(picked[i]), conditions, i, judge, tension, compression)
-        results.append(
-            _member_result(
-                brief, catalogue, conditions, judge, int(picked[i]), float(mass[i]),
-                analysis.force[i], tension, compression,
-            )  # fmt: skip
-        )
-    return tuple(results)
+            section=int(picked[i]),
+            mass=float(mass[i]),
+            force=analysis.force[i, strength],
+            all_forces=tuple(analysis.force[i, : len(brief.combinations)].tolist()),
+        ).verdict()
+        for i in range(len(brief.members))
+    )
 
 
 @dataclass(frozen=True, kw_only=True)
 class _Judge:
-    """The forces of one member in all strength combinations against its resistances."""
+    """One member: its forces in all strength combinations against its resistances."""
 
-    combinations: list[Combination]
-    durations: tuple[LoadDuration, ...]
+    terms: _Terms
     table: ResistanceTable
     member: int
+    section: int
+    mass: float
     force: FloatArray
-    zero: float
-    cap: float
+    all_forces: tuple[float, ...]
+
+    def verdict(self) -> MemberResult:
+        """Return the member's line of the schedule."""
+        terms, table, i = self.terms, self.table, self.member
+        brief, catalogue = terms.brief, terms.catalogue
+        member = brief.members[i]
+        tension, compression = self.extreme("tension"), self.extreme("compression")
+        governing = _governing(tension, compression)
+        decisive = compression if governing == "compression" else tension
+        limits = terms.conditions.max_slenderness_tension
+        if compression is not None:
+            limits = terms.conditions.max_slenderness_compression
+        return MemberResult(
+            name=member.name,
+            mark=member.mark,
+            group=brief.groups[member.group].name,
+            start=brief.nodes[member.start].name,
+            end=brief.nodes[member.end].name,
+            designation=catalogue.designation[self.section],
+            catalogue_row=catalogue.row[self.section],
+            length=member.length,
+            mass_per_metre=self.mass,
+            mass=self.mass * member.length,
+            area=float(catalogue.area[self.section]),
+            in_plane=float(terms.conditions.in_plane[i]),
+            out_of_plane=float(terms.conditions.out_of_plane[i]),
+            slenderness_in=float(table.slenderness_in[i, 0]),
+            slenderness_out=float(table.slenderness_out[i, 0]),
+            slenderness_limit=float(limits[i]) if np.isfinite(limits[i]) else None,
+            tension=tension,
+            compression=compression,
+            utilisation=decisive.utilisation if decisive else 0.0,
+            governing=governing,
+            governing_clause=decisive.clause if decisive else "",
+            governing_combination=decisive.governing_combination if decisive else "",
+            forces=self.all_forces,
+            note=table.reasons[int(table.notes[i, 0])],
+        )
 
     def extreme(self, sense: Sense) -> Extreme | None:
         """Return the greatest force of one sense and the combination that governs it."""
-        sign = 1.0 if sense == "tension" else -1.0
-        load = sign * self.force
-        if not (load > self.zero).any():
+        load = self.force if sense == "tension" else -self.force
+        acts = load > self.terms.zero
+        if not acts.any():
             return None
         resistance = np.array([self.resistance(sense, c) for c in range(len(load))])
-        with np.errstate(divide="ignore"):
-            ratio = np.where(load > self.zero, load / resistance, 0.0)
         if not self.table.usable[self.member, 0]:
-            ratio = np.where(load > self.zero, np.inf, ratio)
+            resistance[:] = 0.0
+        with np.errstate(divide="ignore"):
+            ratio = np.where(acts, load / resistance, 0.0)
         greatest, governing = int(np.argmax(load)), int(np.argmax(ratio))
+        if resistance[governing] > 0.0:
+            self._agree(sense, governing, float(resistance[governing]))
+        names = [c.name for c in self.terms.combinations]
         return Extreme(
             force=float(self.force[greatest]),
-            combination=self.combinations[greatest].name,
+            combination=names[greatest],
             resistance=float(resistance[governing]),
             utilisation=float(ratio[governing]),
-            governing_combination=self.combinations[governing].name,
+            governing_combination=names[governing],
             governing_force=float(self.force[governing]),
             clause=self.clause(sense, governing),
         )
@@ -221,7 +302,7 @@ class _Judge:
     def resistance(self, sense: Sense, c: int) -> float:
         """Return the resistance in N in combination ``c``, times the group's utilisation cap."""
         values = self.table.tension if sense == "tension" else self.table.compression
-        return float(values[self.member, 0, self._duration(c)]) * self.cap
+        return float(values[self.member, 0, self._duration(c)]) * self._cap()
 
     def clause(self, sense: Sense, c: int) -> str:
         """Return the clause behind the resistance in combination ``c``."""
@@ -229,82 +310,27 @@ class _Judge:
         index = table.tension_clause if sense == "tension" else table.compression_clause
         return table.clauses[int(index[self.member, 0, self._duration(c)])]
 
+    def _cap(self) -> float:
+        brief = self.terms.brief
+        return brief.groups[brief.members[self.member].group].utilisation_cap
+
     def _duration(self, c: int) -> int:
-        return self.durations.index(self.combinations[c].duration)
+        return self.terms.durations.index(self.terms.combinations[c].duration)
 
-
-def _agree(
-    standard: Standard,
-    catalogue: Catalogue,
-    section: int,
-    conditions: MemberConditions,
-    member: int,
-    judge: _Judge,
-    *extremes: Extreme | None,
-) -> None:
-    """Work the deciding resistances line by line and compare them with the table's."""
-    senses: tuple[Sense, Sense] = ("tension", "compression")
-    for sense, extreme in zip(senses, extremes, strict=True):
-        if extreme is None or extreme.resistance <= 0.0:
-            continue
-        names = [c.name for c in judge.combinations]
-        duration = judge.combinations[names.index(extreme.governing_combination)].duration
-        steps = standard.working(catalogue, section, conditions, member, duration, sense)
-        worked = steps[-1].value * judge.cap
-        if abs(worked - extreme.resistance) > WORKING_TOLERANCE * extreme.resistance:
+    def _agree(self, sense: Sense, c: int, resistance: float) -> None:
+        """Work a deciding resistance line by line and compare it with the table's."""
+        terms = self.terms
+        duration = terms.combinations[c].duration
+        steps = terms.standard.working(
+            terms.catalogue, self.section, terms.conditions, self.member, duration, sense
+        )
+        worked = steps[-1].value * self._cap()
+        if abs(worked - resistance) > WORKING_TOLERANCE * resistance:
             raise DisagreementError(
-                f"{catalogue.designation[section]} in {conditions.role[member]}: {sense} "
-                f"resistance {extreme.resistance:.6g} N from the table, {worked:.6g} N worked line "
-                "by line; nothing is issued"
+                f"{terms.catalogue.designation[self.section]} in member "
+                f"{terms.brief.members[self.member].name}: {sense} resistance {resistance:.6g} N "
+                f"from the table, {worked:.6g} N worked line by line; nothing is issued"
             )
-
-
-def _member_result(
-    brief: Brief,
-    catalogue: Catalogue,
-    conditions: MemberConditions,
-    judge: _Judge,
-    section: int,
-    mass: float,
-    forces: FloatArray,
-    tension: Extreme | None,
-    compression: Extreme | None,
-) -> MemberResult:
-    i = judge.member
-    member = brief.members[i]
-    governing = _governing(tension, compression)
-    decisive = {"tension": tension, "compression": compression}.get(governing or "")
-    limit = (
-        conditions.max_slenderness_compression[i]
-        if compression is not None
-        else conditions.max_slenderness_tension[i]
-    )
-    return MemberResult(
-        name=member.name,
-        mark=member.mark,
-        group=brief.groups[member.group].name,
-        start=brief.nodes[member.start].name,
-        end=brief.nodes[member.end].name,
-        designation=catalogue.designation[section],
-        catalogue_row=catalogue.row[section],
-        length=member.length,
-        mass_per_metre=mass,
-        mass=mass * member.length,
-        area=float(catalogue.area[section]),
-        in_plane=float(conditions.in_plane[i]),
-        out_of_plane=float(conditions.out_of_plane[i]),
-        slenderness_in=float(judge.table.slenderness_in[i, 0]),
-        slenderness_out=float(judge.table.slenderness_out[i, 0]),
-        slenderness_limit=float(limit) if np.isfinite(limit) else None,
-        tension=tension,
-        compression=compression,
-        utilisation=decisive.utilisation if decisive else 0.0,
-        governing=governing,
-        governing_clause=decisive.clause if decisive else "",
-        governing_combination=decisive.governing_combination if decisive else "",
-        forces=tuple(float(f) for f in forces),
-        note=judge.table.reasons[int(judge.table.notes[i, 0])],
-    )
 
 
 def _governing(tension: Extreme | None, compression: Extreme | None) -> Sense | None:

@@ -28,6 +28,7 @@ from sizing.standards.contract import (
     SettingsError,
     Standard,
 )
+from sizing.standards.en1995_deflection import deflection_factors
 from sizing.standards.registry import make_standard
 
 FloatArray = NDArray[np.float64]
@@ -74,7 +75,7 @@ def formulate(brief: Brief, option: Option) -> Formulation:
     durations = durations_of(brief, strength)
     table = standard.resistances(catalogue, conditions, durations)
     allowed = allowed_sections(brief, option, catalogue, table)
-    keys, vectors, factors, limits = deflection_rows(brief, geometry)
+    keys, vectors, factors, limits = deflection_rows(brief, geometry, standard.material.creep)
     cap = np.array([group.utilisation_cap for group in brief.groups])
     member_group = np.array([member.group for member in brief.members], dtype=np.intp)
     capped = cap[member_group][:, None, None]
@@ -143,9 +144,7 @@ def mass_per_metre(catalogue: Catalogue, standard: Standard) -> FloatArray:
 
 def group_lengths(brief: Brief) -> FloatArray:
     """Return the total system length of each group in m (g,)."""
-    return np.array(
-        [sum(brief.members[i].length for i in group.members) for group in brief.groups]
-    )
+    return np.array([sum(brief.members[i].length for i in group.members) for group in brief.groups])
 
 
 def durations_of(brief: Brief, strength: tuple[int, ...]) -> tuple[LoadDuration, ...]:
@@ -165,26 +164,17 @@ def factor_matrix(brief: Brief, combinations: tuple[int, ...]) -> FloatArray:
 def member_conditions(brief: Brief, option: Option) -> MemberConditions:
     """Return what the standard must know of each member (arrays of length m)."""
     groups = [brief.groups[member.group] for member in brief.members]
-    length = np.array([member.length for member in brief.members])
+    buckling = np.array([brief.buckling_lengths(i) for i in range(len(brief.members))])
     limits = [group.slenderness or option.slenderness for group in groups]
     return MemberConditions(
-        length=length,
-        in_plane=_buckling_lengths(brief, groups, "in_plane"),
-        out_of_plane=_buckling_lengths(brief, groups, "out_of_plane"),
+        length=np.array([member.length for member in brief.members]),
+        in_plane=buckling[:, 0],
+        out_of_plane=buckling[:, 1],
         depth_in_plane=np.array([group.depth_in_plane for group in groups]),
         net_factor=np.array([group.net_section_factor for group in groups]),
         max_slenderness_compression=_limits([s.compression for s in limits]),
         max_slenderness_tension=_limits([s.tension for s in limits]),
         role=tuple(group.name for group in groups),
-    )
-
-
-def _buckling_lengths(brief: Brief, groups: list[Group], attribute: str) -> FloatArray:
-    return np.array(
-        [
-            getattr(group, attribute).of(member.length)
-            for group, member in zip(groups, brief.members, strict=True)
-        ]
     )
 
 
@@ -239,11 +229,12 @@ def _why_empty(group: Group, chosen: NDArray[np.bool_], table: ResistanceTable) 
 
 
 def deflection_rows(
-    brief: Brief, geometry: Geometry
+    brief: Brief, geometry: Geometry, creep: float
 ) -> tuple[tuple[tuple[int, int, int], ...], sparse.csr_array, FloatArray, FloatArray]:
     """Return keys, vectors (r, n), factors (r, q) and limits (r,) of all deflection limits.
 
-    A movement that the supports prevent altogether has no row.
+    ``creep`` is the material's kdef, which final deflections include. A movement that the
+    supports prevent altogether has no row.
     """
     total = geometry.position.size
     column = np.full(total, -1)
@@ -264,9 +255,20 @@ def deflection_rows(
                 keys.append((k, node, c))
     shape = (len(keys), geometry.free.size)
     vectors = sparse.csr_array((values, (rows, columns)), shape=shape)
-    factors = factor_matrix(brief, tuple(key[2] for key in keys))
+    factors = np.zeros((len(keys), len(brief.cases)))
+    for row, (k, _, c) in enumerate(keys):
+        for case, factor in limit_factors(brief, k, c, creep).items():
+            factors[row, case] = factor
     limits = np.array([brief.deflection_limits[key[0]].limit for key in keys])
     return tuple(keys), vectors, factors, limits
+
+
+def limit_factors(brief: Brief, limit: int, combination: int, creep: float) -> dict[int, float]:
+    """Return case index → factor of the deflection that a limit checks in a combination."""
+    asked = brief.deflection_limits[limit]
+    return deflection_factors(
+        brief.combinations[combination], asked.component, creep, asked.precamber
+    )
 
 
 def _movement(

@@ -129,9 +129,7 @@ def _rows_of(formulation: Formulation, given: Mapping[str, str]) -> list[int]:
 def _describe(formulation: Formulation, sections: list[int], picked: Pick | None) -> OptionResult:
     start = perf_counter()
     brief, option = formulation.brief, formulation.option
-    checked = check_design(
-        brief, option, formulation.standard, formulation.catalogue, sections
-    )
+    checked = check_design(brief, option, formulation.standard, formulation.catalogue, sections)
     mass = sum(m.mass for m in checked.members)
     objective = formulation.problem.objective(np.asarray(sections))
     if picked is not None:
@@ -161,7 +159,7 @@ def _describe(formulation: Formulation, sections: list[int], picked: Pick | None
         combinations=_combinations(brief, checked),
         deflections=checked.deflections,
         reactions=_reactions(brief, checked),
-        displacements=_displacements(checked),
+        displacements=_displacements(checked, len(brief.combinations)),
         worked=_worked(formulation, checked),
         left_out=_left_out(formulation),
         basis=_basis(formulation),
@@ -242,9 +240,7 @@ def _lighter(formulation: Formulation, sections: list[int]) -> tuple[LighterResu
     results = []
     for g, group in enumerate(brief.groups):
         cost = problem.cost[g]
-        lighter = [
-            s for s in np.flatnonzero(problem.allowed[g]) if cost[s] < cost[sections[g]]
-        ]
+        lighter = [s for s in np.flatnonzero(problem.allowed[g]) if cost[s] < cost[sections[g]]]
         if not lighter:
             results.append(_lightest_already(group.name))
             continue
@@ -284,8 +280,8 @@ def _lighter_result(
         fails, where = "deflection", f"{deflection.limit_name} at {deflection.node}"
         combination = deflection.combination
     else:
-        fails = member.note if np.isinf(member.utilisation) and member.note else (
-            _governed_by(member)
+        fails = (
+            member.note if np.isinf(member.utilisation) and member.note else (_governed_by(member))
         )
         where, combination = member.mark, member.governing_combination
     return LighterResult(
@@ -331,8 +327,10 @@ def _reactions(brief: Brief, checked: CheckedDesign) -> tuple[ReactionResult, ..
     )
 
 
-def _displacements(checked: CheckedDesign) -> tuple[tuple[tuple[float, ...], ...], ...]:
-    by_combination = np.moveaxis(checked.analysis.displacement, 2, 0)
+def _displacements(
+    checked: CheckedDesign, combinations: int
+) -> tuple[tuple[tuple[float, ...], ...], ...]:
+    by_combination = np.moveaxis(checked.analysis.displacement, 2, 0)[:combinations]
     return tuple(tuple(tuple(node) for node in table) for table in by_combination.tolist())
 
 
@@ -347,7 +345,7 @@ def _worked(formulation: Formulation, checked: CheckedDesign) -> tuple[WorkedChe
             if getattr(m, sense) is not None
         ]
         if found:
-            chosen[(max(found)[1], sense)] = None  # type: ignore[index]  # literal in a tuple
+            chosen[(max(found)[1], sense)] = None
     for group in brief.groups:
         i = max(group.members, key=lambda k: checked.members[k].utilisation)
         governing = checked.members[i].governing
@@ -356,12 +354,11 @@ def _worked(formulation: Formulation, checked: CheckedDesign) -> tuple[WorkedChe
     return tuple(_work(formulation, checked, i, sense) for i, sense in chosen)
 
 
-def _work(
-    formulation: Formulation, checked: CheckedDesign, i: int, sense: Sense
-) -> WorkedCheck:
+def _work(formulation: Formulation, checked: CheckedDesign, i: int, sense: Sense) -> WorkedCheck:
     brief, member = formulation.brief, checked.members[i]
     extreme = member.tension if sense == "tension" else member.compression
-    assert extreme is not None  # noqa: S101 - chosen by the caller among members with this sense
+    if extreme is None:
+        raise ValueError(f"{member.mark} is never in {sense}")
     combination = _by_name(brief, extreme.governing_combination)
     steps = formulation.standard.working(
         formulation.catalogue,
