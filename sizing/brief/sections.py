@@ -40,7 +40,8 @@ class Catalogue:
     if the boards slipped freely on one another: what their nails or bolts add is for the
     standard to say.
 
-    ``columns`` pairs every column head of the file with what it was taken for. ``remarks`` says, in sentences, what was detected, assumed or found odd while reading.
+    ``columns`` pairs every column head of the file with what it was taken for. ``remarks`` says,
+    in sentences, what was detected, assumed or found odd while reading.
     """
 
     name: str
