@@ -73,9 +73,13 @@ def check_design(
     standard: Standard,
     catalogue: Catalogue,
     sections: Sequence[int],
+    *,
+    work: bool = True,
 ) -> CheckedDesign:
     """Check the design that gives group g the catalogue row ``sections[g]``.
 
+    ``work``: also work every deciding resistance line by line and compare (for the design that
+    
     Raises :class:`SolverError` when the analysis does not balance and
     :class:`DisagreementError` when a resistance worked line by line differs from the table.
     """
@@ -91,7 +95,8 @@ def check_design(
             f"the analysis of option {option.name} does not balance (residual {residual:.1e}); "
             "the truss is close to a mechanism: look for nearly collinear members at a node"
         )
-    members = _check_members(brief, option, standard, catalogue, picked, mass, analysis)
+    terms = _terms(brief, option, standard, catalogue, analysis, work)
+    members = _check_members(terms, picked, mass, analysis)
     return CheckedDesign(
         sections=tuple(int(s) for s in sections),
         analysis=analysis,
@@ -181,31 +186,41 @@ class _Terms:
     standard: Standard
     catalogue: Catalogue
     conditions: MemberConditions
+    strength: tuple[int, ...]
     combinations: list[Combination]
     durations: tuple[LoadDuration, ...]
     zero: float
+    work: bool
 
 
-def _check_members(
+def _terms(
     brief: Brief,
     option: Option,
     standard: Standard,
     catalogue: Catalogue,
-    picked: NDArray[np.intp],
-    mass: FloatArray,
     analysis: Analysis,
-) -> tuple[MemberResult, ...]:
-    strength = list(brief.combinations_of("strength"))
+    work: bool,
+) -> _Terms:
+    strength = brief.combinations_of("strength")
     combinations = [brief.combinations[c] for c in strength]
-    terms = _Terms(
+    return _Terms(
         brief=brief,
         standard=standard,
         catalogue=catalogue,
         conditions=member_conditions(brief, option),
+        strength=strength,
         combinations=combinations,
         durations=tuple(dict.fromkeys(c.duration for c in combinations)),
-        zero=FORCE_ZERO * float(np.max(np.abs(analysis.force[:, strength]), initial=0.0)),
+        zero=FORCE_ZERO * float(np.max(np.abs(analysis.force[:, list(strength)]), initial=0.0)),
+        work=work,
     )
+
+
+def _check_members(
+    terms: _Terms, picked: NDArray[np.intp], mass: FloatArray, analysis: Analysis
+) -> tuple[MemberResult, ...]:
+    brief, standard, catalogue = terms.brief, terms.standard, terms.catalogue
+    strength = list(terms.strength)
     tables = {
         int(s): standard.resistances(catalogue.only(int(s)), terms.conditions, terms.durations)
         for s in np.unique(picked)
@@ -286,7 +301,7 @@ class _Judge:
         with np.errstate(divide="ignore"):
             ratio = np.where(acts, load / resistance, 0.0)
         greatest, governing = int(np.argmax(load)), int(np.argmax(ratio))
-        if resistance[governing] > 0.0:
+        if self.terms.work and resistance[governing] > 0.0:
             self._agree(sense, governing, float(resistance[governing]))
         names = [c.name for c in self.terms.combinations]
         return Extreme(

@@ -247,7 +247,12 @@ def _lighter(formulation: Formulation, sections: list[int]) -> tuple[LighterResu
         s = max(lighter, key=lambda k: cost[k])
         design = [*sections[:g], int(s), *sections[g + 1 :]]
         checked = check_design(
-            brief, formulation.option, formulation.standard, formulation.catalogue, design
+            brief,
+            formulation.option,
+            formulation.standard,
+            formulation.catalogue,
+            design,
+            work=False,
         )
         results.append(_lighter_result(formulation, g, int(s), sections[g], checked))
     return tuple(results)
