@@ -78,8 +78,9 @@ def check_design(
 ) -> CheckedDesign:
     """Check the design that gives group g the catalogue row ``sections[g]``.
 
-    ``work``: also work every deciding resistance line by line and compare (for the design that
-    
+    ``work``: also work every deciding resistance line by line and compare, as is due for the
+    design that is issued.
+
     Raises :class:`SolverError` when the analysis does not balance and
     :class:`DisagreementError` when a resistance worked line by line differs from the table.
     """
