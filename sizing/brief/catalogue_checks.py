@@ -98,11 +98,9 @@ def check_rows(rows: Sequence[Checked], density: float | str | None, findings: F
             _check_radius(row, axis, findings, deviations)
         if entry.line in suspects:
             continue
-        if not _check_extent(row, findings):
-            continue
-        if not _check_shape(row, findings, deviations):
-            continue
-        _check_polar(row, findings)
+        good = _check_shape(row, findings, deviations) and _check_polar(row, findings)
+        if good:
+            _check_extent(row, findings)
     for what, found in deviations.items():
         greatest, entry = max(found, key=lambda item: abs(item[0]))
         findings.remarks.append(
@@ -255,6 +253,11 @@ def _axis_key(entry: Entry, axis: str) -> str:
     return f"I {axis}"
 
 
+def _own_keys(axis: str) -> set[str]:
+    """Return the keys that state a second moment about this axis and no other."""
+    return {f"I {axis}", f"i {axis}"} | ({"I", "i"} if axis == "major" else set())
+
+
 def _axis_rounding(entry: Entry, axis: str) -> float:
     key = _axis_key(entry, axis)
     if key not in entry.numbers:
@@ -308,12 +311,12 @@ def _stated(entry: Entry, symbol: str, axis: str) -> str | None:
     return None
 
 
-def _check_extent(row: Checked, findings: Findings) -> bool:
-    """No radius of gyration exceeds half the depth, no area the enclosing rectangle."""
+def _check_extent(row: Checked, findings: Findings) -> None:
+    """No radius of gyration exceeds half the dimension across its axis."""
     entry = row.entry
     depth, width = entry.value("depth"), entry.value("width")
     if entry.family == "angle" or depth is None:
-        return True
+        return
     for extent, axis, inertia in ((depth, "major", row.i_major), (width, "minor", row.i_minor)):
         if extent is None or math.sqrt(inertia / row.area) <= 0.5 * extent * (1.0 + QUIET):
             continue
@@ -331,16 +334,15 @@ def _check_extent(row: Checked, findings: Findings) -> bool:
             else "Compare the units of this column, of the area and of the second moment.",
             kind="extent",
         )
-        return False
-    return True
+        return
 
 
-def _check_polar(row: Checked, findings: Findings) -> None:
+def _check_polar(row: Checked, findings: Findings) -> bool:
     """(I major + I minor)/A² of any shape is at least that of a disc, 1/(2π)."""
     plies = row.entry.value("plies") or 1.0  # boards that slip count one by one
     polar = plies * (row.i_major + row.i_minor) / row.area**2
     if LEAST_POLAR * (1.0 - REFUSED) <= polar <= GREATEST_POLAR:
-        return
+        return True
     key = _axis_key(row.entry, "major")
     small = polar < LEAST_POLAR
     findings.in_row(
@@ -357,6 +359,7 @@ def _check_polar(row: Checked, findings: Findings) -> None:
         else "The second moment looks like mm4 given as cm4, or the area like cm2 given as mm2.",
         kind="polar",
     )
+    return False
 
 
 Shape = Callable[[Entry], list[geometry.SectionProperties]]
@@ -448,6 +451,8 @@ def _check_shape(
         return False
     good = True
     for axis, found in (("major", row.i_major), ("minor", row.i_minor), ("least", row.i_least)):
+        if not entry.numbers.keys() & _own_keys(axis):
+            continue
         values = [getattr(properties, f"i_{axis}") for properties in formed]
         deviation = _beyond(_outside(found, min(values), max(values)), _axis_rounding(entry, axis))
         if abs(deviation) > INERTIA_REFUSED:

@@ -10,9 +10,10 @@ from __future__ import annotations
 import difflib
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
+from sizing.brief.catalogue_text import TextTable
 from sizing.brief.catalogue_units import unit_factor
 from sizing.errors import Problem
 
@@ -38,7 +39,14 @@ NUMBER_NAMES: Mapping[str, tuple[frozenset[str], tuple[str, ...]]] = {
     "mass": (
         frozenset(
             {"mass", "m", "mass per metre", "mass per length", "weight", "w", "g"}
-            | {"weight per foot", "weight per metre", "gewicht", "masse"}
+            | {
+                "nominal weight",
+                "nominal mass",
+                "weight per foot",
+                "weight per metre",
+                "gewicht",
+                "masse",
+            }
         ),
         ("mass per length", "weight per length"),
     ),
@@ -147,6 +155,7 @@ def read_heads(cells: tuple[str, ...], *, file: str, line: int) -> Heads:
     """Return what each column holds; problems are collected, none is raised."""
     heads = [_split(i, cell) for i, cell in enumerate(cells) if cell]
     letters, problems, remarks = _axis_letters(heads, file=file, line=line)
+    heads = _root_radius(heads)
     columns: list[Column] = []
     unused: list[str] = []
     for head in heads:
@@ -157,8 +166,9 @@ def read_heads(cells: tuple[str, ...], *, file: str, line: int) -> Heads:
             unused.append(head.text)
         else:
             columns.append(column)
-    columns = _one_depth(columns, unused)
-    problems += _twice(columns, file=file, line=line)
+    columns = _web_and_flange(_one_depth(columns, unused))
+    columns, again = _without_repeats(columns, file=file, line=line)
+    problems += again
     if unused:
         remarks.append(_unused_remark(unused))
     return Heads(
@@ -177,6 +187,14 @@ def _split(index: int, cell: str) -> _Head:
     name, unit = (match[1], match[2]) if match else (cell, "")
     words = re.sub(r"[\s_\-.,:]+", " ", name).strip().casefold()
     return _Head(index=index, text=cell, name=words, unit=unit)
+
+
+def _root_radius(heads: list[_Head]) -> list[_Head]:
+    """Beside a flange (or a web s and t) a bare ``r`` is the root radius, no radius of gyration."""
+    names = {head.name for head in heads}
+    if not (names & NUMBER_NAMES["flange"][0] or {"s", "t"} <= names):
+        return heads
+    return [replace(head, name="r1") if head.name == "r" else head for head in heads]
 
 
 def _understand(
@@ -336,23 +354,60 @@ def _one_depth(columns: list[Column], unused: list[str]) -> list[Column]:
     return columns
 
 
-def _twice(columns: list[Column], *, file: str, line: int) -> list[Problem]:
+def _web_and_flange(columns: list[Column]) -> list[Column]:
+    """Beside a web ``s`` the thickness ``t`` is the flange's (central European I tables)."""
+    heads = {_split(0, c.head).name: c for c in columns if c.property == "thickness"}
+    if set(heads) != {"s", "t"}:
+        return columns
+    return [replace(c, property="flange") if c is heads["t"] else c for c in columns]
+
+
+def _without_repeats(
+    columns: list[Column], *, file: str, line: int
+) -> tuple[list[Column], list[Problem]]:
+    """Return the columns without second ones for the same property, and problems for those."""
     problems = []
     seen: dict[tuple[str, str], Column] = {}
     for column in columns:
-        key = (column.property, column.axis)
-        if key in seen:
+        first = seen.setdefault((column.property, column.axis), column)
+        if first is not column:
             problems.append(
                 Problem(
                     file=file,
                     place=f"line {line}, column {column.head!r}",
-                    found=f"a second column for what {seen[key].head!r} holds already",
+                    found=f"a second column for what {first.head!r} holds already",
                     expected="each property once",
                     fix="Remove one of the two columns.",
                 )
             )
-        seen.setdefault(key, column)
-    return problems
+    return list(seen.values()), problems
+
+
+def with_unit_row(table: TextTable) -> TextTable:
+    """Return the table with a row of units below the heads put into the heads.
+
+    Such a row has at least two units and nothing that begins like a number.
+    """
+    if not table.rows:
+        return table
+    first = table.rows[0]
+    units = [cell.strip("[]() ") for cell in first.cells]
+    if any(re.match(r"^[-+\u2212.,]?[0-9]", unit) for unit in units):
+        return table
+    if sum(unit_factor(unit) is not None for unit in units if unit) < 2:
+        return table
+    padded = [*units, *[""] * len(table.heads.cells)]
+    cells = tuple(
+        head if not unit or _split(0, head).unit else f"{head} [{unit}]"
+        for head, unit in zip(table.heads.cells, padded, strict=False)
+    )
+    remark = f"Units are taken from line {first.line}, below the column heads."
+    return replace(
+        table,
+        heads=replace(table.heads, cells=cells),
+        rows=table.rows[1:],
+        remarks=(*table.remarks, remark),
+    )
 
 
 def _unused_remark(unused: list[str]) -> str:

@@ -41,8 +41,8 @@ class Marks:
     """How the numbers of a file are written.
 
     ``decimal`` is the decimal mark; ``settled``: it is beyond doubt, being declared, forced by
-    the delimiter or shown by some number. ``thousands``: the other mark groups thousands
-    somewhere in the file beyond doubt.
+    the delimiter or shown by some number. ``thousands``: the other mark may group thousands,
+    because the decimal mark is declared or some number shows it beyond doubt.
     """
 
     decimal: Decimal
@@ -84,7 +84,7 @@ def marks_of(cells: Iterable[str], *, delimiter: str, declared: Decimal | None) 
     return Marks(
         decimal=decimal,
         settled=bool(shown) or declared is not None or delimiter == ",",
-        thousands=any(other in text for text in shown),
+        thousands=declared is not None or any(other in text for text in shown),
     )
 
 
@@ -130,6 +130,8 @@ def _value(text: str) -> Number:
 def _number_advice(text: str) -> str:
     if re.match(r"^[+-]?(nan|inf|infinity)$", text, re.IGNORECASE):
         return "Only finite numbers can be used."
+    if re.match(r"^[+-]?[0-9.,]+[eE][+-]?[0-9]+$", text):
+        return "No property of a section is of this size."
     if re.match(r"^[0-9]+[ -]?[0-9]*/[0-9]+$", text):
         return "Write fractions as decimals, 3/8 as 0.375."
     if text.startswith(("=", "#")):

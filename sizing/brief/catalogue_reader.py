@@ -16,18 +16,19 @@ from __future__ import annotations
 
 import difflib
 import hashlib
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from pathlib import Path
 
 import numpy as np
 
 from sizing.brief.catalogue_checks import Checked, check_rows
-from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, Heads, read_heads
+from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, Heads, read_heads, with_unit_row
 from sizing.brief.catalogue_rows import (
     Entry,
     Findings,
     key_of,
     place_of,
+    ranges,
     read_density,
     read_entries,
 )
@@ -39,6 +40,15 @@ from sizing.errors import InputError, Problem
 SUFFIX = ".csv"
 ALIKE_ON_BOTH_AXES = frozenset({"SHS", "CHS"})
 """Families with one second moment; equal angles too, about their geometric axes."""
+
+
+SHORT_FORMS = {
+    "shs": "square-hollow-sections", "rhs": "rectangular-hollow-sections",
+    "chs": "circular-hollow-sections", "tubes": "circular-hollow-sections",
+    "angles": "equal-angles", "hss": "hss-square", "lumber": "dimension-lumber",
+    "timber": "solid-timber", "gl": "glulam",
+}  # fmt: skip
+"""What somebody may write for a shipped catalogue, for the hint only."""
 
 
 def shipped_folder() -> Path:
@@ -77,14 +87,16 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
         table = split(text, file)
     except TextProblemsError as error:
         raise InputError(error.problems) from error
-    findings = Findings(file=file, remarks=[*encoding, *table.remarks])
+    findings = Findings(file=file, remarks=[*encoding])
+    table = with_unit_row(table)
+    findings.remarks += table.remarks
     heads = read_heads(table.heads.cells, file=file, line=table.heads.line)
     findings.heads = {key_of(column): column.head for column in heads.columns}
     findings.remarks += heads.remarks
     findings.add(heads.problems)
     density = read_density(table, findings)
     unclear = {problem.place for problem in heads.problems}
-    _require_columns(heads.columns, density, bool(unclear), table.heads.line, findings)
+    _require_columns(heads, density, bool(unclear), table.heads.line, findings)
     if not table.rows:
         findings.problem(
             place="file", found="column heads but no rows", expected="at least one section"
@@ -97,6 +109,7 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
         raise InputError(findings.problems())
     entries = tuple(_with_equal_sides(entry, findings) for entry in entries)
     rows = [row for entry in entries if (row := _settle(entry, density, findings)) is not None]
+    _remark_on_least_axes(rows, findings)
     check_rows(rows, density, findings)
     if findings.any:
         raise InputError(findings.problems())
@@ -136,6 +149,7 @@ def _not_found(name: str, base: Path) -> Problem:
     shipped = shipped_catalogues()
     words = name.strip().casefold().replace("_", "-").replace(" ", "-").removesuffix(SUFFIX)
     near = difflib.get_close_matches(words, shipped, n=1, cutoff=0.5)
+    near = [SHORT_FORMS[words]] if words in SHORT_FORMS else near
     hint = f"Did you mean {near[0]}? " if near else ""
     return Problem(
         file=name or "(empty)",
@@ -156,14 +170,14 @@ def _unreadable(name: str, error: OSError) -> Problem:
 
 
 def _require_columns(
-    columns: Iterable[Column],
+    heads: Heads,
     density: float | str | None,
     unclear: bool,
     line: int,
     findings: Findings,
 ) -> None:
     """Every needed property must have a column; axes beyond the major one depend on the row."""
-    have = {key_of(column) for column in columns}
+    have = {key_of(column) for column in heads.columns}
     missing = []
     if "designation" not in have:
         missing.append("designation")
@@ -175,12 +189,14 @@ def _require_columns(
         missing.append("I major [cm4] (or i major [cm])")
     if unclear:  # a column may be there with a wrong unit, which is reported already
         missing = missing if "designation" not in have else []
+    unused = f"Not understood here: {', '.join(map(repr, heads.unused))}. " if heads.unused else ""
+    above = "Lines above the column heads must begin with #. " if "designation" in missing else ""
     for column in missing:
         findings.problem(
             place=f"line {line}",
             found=f"no column {column}",
             expected="a column for it, with its unit in square brackets",
-            fix=f"Heads that are understood: {PLAIN_HEADS}.",
+            fix=f"{above}{unused}Heads that are understood: {PLAIN_HEADS}.",
         )
 
 
@@ -232,61 +248,70 @@ def _settle(entry: Entry, density: float | str | None, findings: Findings) -> Ch
             entry, "plies", found=f"{plies:g}", expected="a whole number of plies", fix="",
             kind="plies",
         )  # fmt: skip
-    major = _about(entry, "major", area)
-    if major is None:
-        if findings.heads.keys() & {"I major", "i major", "I", "i"}:
-            key = next(k for k in ("I major", "i major", "I", "i") if k in findings.heads)
-            _missing(entry, key, "the major second moment or radius of gyration", findings)
-        return None
-    minor = _about(entry, "minor", area)
-    if minor is None:
-        minor = _alike(entry, major)
-    least = _about(entry, "least", area)
-    if minor is None:
-        _missing(entry, "I minor", "the minor second moment or radius of gyration", findings)
+    both = _about(entry, "", area) if _is_alike(entry) else None
+    major = _about(entry, " major", area) or both
+    minor = _about(entry, " minor", area) or (major if _is_alike(entry) else None)
+    least = _about(entry, " least", area)
+    if major is None or minor is None:
+        axis = "major" if major is None else "minor"
+        key = f"i {axis}" if f"i {axis}" in findings.heads else f"I {axis}"
+        _missing(entry, key, f"a second moment or radius of gyration, {axis} axis", findings)
         return None
     if least is None and entry.family == "angle":
-        _missing(
-            entry, "I least", "the least second moment or radius of gyration (v-v axis)", findings
-        )
+        key = "i least" if "i least" in findings.heads else "I least"
+        _missing(entry, key, "a second moment or radius of gyration, least axis (v-v)", findings)
         return None
     return Checked(
         entry=entry,
         area=area,
         i_major=major,
         i_minor=minor,
-        i_least=minor if least is None else min(least, minor),
+        i_least=minor if least is None else least,
     )
 
 
-def _about(entry: Entry, axis: str, area: float) -> float | None:
-    """Return the second moment about an axis: as stated, else A i²."""
-    inertia, radius = entry.value(f"I {axis}"), entry.value(f"i {axis}")
+def _about(entry: Entry, key: str, area: float) -> float | None:
+    """Return a second moment as stated under ``I`` + key, else A i² from ``i`` + key."""
+    inertia, radius = entry.value(f"I{key}"), entry.value(f"i{key}")
     if inertia is not None:
         return inertia
     return None if radius is None else area * radius**2
 
 
-def _alike(entry: Entry, major: float) -> float | None:
-    """Return the minor second moment of a section that has one for both sides."""
+def _remark_on_least_axes(rows: Sequence[Checked], findings: Findings) -> None:
+    """A shape that is not known may have a least axis that lies askew."""
+    askew = [
+        row.entry.line
+        for row in rows
+        if row.entry.family == "other" and not row.entry.numbers.keys() & {"I least", "i least"}
+    ]
+    if askew:
+        findings.remarks.append(
+            f"Least axis taken as the minor one for family other: lines {ranges(askew)}. A shape "
+            "without an axis of symmetry needs its least principal axis (I least)."
+        )
+
+
+def _is_alike(entry: Entry) -> bool:
+    """Say whether one second moment holds for both sides: squares, tubes and equal angles."""
     if entry.family in ALIKE_ON_BOTH_AXES:
-        return major
-    legs = entry.value("depth"), entry.value("width")
-    return major if entry.family == "angle" and legs[0] == legs[1] else None
+        return True
+    return entry.family == "angle" and entry.value("depth") == entry.value("width")
 
 
 def _missing(entry: Entry, key: str, what: str, findings: Findings) -> None:
-    has_column = key in findings.heads
-    column = f", column {findings.head(key)!r}" if has_column else ""
-    unit = {"area": "cm2", "mass": "kg/m"}.get(key, "cm4" if key.startswith("I") else "cm")
-    findings.problem(
-        place=f"{place_of(entry.line, entry.designation)}{column}",
-        found="an empty cell" if has_column else f"no column for {what}",
-        expected=what,
-        fix="" if has_column else f"Add a column: {key} [{unit}]",
-        kind=f"missing {key}",
-        line=entry.line,
-    )
+    """Report an empty cell, or a column that this row needs and the file does not have."""
+    if key in findings.heads:
+        findings.problem(
+            place=f"{place_of(entry.line, entry.designation)}, column {findings.head(key)!r}",
+            found="an empty cell",
+            expected=what,
+            kind=f"missing {key}",
+            line=entry.line,
+        )
+    else:
+        unit = {"area": "cm2", "mass": "kg/m"}.get(key, "cm4" if key.startswith("I") else "cm")
+        findings.absent(entry, what, f"{key} [{unit}]")
 
 
 def _said_columns(heads: Heads, density: float | str | None) -> tuple[tuple[str, str], ...]:
@@ -322,6 +347,8 @@ def _catalogue(
         return np.array([np.nan if v is None else v for v in found], dtype=np.float64)
 
     area = np.array([row.area for row in rows], dtype=np.float64)
+    # Printed figures may leave axes that are alike, in the wrong order by their rounding.
+    inertia = np.array([(row.i_major, row.i_minor, row.i_least) for row in rows])
     mass = column("mass")
     if isinstance(density, float):
         mass = np.where(np.isnan(mass), area * density, mass)
@@ -338,9 +365,9 @@ def _catalogue(
         family=tuple(row.entry.family for row in rows),
         product=tuple(row.entry.product for row in rows),
         area=area,
-        i_major=np.array([row.i_major for row in rows], dtype=np.float64),
-        i_minor=np.array([row.i_minor for row in rows], dtype=np.float64),
-        i_least=np.array([row.i_least for row in rows], dtype=np.float64),
+        i_major=inertia.max(axis=1),
+        i_minor=inertia[:, :2].min(axis=1),
+        i_least=inertia.min(axis=1),
         mass=mass,
         depth=column("depth"),
         width=column("width"),

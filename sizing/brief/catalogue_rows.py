@@ -74,6 +74,7 @@ class Findings:
     heads: Mapping[str, str] = field(default_factory=dict)
     remarks: list[str] = field(default_factory=list)
     _problems: list[tuple[str, int, Problem]] = field(default_factory=list)
+    _absent: dict[tuple[str, str], list[Entry]] = field(default_factory=dict)
 
     def problem(
         self, *, place: str, found: str, expected: str, fix: str = "", kind: str = "", line: int = 0
@@ -96,6 +97,10 @@ class Findings:
             found=found, expected=expected, fix=fix, kind=f"{kind} {key}", line=entry.line,
         )  # fmt: skip
 
+    def absent(self, entry: Entry, what: str, head: str) -> None:
+        """Note that a row needs ``what``, for which the file has no column such as ``head``."""
+        self._absent.setdefault((what, head), []).append(entry)
+
     def head(self, key: str) -> str:
         """Return the column head under which ``key`` stands in the file."""
         return self.heads.get(key, key)
@@ -107,7 +112,7 @@ class Findings:
     @property
     def any(self) -> bool:
         """Whether there is a problem."""
-        return bool(self._problems)
+        return bool(self._problems or self._absent)
 
     def problems(self) -> tuple[Problem, ...]:
         """Return every problem; the eleventh and later ones of one kind share a line."""
@@ -126,10 +131,22 @@ class Findings:
             told.append(
                 Problem(
                     file=self.file,
-                    place=f"{len(lines)} more lines ({_ranges(lines)})",
+                    place=f"{len(lines)} more lines ({ranges(lines)})",
                     found="the same kind of mistake",
                     expected=first[kind].expected.partition(" (")[0],
                     fix=first[kind].fix,
+                )
+            )
+        for (what, head), entries in self._absent.items():
+            place = place_of(entries[0].line, entries[0].designation)
+            more = f" and {len(entries) - 1} more" if len(entries) > 1 else ""
+            told.append(
+                Problem(
+                    file=self.file,
+                    place=f"{place}{more}",
+                    found=f"no column for what a section of family {entries[0].family} needs",
+                    expected=what,
+                    fix=f"Add a column: {head}",
                 )
             )
         return tuple(told)
@@ -140,8 +157,8 @@ def place_of(line: int, designation: str) -> str:
     return f"line {line} ({designation})" if designation else f"line {line}"
 
 
-def _ranges(lines: list[int]) -> str:
-    """Return 3, 4, 5, 9 as ``3-5, 9``."""
+def ranges(lines: list[int]) -> str:
+    """Return line numbers 3, 4, 5, 9 as ``3-5, 9``."""
     parts: list[list[int]] = []
     for line in sorted(lines):
         if parts and line == parts[-1][1] + 1:
@@ -179,12 +196,12 @@ def find_marks(table: TextTable, columns: Iterable[Column], findings: Findings) 
         delimiter=table.delimiter,
         declared="comma" if decimal == "comma" else "point" if decimal == "point" else None,
     )
+    other = "." if marks.decimal == "comma" else ","
     if marks.decimal == "comma" and decimal is None:
         findings.remarks.append("Numbers are read with a decimal comma (detected).")
-    if marks.thousands:
-        findings.remarks.append(
-            f"Thousands are grouped by {'points' if marks.decimal == 'comma' else 'commas'}."
-        )
+    grouped = [cell for cell in cells if (other in cell and marks.thousands)]
+    if grouped:
+        findings.remarks.append(f"Thousands are grouped by a mark, as in {grouped[0]}.")
     return marks
 
 
@@ -196,6 +213,8 @@ def read_entries(
     at = {column.property: column for column in columns if column.property in _TEXT}
     numeric = [column for column in columns if column.property not in _TEXT]
     family = _setting_family(table, findings)
+    if not family and table.settings.get("density", "").casefold() == "from grade":
+        family = "rectangle"
     entries = []
     guessed: dict[str, list[int]] = {}
     for row in table.rows:
@@ -226,7 +245,7 @@ def read_entries(
             )
     for name, lines in guessed.items():
         findings.remarks.append(
-            f"Family not stated, taken as {name} from the designation: lines {_ranges(lines)}."
+            f"Family not stated, taken as {name} from the designation: lines {ranges(lines)}."
         )
     return tuple(entries)
 

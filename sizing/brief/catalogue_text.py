@@ -126,6 +126,10 @@ def split(text: str, file: str) -> TextTable:
     header = tuple(line.strip().lstrip("#").strip() for line in lines if _is_comment(line))
     settings = _settings(header)
     body = ["" if _is_comment(line) else line for line in lines]
+    hint = re.match(r"^sep=(.)$", body[0].strip('"'))  # spreadsheets write their delimiter so
+    if hint:
+        settings.setdefault("delimiter", hint[1])
+        body[0] = ""
     first = next((i for i, line in enumerate(body) if line.strip()), None)
     if first is None:
         what = "only header lines" if header else "nothing"
