@@ -58,9 +58,8 @@ def svg_bytes(job: JobResult) -> bytes:
         paper.add(sheet.paper, right=0.0, down=down)
         down += sheet.height
     root = _root(paper, max((s.width for s in sheets), default=NARROWEST_SHEET), down, job)
-    return (
-        b'<?xml version="1.0" encoding="UTF-8"?>\n' + Xml.tostring(root, encoding="utf-8") + b"\n"
-    )
+    text: str = Xml.tostring(root, encoding="unicode")
+    return f'<?xml version="1.0" encoding="UTF-8"?>\n{text}\n'.encode()
 
 
 def option_svg(job: JobResult, option: OptionResult) -> str:

@@ -10,6 +10,10 @@ from dataclasses import dataclass
 from datetime import UTC, date, datetime
 from pathlib import Path
 
+from sizing.documents.drawing import svg_bytes
+from sizing.documents.report import report_bytes
+from sizing.documents.result_json import json_bytes
+from sizing.documents.workbook import workbook_bytes
 from sizing.errors import OutputError
 from sizing.results import JobResult
 
@@ -36,11 +40,6 @@ def write_documents(
 
 def render_documents(result: JobResult, issued: date) -> dict[str, bytes]:
     """Return the content of every document by file name."""
-    from sizing.documents.drawing import svg_bytes
-    from sizing.documents.report import report_bytes
-    from sizing.documents.result_json import json_bytes
-    from sizing.documents.workbook import workbook_bytes
-
     return {
         WORKBOOK: workbook_bytes(result, issued),
         REPORT: report_bytes(result, issued),
@@ -143,9 +142,9 @@ def _write(path: Path, content: bytes) -> None:
 
 def _exchange(place: _Place) -> None:
     if place.target.exists() or place.target.is_symlink():
-        os.replace(place.target, place.old)
+        place.target.replace(place.old)
         place.moved_away = True
-    os.replace(place.fresh, place.target)
+    place.fresh.replace(place.target)
     place.in_place = True
 
 
@@ -155,7 +154,7 @@ def _undo(places: Sequence[_Place], made: Sequence[Path]) -> None:
             if place.in_place and not place.moved_away:
                 place.target.unlink()
             if place.moved_away:
-                os.replace(place.old, place.target)
+                place.old.replace(place.target)
         with suppress(OSError):
             place.fresh.unlink(missing_ok=True)
     _remove(made)

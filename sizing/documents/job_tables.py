@@ -35,9 +35,14 @@ def cover_table(job: JobResult, issued: date) -> Table:
     ]
     rows += [
         ("Read first", CLOSING_CAUTION),
-        ("Numbers", "All numbers are values computed outside this workbook; it has no formulas."),
     ]
-    return Table(name="Cover", title=visible(brief.title), columns=ITEM_COLUMNS, rows=tuple(rows))
+    return Table(
+        name="Cover",
+        title="Schedule of truss members",
+        columns=ITEM_COLUMNS,
+        rows=tuple(rows),
+        notes=("Numbers were computed outside this workbook; it holds values, no formulas.",),
+    )
 
 
 def _extent(brief: Brief) -> str:
@@ -120,7 +125,7 @@ def nodes_table(brief: Brief, units: ShownUnits) -> Table:
     length = units.length
     names = axes(brief)
     held = {s.node: s.held for s in brief.supports}
-    rows = tuple(
+    rows: tuple[tuple[Cell, ...], ...] = tuple(
         (
             visible(node.name),
             *(length.of(coordinate) for coordinate in node.position),

@@ -46,7 +46,7 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
         Column(head="in combination"),
         Column(head="Greatest compression", unit=force.unit, style="force", places=force.places),
         Column(head="in combination"),
-        Column(head="Reversal"),
+        Column(head="Reversal", essential=False),
         Column(
             head="Buckling length in plane",
             unit=length.unit, style="number", places=length.places, essential=False,
@@ -59,7 +59,7 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
         Column(head="Slenderness out of plane", style="number", places=1),
         Column(head="Slenderness limit", style="number", places=0, essential=False),
         Column(head="Utilisation", style="ratio"),
-        Column(head="Check met"),
+        Column(head="Check met", essential=False),
         Column(head="Governing check"),
         Column(head="Governing combination"),
         Column(head="Note", style="prose", essential=False),

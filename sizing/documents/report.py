@@ -11,13 +11,16 @@ from sizing.documents.drawing import option_svg
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.rows import job_tables
-from sizing.documents.tables import Cell, Column, Table, essential_part, printed
-from sizing.documents.wording import CLOSING_CAUTION, met, outcome_sentence
+from sizing.documents.tables import Cell, Column, essential_part, printed
+from sizing.documents.wording import ALARMS, CLOSING_CAUTION, met, outcome_sentence
 from sizing.results import JobResult, WorkedCheck
 from sizing.standards.contract import Step
 
 FIGURES = 4
 """Significant figures of a worked line: enough to follow by hand to 1 in 1000."""
+
+SHORT_TEXT = 18
+"""Characters up to which a cell is kept on one line: marks, sections, combinations."""
 
 TEMPLATE = "report.html.jinja"
 
@@ -47,7 +50,7 @@ def report_bytes(job: JobResult, issued: date) -> bytes:
     """Return report.html for ``job`` as UTF-8, with drawings inside and no outside links."""
     tables = job_tables(job, issued)
     cover, *shared = tables.shared
-    page = _template().render(
+    page: str = _template().render(
         title=visible(job.brief.title),
         cover=cover,
         shared={table.name: table for table in shared},
@@ -72,7 +75,11 @@ def report_bytes(job: JobResult, issued: date) -> bytes:
 
 
 def _template() -> Any:
-    from jinja2 import Environment, PackageLoader, StrictUndefined
+    from jinja2 import (
+        Environment,
+        PackageLoader,
+        StrictUndefined,
+    )
 
     environment = Environment(
         loader=PackageLoader("sizing.documents", "."),
@@ -88,8 +95,11 @@ def _template() -> Any:
 
 
 def _cell_class(cell: Cell, column: Column) -> str:
-    alarm = " alarm" if cell in ("NO", "UPLIFT", "no resistance") else ""
-    return f"{'n' if column.numeric else 't'}{alarm}"
+    alarm = cell in ALARMS or (
+        column.style == "ratio" and isinstance(cell, float) and not met(cell)
+    )
+    short = isinstance(cell, str) and len(cell) <= SHORT_TEXT and not column.numeric
+    return f"{'n' if column.numeric else 't'}{' s' if short else ''}{' alarm' if alarm else ''}"
 
 
 def _css_text(words: str) -> str:

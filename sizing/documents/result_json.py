@@ -9,7 +9,7 @@ square metre; ratios have no unit; tension positive)::
     nodes            node name -> {position_m, held}
     options          option name -> one answer, see below
 
-One answer: ``status``, ``adequate``, ``mass_kg``, ``objective``, ``bound`` and ``bound_kg``, ``gap``,
+One answer: ``status``, ``adequate``, ``mass_kg``, ``objective``, ``bound``, ``bound_kg``, ``gap``,
 ``analyses``, ``seconds``, ``method``, ``standard``, ``grade``, ``catalogue``, ``sections`` (group
 -> designation), ``groups``, ``members``, ``take_off``, ``lighter``, ``combinations``,
 ``deflections``, ``reactions``, ``displacements_m``, ``worked``, ``left_out``, ``basis``,

@@ -12,6 +12,9 @@ SVG = "http://www.w3.org/2000/svg"
 TYPEFACE = "Arial, Helvetica, 'Liberation Sans', 'DejaVu Sans', sans-serif"
 INK, QUIET, PAPER = "#1d2730", "#5b6770", "#ffffff"
 
+LEVEL = 1e-3
+"""Radians below which text is not turned: less than a pixel over the longest label."""
+
 
 def number(value: float) -> str:
     """Return a coordinate with one decimal, without a negative zero."""
@@ -65,41 +68,56 @@ class Paper:
         halo: bool = False,
         full: str = "",
         turn: float = 0.0,
+        after: str = "",
     ) -> None:
         """Write ``words`` with their base line at ``at``, turned by ``turn`` radians.
 
         ``full`` is the whole text where ``words`` is shortened; viewers show it on pointing.
+        ``after`` follows in regular type.
         """
         put = self._put("text", x=number(at[0]), y=number(at[1]), fill=ink)
         put.set("font-size", number(size))
         if anchor != "start":
             put.set("text-anchor", anchor)
-        if bold:
-            put.set("font-weight", "bold")
         if halo:
             put.set("stroke", PAPER)
             put.set("stroke-width", "3")
             put.set("stroke-linejoin", "round")
             put.set("paint-order", "stroke")
-        if abs(turn) > 1e-3:
+        if abs(turn) > LEVEL:
             put.set(
                 "transform", f"rotate({math.degrees(turn):.1f} {number(at[0])} {number(at[1])})"
             )
-        put.set("unicode-bidi", "isolate")
+        if not words.isascii():
+            put.set("unicode-bidi", "isolate")
         if full and full != words:
             Xml.SubElement(put, "title").text = full
-            put[0].tail = words
-        else:
-            put.text = words
+        first = Xml.SubElement(put, "tspan")
+        first.text = words
+        if bold:
+            first.set("font-weight", "bold")
+        if after:
+            second = Xml.SubElement(put, "tspan", dx=number(0.45 * size))
+            second.text = after
 
-    def text_in(self, words: str, box: Box, *, size: float, full: str = "", **look: object) -> None:
+    def text_in(
+        self,
+        words: str,
+        box: Box,
+        *,
+        size: float,
+        ink: str = INK,
+        bold: bool = False,
+        halo: bool = False,
+        full: str = "",
+        after: str = "",
+    ) -> None:
         """Write ``words`` centred in ``box``, along its direction."""
         down = 0.36 * size
         at = (box.x - math.sin(box.angle) * down, box.y + math.cos(box.angle) * down)
         self.text(
-            words, at, size=size, anchor="middle", full=full, turn=box.angle,
-            bold=bool(look.get("bold")), halo=bool(look.get("halo")),
-            ink=str(look.get("ink", INK)),
+            words, at, size=size, anchor="middle", ink=ink, bold=bold, halo=halo, full=full,
+            turn=box.angle, after=after,
         )  # fmt: skip
 
     def add(self, other: Paper, *, right: float, down: float) -> None:

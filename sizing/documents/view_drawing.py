@@ -23,8 +23,13 @@ MARGIN_LEFT, MARGIN_RIGHT, MARGIN_TOP, MARGIN_BOTTOM = 62.0, 46.0, 52.0, 74.0
 SIGN = 13.0
 """Height of a support triangle, px."""
 
+PLAN = (0, 1)
+"""The two axes in the paper of a space truss seen from above."""
+
 LONGEST_LABEL = 26
 NAMES_AT_ONE_POINT = 3
+BOLD = 1.08
+"""Width of bold over regular type."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,9 +98,12 @@ def _supports(
             continue
         together = [any(f[a] for f in flags) for a in range(brief.dimensions)]
         x, y = points[nodes[0]]
+        if brief.dimensions == 3 and view.axes == PLAN:
+            _plan_support(paper, layout, (x, y), together)
+            continue
         if view.axes is None:
             _triangle(paper, (x, y), upright=True, slides=not together[-1])
-            letters = "".join(n for n, h in zip("xyz", together, strict=True) if h)
+            letters = _letters(together)
             paper.text(letters, (x, y + SIGN + 16), size=9.0, anchor="middle", ink=QUIET)
             layout.add(Box(x, y + SIGN + 12, text_width(letters, 9.0), 11.0), "sign")
         else:
@@ -103,6 +111,28 @@ def _supports(
             if across or up:
                 _triangle(paper, (x, y), upright=up, slides=not (across and up))
         layout.add(Box(x, y + SIGN * 0.7, SIGN * 1.5, SIGN * 1.6), "sign")
+
+
+def _plan_support(paper: Paper, layout: Layout, at: Point, held: Sequence[bool]) -> None:
+    """Draw a support seen from above: a square, with the axes held."""
+    x, y = at
+    half = SIGN * 0.5
+    corners = (
+        (x - half, y - half),
+        (x + half, y - half),
+        (x + half, y + half),
+        (x - half, y + half),
+    )
+    paper.polygon(corners, fill="none")
+    letters = _letters(held)
+    box = Box(x, y + half + 8, text_width(letters, 9.0), 10.0)
+    paper.text_in(letters, box, size=9.0, ink=QUIET, halo=True)
+    layout.add(box, "sign")
+    layout.add(Box(x, y, SIGN, SIGN), "sign")
+
+
+def _letters(held: Sequence[bool]) -> str:
+    return "".join(name for name, h in zip("xyz", held, strict=False) if h)
 
 
 def _triangle(paper: Paper, at: Point, *, upright: bool, slides: bool) -> None:
@@ -189,32 +219,34 @@ def _labels(
             continue  # seen end on: it is labelled in another view
         mark, full = _joined([m.mark for m in members])
         section = shortened(visible(members[0].designation), LONGEST_LABEL)
-        variants = [f"{mark}  {section}"] if with_sections and len(members) == 1 else []
+        variants = [section] if with_sections and len(members) == 1 else []
         whole = f"{full}: {visible(members[0].designation)}"
-        _place(paper, layout, (a, b), [*variants, mark], size, whole)
+        _place(paper, layout, (a, b), mark, [*variants, ""], size, whole)
 
 
 def _place(
     paper: Paper,
     layout: Layout,
     ends: tuple[Point, Point],
-    variants: Sequence[str],
+    mark: str,
+    sections: Sequence[str],
     size: float,
     full: str,
 ) -> None:
-    for words in variants:
-        boxes = _beside(ends, text_width(words, size), size)
+    """Put the mark, with its section where there is room, beside the member or upon it."""
+    for section in sections:
+        width = text_width(mark, size) * BOLD + (text_width(f"  {section}", size) if section else 0)
+        boxes = _beside(ends, width, size)
         free = layout.first_free(boxes)
         if free is not None:
             layout.add(boxes[free], "text")
-            paper.text_in(words, boxes[free], size=size, full=full)
+            paper.text_in(mark, boxes[free], size=size, full=full, bold=True, after=section)
             return
-    words = variants[-1]
-    boxes = _upon(ends, text_width(words, size), size)
+    boxes = _upon(ends, text_width(mark, size) * BOLD, size)
     free = layout.first_free(boxes, ("text", "sign"))
     box = boxes[free if free is not None else 0]
     layout.add(box, "text")
-    paper.text_in(words, box, size=size, halo=True, full=full)
+    paper.text_in(mark, box, size=size, halo=True, full=full, bold=True)
 
 
 def _beside(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:

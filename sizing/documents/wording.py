@@ -22,6 +22,9 @@ NOT_A_CUT_LENGTH = (
 
 SIGNS = "Tension is positive (T), compression negative (C)."
 
+ALARMS = frozenset({"NO", "UPLIFT", "no resistance"})
+"""Cells that every writer makes stand out."""
+
 _STATUS = {
     "proven": "proven lightest: nothing lighter in the catalogue passes",
     "within gap": "not proven lightest: search finished, the bound leaves a gap",

@@ -15,7 +15,8 @@ from typing import TYPE_CHECKING, Any
 
 from sizing.documents.plain_text import shortened, visible
 from sizing.documents.rows import JobTables, job_tables
-from sizing.documents.tables import Cell, Column, Table
+from sizing.documents.tables import Cell, Column, Table, printed
+from sizing.documents.wording import ALARMS, met
 from sizing.results import JobResult
 
 if TYPE_CHECKING:
@@ -28,7 +29,7 @@ LONGEST_SHEET_NAME = 31
 ZIP_DATE = (1980, 1, 1, 0, 0, 0)
 """The earliest time a ZIP entry can hold; fixed so that equal content gives equal bytes."""
 
-WIDEST_TEXT, WIDEST_PROSE, NARROWEST = 34, 60, 7
+WIDEST_TEXT, WIDEST_PROSE, NARROWEST = 46, 60, 7
 """Column widths in characters, so that a page stays legible."""
 
 _PAPER = {(False, False): 9, (False, True): 8, (True, False): 1, (True, True): 3}
@@ -149,6 +150,7 @@ class _Looks:
                 horizontal="right" if column.numeric else "left",
                 vertical="top",
                 wrap_text=text and not column.numeric,
+                indent=0 if column.numeric else 1,
             )
             self.book.add_named_style(style)
             self._known[key] = name
@@ -180,7 +182,10 @@ def _fill(
         cell = _put(sheet, head, j, f"{column.head}\n{column.unit}" if column.unit else column.head)
         cell.font, cell.fill, cell.border = looks.bold, looks.head_fill, looks.head_border
         cell.alignment = looks.alignment(
-            horizontal="right" if column.numeric else "left", vertical="bottom", wrap_text=True
+            horizontal="right" if column.numeric else "left",
+            vertical="bottom",
+            wrap_text=True,
+            indent=0 if column.numeric else 1,
         )
     for i, row in enumerate(table.rows, head + 1):
         for j, (value, column) in enumerate(zip(row, table.columns, strict=True), 1):
@@ -189,7 +194,7 @@ def _fill(
     if table.totals is not None:
         for j, (value, column) in enumerate(zip(table.totals, table.columns, strict=True), 1):
             _put_styled(sheet, last + 1, j, value, column, looks, total=True)
-    _size_columns(sheet, table, head, looks)
+    _size_columns(sheet, table, head)
     _page(sheet, table, head, last, footer, tables)
 
 
@@ -208,7 +213,9 @@ def _put(sheet: Worksheet, row: int, column: int, value: Cell) -> Any:
 def _put_styled(
     sheet: Worksheet, row: int, j: int, value: Cell, column: Column, looks: _Looks, *, total: bool
 ) -> None:
-    alarm = value in ("NO", "UPLIFT", "no resistance")
+    alarm = value in ALARMS or (
+        column.style == "ratio" and isinstance(value, float) and not met(value)
+    )
     cell = _put(sheet, row, j, value)
     prefixed = cell.quotePrefix
     cell.style = looks.of(column, text=isinstance(value, str), total=total, alarm=alarm)
@@ -216,10 +223,8 @@ def _put_styled(
         cell.quotePrefix = True
 
 
-def _size_columns(sheet: Worksheet, table: Table, head: int, looks: _Looks) -> None:
+def _size_columns(sheet: Worksheet, table: Table, head: int) -> None:
     from openpyxl.utils import get_column_letter
-
-    from sizing.documents.tables import printed
 
     deepest = 1
     for j, column in enumerate(table.columns):
@@ -229,7 +234,7 @@ def _size_columns(sheet: Worksheet, table: Table, head: int, looks: _Looks) -> N
         if len(table.columns) == 2 and column.style == "prose":
             cap = 110
         words = max(len(word) for word in f"{column.head} {column.unit}".split())
-        width = min(max(widest, words, NARROWEST - 2), cap) + 2
+        width = min(max(widest, words, NARROWEST - 2), cap) + (2 if column.numeric else 3)
         sheet.column_dimensions[get_column_letter(j + 1)].width = width
         deepest = max(deepest, _lines(column.head, width) + (1 if column.unit else 0))
     sheet.row_dimensions[head].height = 12.5 * deepest + 3
@@ -238,7 +243,7 @@ def _size_columns(sheet: Worksheet, table: Table, head: int, looks: _Looks) -> N
         for j, (value, column) in enumerate(zip(row, table.columns, strict=True), 1):
             if isinstance(value, str) and not column.numeric:
                 width = sheet.column_dimensions[get_column_letter(j)].width
-                lines = max(lines, _lines(value, width - 1))
+                lines = max(lines, _lines(value, width - 2))
         if lines > 1:
             sheet.row_dimensions[i].height = min(12.5 * lines + 1, 400)
 
