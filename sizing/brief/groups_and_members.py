@@ -179,21 +179,22 @@ def _make_groups(
     quantities: Quantities,
 ) -> tuple[list[Group], list[Member]]:
     own = {g: [i for i, m in enumerate(members) if m.group == g] for g in range(len(drafts))}
+    free = [_free_ends(d, nodes, findings, quantities) for d in drafts]
     groups = []
     for g, draft in enumerate(drafts):
         group = _plain_group(draft, own[g], members, findings, quantities)
         path: KeyPath = ("groups", draft.name)
         others = names.resolve_all((*path, "continues_in"), draft.entry.continues_in)
-        ends = _free_ends(path, draft.entry, nodes, findings, quantities)
         if not draft.entry.restrained_nodes:
             _must_be_alone(path, draft, findings)
         elif all(drafts[k].chain_is_known for k in (g, *others)):
             chain = list(dict.fromkeys(i for k in (g, *others) for i in own[k]))
             held = list(dict.fromkeys(n for k in (g, *others) for n in drafts[k].restrained))
+            ends = {n: factor for k in (*others, g) for n, factor in free[k].items()}
             lengths = restrained_lengths(
-                path, [members[i] for i in chain], held, ends, nodes, findings
+                path, [members[i] for i in chain], len(own[g]), held, ends, nodes, findings
             )
-            spans = dict(list(zip(chain, lengths, strict=True))[: len(own[g])])
+            spans = dict(zip(own[g], lengths, strict=True))
             for i, length in spans.items():
                 members[i] = replace(members[i], out_of_plane=length)
             group = replace(
@@ -217,15 +218,11 @@ def _must_be_alone(path: KeyPath, draft: _Draft, findings: Findings) -> None:
 
 
 def _free_ends(
-    path: KeyPath,
-    entry: RawGroup,
-    nodes: NodeTable,
-    findings: Findings,
-    quantities: Quantities,
+    draft: _Draft, nodes: NodeTable, findings: Findings, quantities: Quantities
 ) -> dict[int, float]:
     ends: dict[int, float] = {}
-    for name, value in entry.unrestrained_ends.items():
-        place: KeyPath = (*path, "unrestrained_ends", name)
+    for name, value in draft.entry.unrestrained_ends.items():
+        place: KeyPath = ("groups", draft.name, "unrestrained_ends", name)
         node = nodes.names.resolve(place, name)
         factor = quantities.read(place, value, "dimensionless")
         if factor is not None and not 1.0 <= factor <= 10.0:

@@ -17,13 +17,15 @@ from sizing.brief.nodes_and_supports import NodeTable
 def restrained_lengths(
     group: KeyPath,
     members: Sequence[Member],
+    own: int,
     restrained: Sequence[int],
     free_ends: Mapping[int, float],
     nodes: NodeTable,
     findings: Findings,
 ) -> list[float]:
-    """Return the buckling length out of plane in m of each of ``members``.
+    """Return the buckling length out of plane in m of the first ``own`` of ``members``.
 
+    ``members`` are the group's own and after them those of the groups that carry the chain on.
     ``free_ends`` gives, for chain ends that nothing holds, the factor on the distance to the
     next restrained node. Where the chain branches or an end is neither restrained nor declared
     free, the mistake is recorded and the member keeps its own length.
@@ -36,11 +38,11 @@ def restrained_lengths(
     _must_be_on_chain(group, at, restrained, free_ends, names, findings)
     lengths = [member.length for member in members]
     if _branches(group, at, names, findings):
-        return lengths
+        return lengths[:own]
     stops = set(restrained)
     loose: list[str] = []
     done: set[int] = set()
-    for i in range(len(members)):
+    for i in range(own):
         if i in done:
             continue
         run, ends = _run(i, members, at, stops)
@@ -57,7 +59,7 @@ def restrained_lengths(
             lengths[k] = factor * total
     if loose:
         _add_loose_ends(group, loose, findings)
-    return lengths
+    return lengths[:own]
 
 
 def _run(
