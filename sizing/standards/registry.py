@@ -12,7 +12,9 @@ from sizing.standards.settings import nearest
 STANDARDS: dict[str, str] = {
     "elastic": "sizing.standards.elastic:make_elastic",
     "EN 1993-1-1": "sizing.standards.en1993:make_en1993",
+    "AISC 360": "sizing.standards.aisc360:make_aisc360",
     "EN 1995-1-1": "sizing.standards.en1995:make_en1995",
+    "NDS": "sizing.standards.nds:make_nds",
 }
 """Name of each standard and where its factory stands (module:function)."""
 
@@ -22,10 +24,21 @@ SPELLINGS: dict[str, tuple[str, Mapping[str, Any]]] = {
     "EN1993-1-1": ("EN 1993-1-1", {}),
     "Eurocode 3": ("EN 1993-1-1", {}),
     "EC3": ("EN 1993-1-1", {}),
+    "AISC 360-22": ("AISC 360", {"edition": "360-22"}),
+    "AISC 360-16": ("AISC 360", {"edition": "360-16"}),
+    "ANSI/AISC 360": ("AISC 360", {}),
+    "ANSI/AISC 360-22": ("AISC 360", {"edition": "360-22"}),
+    "ANSI/AISC 360-16": ("AISC 360", {"edition": "360-16"}),
     "EN 1995-1-1:2004": ("EN 1995-1-1", {}),
     "EN 1995": ("EN 1995-1-1", {}),
     "Eurocode 5": ("EN 1995-1-1", {}),
     "EC5": ("EN 1995-1-1", {}),
+    "NDS 2018": ("NDS", {}),
+    "ANSI/AWC NDS-2018": ("NDS", {}),
+    "NDS 2018 ASD": ("NDS", {"method": "ASD"}),
+    "NDS 2018 LRFD": ("NDS", {"method": "LRFD"}),
+    "NDS ASD": ("NDS", {"method": "ASD"}),
+    "NDS LRFD": ("NDS", {"method": "LRFD"}),
     "allowable stress": ("elastic", {}),
 }
 """Other spellings: the name they stand for and the settings that they imply."""

@@ -90,3 +90,26 @@ def catalogue_of() -> Callable[..., Catalogue]:
 def members_of() -> Callable[..., MemberConditions]:
     """A function that builds member conditions from keywords."""
     return build_members
+
+
+@pytest.fixture(scope="session")
+def rectangles() -> Callable[..., Catalogue]:
+    """A function that builds solid rectangles from (width, depth) pairs in m, width <= depth."""
+
+    def build(*sides: tuple[float, float], product: str = "") -> Catalogue:
+        return build_catalogue(
+            *(
+                {
+                    "family": "rectangle",
+                    "product": product,
+                    "width": b,
+                    "depth": h,
+                    "area": b * h,
+                    "i_major": b * h**3 / 12.0,
+                    "i_minor": h * b**3 / 12.0,
+                }
+                for b, h in sides
+            )
+        )
+
+    return build
