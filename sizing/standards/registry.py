@@ -26,6 +26,8 @@ SPELLINGS: dict[str, tuple[str, Mapping[str, Any]]] = {
     "EC3": ("EN 1993-1-1", {}),
     "AISC 360-22": ("AISC 360", {"edition": "360-22"}),
     "AISC 360-16": ("AISC 360", {"edition": "360-16"}),
+    "AISC 360 LRFD": ("AISC 360", {"method": "LRFD"}),
+    "AISC 360 ASD": ("AISC 360", {"method": "ASD"}),
     "ANSI/AISC 360": ("AISC 360", {}),
     "ANSI/AISC 360-22": ("AISC 360", {"edition": "360-22"}),
     "ANSI/AISC 360-16": ("AISC 360", {"edition": "360-16"}),
