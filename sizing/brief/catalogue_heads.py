@@ -383,6 +383,12 @@ def _without_repeats(
     return list(seen.values()), problems
 
 
+def looks_like_heads(cells: list[str]) -> bool:
+    """Say whether a line can be the column heads: a designation and at least two more."""
+    names = {_BRACKETED.sub(r"\1", cell).strip().casefold() for cell in cells}
+    return len(names - {""}) >= 3 and bool(names & TEXT_NAMES["designation"])
+
+
 def with_unit_row(table: TextTable) -> TextTable:
     """Return the table with a row of units below the heads put into the heads.
 

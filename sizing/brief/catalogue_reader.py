@@ -22,7 +22,14 @@ from pathlib import Path
 import numpy as np
 
 from sizing.brief.catalogue_checks import Checked, check_rows
-from sizing.brief.catalogue_heads import PLAIN_HEADS, Column, Heads, read_heads, with_unit_row
+from sizing.brief.catalogue_heads import (
+    PLAIN_HEADS,
+    Column,
+    Heads,
+    looks_like_heads,
+    read_heads,
+    with_unit_row,
+)
 from sizing.brief.catalogue_rows import (
     Entry,
     Findings,
@@ -84,7 +91,7 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
     file = source.name
     try:
         text, encoding = decode(data, file)
-        table = split(text, file)
+        table = split(text, file, looks_like_heads)
     except TextProblemsError as error:
         raise InputError(error.problems) from error
     findings = Findings(file=file, remarks=[*encoding])
@@ -192,10 +199,11 @@ def _require_columns(
     unused = f"Not understood here: {', '.join(map(repr, heads.unused))}. " if heads.unused else ""
     above = "Lines above the column heads must begin with #. " if "designation" in missing else ""
     for column in missing:
+        unit = ", with its unit in square brackets" if "[" in column else ""
         findings.problem(
             place=f"line {line}",
             found=f"no column {column}",
-            expected="a column for it, with its unit in square brackets",
+            expected=f"a column for it{unit}",
             fix=f"{above}{unused}Heads that are understood: {PLAIN_HEADS}.",
         )
 
@@ -287,7 +295,7 @@ def _remark_on_least_axes(rows: Sequence[Checked], findings: Findings) -> None:
     ]
     if askew:
         findings.remarks.append(
-            f"Least axis taken as the minor one for family other: lines {ranges(askew)}. A shape "
+            f"Least axis taken as the minor one for family other: {ranges(askew)}. A shape "
             "without an axis of symmetry needs its least principal axis (I least)."
         )
 

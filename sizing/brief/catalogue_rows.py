@@ -131,7 +131,7 @@ class Findings:
             told.append(
                 Problem(
                     file=self.file,
-                    place=f"{len(lines)} more lines ({ranges(lines)})",
+                    place=f"{len(lines)} more, {ranges(lines)}",
                     found="the same kind of mistake",
                     expected=first[kind].expected.partition(" (")[0],
                     fix=first[kind].fix,
@@ -158,14 +158,15 @@ def place_of(line: int, designation: str) -> str:
 
 
 def ranges(lines: list[int]) -> str:
-    """Return line numbers 3, 4, 5, 9 as ``3-5, 9``."""
+    """Return line numbers as ``line 3`` or ``lines 3-5, 9``."""
     parts: list[list[int]] = []
     for line in sorted(lines):
         if parts and line == parts[-1][1] + 1:
             parts[-1][1] = line
         else:
             parts.append([line, line])
-    return ", ".join(f"{a}-{b}" if b > a else f"{a}" for a, b in parts)
+    text = ", ".join(f"{a}-{b}" if b > a else f"{a}" for a, b in parts)
+    return f"line {text}" if len(lines) == 1 else f"lines {text}"
 
 
 def key_of(column: Column) -> str:
@@ -245,7 +246,7 @@ def read_entries(
             )
     for name, lines in guessed.items():
         findings.remarks.append(
-            f"Family not stated, taken as {name} from the designation: lines {ranges(lines)}."
+            f"Family not stated, taken as {name} from the designation: {ranges(lines)}."
         )
     return tuple(entries)
 

@@ -8,13 +8,19 @@ from __future__ import annotations
 
 import csv
 import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 from sizing.errors import Problem
 
 LARGEST_FILE = 5 * 1024 * 1024
 """Bytes. A thousand rows take about 0.1 MiB; anything near this size is not a section table."""
+
+HEADS_WANTED = (
+    "column heads such as designation, area [cm2], mass [kg/m], I major [cm4], I minor [cm4]"
+)
+MOST_TITLE_LINES = 20
+"""Lines among which the column heads are looked for."""
 
 DELIMITERS = {
     ";": ";",
@@ -117,10 +123,12 @@ def _refuse_binary(file: str) -> None:
     )
 
 
-def split(text: str, file: str) -> TextTable:
+def split(text: str, file: str, looks_like_heads: Callable[[list[str]], bool]) -> TextTable:
     """Split the text into header, column heads and rows.
 
-    Raises :class:`TextProblemsError` with every problem that stops the splitting.
+    ``looks_like_heads`` recognises the line of column heads among the cells of the first lines;
+    titles above it join the header. Raises :class:`TextProblemsError` with every problem that
+    stops the splitting.
     """
     lines = text.replace("\r\n", "\n").replace("\r", "\n").split("\n")
     header = tuple(line.strip().lstrip("#").strip() for line in lines if _is_comment(line))
@@ -130,7 +138,11 @@ def split(text: str, file: str) -> TextTable:
     if hint:
         settings.setdefault("delimiter", hint[1])
         body[0] = ""
-    first = next((i for i, line in enumerate(body) if line.strip()), None)
+    first, titles = _head_line(body, looks_like_heads)
+    header += titles
+    remarks: tuple[str, ...] = ()
+    if titles:
+        remarks = (f"Taken as a title, above the column heads: {'; '.join(titles)}.",)
     if first is None:
         what = "only header lines" if header else "nothing"
         raise TextProblemsError(
@@ -139,11 +151,10 @@ def split(text: str, file: str) -> TextTable:
                 place="file",
                 found=what,
                 expected="a line of column heads and at least one row",
-                fix="Heads such as: designation, area [cm2], mass [kg/m], I major [cm4], "
-                "I minor [cm4].",
+                fix=f"Write {HEADS_WANTED}.",
             )
         )
-    delimiter, remarks = _delimiter(settings, body[first], file)
+    delimiter, detected = _delimiter(settings, body[first], file)
     rows = _cells(body, delimiter, file)
     heads, rest = rows[0], rows[1:]
     _check_widths(heads, rest, delimiter, file)
@@ -153,8 +164,24 @@ def split(text: str, file: str) -> TextTable:
         delimiter=delimiter,
         heads=heads,
         rows=tuple(rest),
-        remarks=remarks,
+        remarks=(*remarks, *detected),
     )
+
+
+def _head_line(
+    body: list[str], looks_like_heads: Callable[[list[str]], bool]
+) -> tuple[int | None, tuple[str, ...]]:
+    """Return the place of the column heads and the titles above them, which are blanked.
+
+    When no line looks like heads it is the first one that is not empty.
+    """
+    filled = [i for i, line in enumerate(body) if line.strip(' ;,\t"')]
+    for place in filled[:MOST_TITLE_LINES]:
+        if looks_like_heads(re.split(r"[;,\t]", body[place].replace('"', ""))):
+            titles = tuple(body[i].strip(' ;,\t"') for i in filled if i < place)
+            body[:place] = [""] * place
+            return place, titles
+    return (filled[0] if filled else None), ()
 
 
 def _is_comment(line: str) -> bool:
@@ -223,6 +250,16 @@ def _cells(body: list[str], delimiter: str, file: str) -> list[Row]:
 def _check_widths(heads: Row, rows: list[Row], delimiter: str, file: str) -> None:
     """Refuse rows with another number of cells than heads; empty cells at the end do not count."""
     columns = len(_trimmed(heads.cells))
+    if columns < 2:
+        raise TextProblemsError(
+            Problem(
+                file=file,
+                place=f"line {heads.line}",
+                found=f"{heads.cells[0]!r}, which is no line of column heads",
+                expected=HEADS_WANTED,
+                fix="Lines above the column heads must begin with #.",
+            )
+        )
     problems = []
     for row in rows:
         found = len(_trimmed(row.cells))
