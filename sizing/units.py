@@ -204,8 +204,10 @@ def _from_text(value: str, kind: Kind, expected: str) -> float:
         raise QuantityError(found=shown, expected=expected)
     unit = text[number_match.end() :].strip()
     if not unit:
-        fix = "Write a bare number without quotation marks"
-        fix += "." if _is_plain(kind) else ", or add the unit to the text."
+        if _is_plain(kind):
+            fix = "Delete the quotation marks."
+            raise QuantityError(found=f"{shown} as text", expected=expected, fix=fix)
+        fix = "Write a bare number without quotation marks, or add the unit to the text."
         raise QuantityError(found=f"{shown} without a unit", expected=expected, fix=fix)
     try:
         size = factor(unit, kind)

@@ -155,8 +155,8 @@ REFUSED: list[tuple[object, Kind, str]] = [
     (
         "0.9",
         "dimensionless",
-        'found "0.9" without a unit; expected a number without a unit, such as 0.9. Write a bare '
-        "number without quotation marks.",
+        'found "0.9" as text; expected a number without a unit, such as 0.9. Delete the quotation '
+        "marks.",
     ),
     (
         "5 EUR",

@@ -223,11 +223,12 @@ def _length_limit(
         known.findings.add(place, found=shown(value), expected=DESCRIBED_HERE["limit"])
         return None
     if isinstance(value, str) and not re.match(r"\s*[-+\u2212\d.]", value):
+        divisor = re.search(r"/\s*(\d+)\s*$", value)
         known.findings.add(
             place,
             found=quoted(value),
             expected=DESCRIBED_HERE["limit"],
-            fix=known.findings.did_you_mean(value.split("/")[0].strip(), ("span", "height")),
+            fix=f"Did you mean {quoted('span/' + divisor[1])}?" if divisor else "",
         )
         return None
     length = known.quantities.read(place, value, "length")

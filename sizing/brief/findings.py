@@ -19,6 +19,8 @@ KeyPath = tuple[str | int, ...]
 MOST_SUGGESTIONS = 200
 """Looking up near names is slow in a hopeless file; nobody reads so many suggestions."""
 LONGEST_SHOWN = 60
+LEAST_LIKENESS = 0.5
+"""Two names of two letters that share one are just alike enough for a suggestion."""
 
 
 def key_path_text(path: KeyPath) -> str:
@@ -128,7 +130,7 @@ class Findings:
             return ""
         names = list(known)
         folded = {candidate.casefold(): candidate for candidate in reversed(names)}
-        close = get_close_matches(name.casefold(), folded, n=1, cutoff=0.6)
+        close = get_close_matches(name.casefold(), folded, n=1, cutoff=LEAST_LIKENESS)
         return f"Did you mean {quoted(folded[close[0]])}?" if close else ""
 
     def raise_if_any(self) -> None:

@@ -27,8 +27,8 @@ def load_toml(path: Path, largest: int = LARGEST_BRIEF) -> tuple[SourceFile, dic
         raise InputError([_syntax_problem(source.name, text, str(error))]) from error
     except RecursionError as error:
         raise _refused(source.name, "lists nested hundreds of levels deep", "a brief") from error
-    except ValueError as error:  # a whole number of thousands of digits
-        raise _refused(source.name, f"a value that cannot be read ({error})", "TOML") from error
+    except ValueError as error:  # Python reads no whole number beyond 4300 digits, by default
+        raise _refused(source.name, "a number of thousands of digits", "numbers") from error
 
 
 def load_json(path: Path, largest: int) -> tuple[SourceFile, Any]:
@@ -99,6 +99,7 @@ _PLAIN_WORDS = {
     "Unterminated string": "text without its closing quotation mark",
     "Illegal character": "a character that may not stand here",
     "Expected newline or end of document after a statement": "more on the line than one value",
+    "Invalid initial character for a key part": "something other than a key",
     "Unclosed inline table": "a table { ... } that is not closed",
     "Invalid statement": "a line that is neither key = value nor [table]",
 }
@@ -134,6 +135,13 @@ _LIKELY_FIXES = (
     ("", r"[=\[,]\s*\u2212", "Use the plain minus sign -."),
     ("Cannot", r"", "Give every name once; delete or rename one of the two."),
     ("Invalid value", r"=\s*[A-Za-z]", "Put text in quotation marks."),
+    ("Unclosed inline table", r"=\s*\{[^}]*$", "A table { ... } stands on one line."),
+    (
+        "Unclosed inline table",
+        r"\d\s*[A-Za-z%]",
+        'Put a number with its unit in quotation marks, such as "120 mm".',
+    ),
+    ("Invalid initial character", r",\s*\}", "Delete the comma before the closing brace."),
     (
         "Expected newline",
         r"=\s*[-+]?[\d.]+\s*[A-Za-z]",

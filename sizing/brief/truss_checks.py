@@ -26,7 +26,7 @@ def check_truss(nodes: NodeTable, groups: GroupTable, findings: Findings) -> Non
     position = np.array([node.position for node in nodes.nodes])
     twins = _coincident(nodes.nodes, position, findings)
     if groups.whole and nodes.whole:
-        _loose(nodes.nodes, groups.members, findings)
+        _loose(nodes.nodes, groups.members, twins, findings)
     for member, passed in _passing(position, groups.members, twins).items():
         _add_passing(nodes.nodes, groups, member, passed, findings)
 
@@ -46,10 +46,12 @@ def _coincident(nodes: Sequence[Node], position: FloatArray, findings: Findings)
     return twins
 
 
-def _loose(nodes: Sequence[Node], members: Sequence[Member], findings: Findings) -> None:
+def _loose(
+    nodes: Sequence[Node], members: Sequence[Member], twins: set[int], findings: Findings
+) -> None:
     joined = {end for member in members for end in (member.start, member.end)}
     for i, node in enumerate(nodes):
-        if i not in joined:
+        if i not in joined and i not in twins:
             findings.add(
                 ("nodes", node.name),
                 found="a node without any member",
