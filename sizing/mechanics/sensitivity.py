@@ -41,7 +41,7 @@ def elongation_influence(stiffness: Stiffness) -> FloatArray:
 
 def virtual_forces(stiffness: Stiffness, vectors: sparse.csr_array | FloatArray) -> FloatArray:
     """Return n (r, m): member forces per unit of the load q in each row of ``vectors`` (r, n)."""
-    q = vectors.toarray() if sparse.issparse(vectors) else np.asarray(vectors)
+    q = vectors if isinstance(vectors, np.ndarray) else vectors.toarray()
     return np.asarray(stiffness.member_forces(stiffness.solve(q.T)).T)
 
 
