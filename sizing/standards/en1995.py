@@ -48,7 +48,6 @@ from sizing.standards.settings import SettingsReader, nearest
 from sizing.standards.slenderness import slenderness_in_and_out
 from sizing.standards.timber_sections import (
     Exclusions,
-    is_built_up,
     over_durations,
     product_names,
     smaller_and_larger,
@@ -68,7 +67,6 @@ CLAUSES = (
     "limit on slenderness",
     "not covered",
 )
-BUILT_UP = "built-up section: Annex C (slip of the fasteners between plies) is not covered"
 NOT_GLULAM = "the catalogue row is not glued laminated timber, the grade is"
 NOT_SOLID_TIMBER = "the catalogue row is glued laminated timber, the grade is solid timber"
 
@@ -128,7 +126,6 @@ class EN1995:
 
     def _exclusions(self, catalogue: Catalogue, reasons: Reasons) -> Exclusions:
         excluded = Exclusions(catalogue, reasons)
-        excluded.exclude(is_built_up(catalogue), BUILT_UP)
         glulam = product_names(catalogue, "14080")
         sawn = product_names(catalogue, "14081") | product_names(catalogue, "EN 336")
         if self.grade.product == "glulam":
@@ -287,6 +284,8 @@ class EN1995:
             " the member (common practice), so give that factor.",
             "Timber: compression uses the gross section, with fasteners that fill their holes,"
             " and straightness within the limits of EN 1995-1-1 section 10.",
+            "Timber: boards of built-up sections count one by one, as if nothing joined them;"
+            " Annex C is not used.",
             "Timber: slip in joints, bearing across the grain, bending, splitting, fire,"
             " durability and treatment are not checked.",
         ]

@@ -26,7 +26,6 @@ from sizing.standards.conditions import (
     take_section,
 )
 from sizing.standards.contract import (
-    FloatArray,
     Material,
     MemberConditions,
     ResistanceTable,
@@ -42,26 +41,11 @@ from sizing.standards.nds_settings import (
     refuse_unknown_factors,
 )
 from sizing.standards.nds_sizes import exclude_sizes
-from sizing.standards.nds_strength import (
-    C_COLUMN,
-    C_P,
-    INCISED,
-    K_F,
-    PHI,
-    F_cE,
-    density,
-    size_factors,
-    temperature_factors,
-    wet_factors,
-)
+from sizing.standards.nds_strength import density
+from sizing.standards.nds_values import Values
+from sizing.standards.nds_working import compression_steps, step, tension_steps
 from sizing.standards.slenderness import slenderness_in_and_out
-from sizing.standards.timber_sections import (
-    SQRT12,
-    Exclusions,
-    is_built_up,
-    over_durations,
-    smaller_and_larger,
-)
+from sizing.standards.timber_sections import SQRT12, Exclusions, over_durations
 
 EDITION = "ANSI/AWC NDS-2018 with Supplement 2018"
 
@@ -84,15 +68,6 @@ CREEP_DRY, CREEP_WET = 0.5, 1.0
 
 
 @dataclass(frozen=True, kw_only=True)
-class Adjusted:
-    """Values for one load duration: ``Ft``, ``Fc_star`` per section (s,), ``Emin``; Pa."""
-
-    Ft: FloatArray
-    Fc_star: FloatArray
-    Emin: float
-
-
-@dataclass(frozen=True, kw_only=True)
 class NDS:
     """A grade with its adjustment factors."""
 
@@ -101,6 +76,11 @@ class NDS:
     material: Material
     name: str = NAME
     edition: str = EDITION
+
+    @property
+    def values(self) -> Values:
+        """The adjusted values that follow from grade and settings."""
+        return Values(grade=self.grade, settings=self.settings)
 
     def resistances(
         self,
@@ -124,12 +104,12 @@ class NDS:
         excluded: Exclusions,
         reasons: Reasons,
     ) -> Resistances:
-        values = self.adjusted(catalogue, duration)
-        lambda_in, lambda_out = slenderness_in_and_out(catalogue, members)
+        adjusted = self.values.adjusted(catalogue, duration)
+        apart = slenderness_in_and_out(catalogue, members)
+        lambda_in, lambda_out = self.values.slenderness(catalogue, members)
         shape = lambda_in.shape
-        cp_in, cp_out = (
-            self._column(values, slenderness, catalogue) for slenderness in (lambda_in, lambda_out)
-        )
+        cp_in = self.values.column(adjusted, apart[0], lambda_in)
+        cp_out = self.values.column(adjusted, apart[1], lambda_out)
         least = np.minimum(cp_in, cp_out)
         clause = np.where(cp_out < cp_in, COLUMN_OUT, COLUMN_IN)
         clause = np.where(least < 1.0, clause, COMPRESSION)
@@ -141,8 +121,8 @@ class NDS:
             limit = self.settings.slenderness_limit
             text = f"le/d exceeds {limit:g}, the limit of 3.7.1.4 for members in compression"
             notes[slender] = reasons.index(text)
-        compression = values.Fc_star * least * catalogue.area
-        tension = values.Ft * catalogue.area * members.net_factor[:, None]
+        compression = adjusted.Fc_star * least * catalogue.area
+        tension = adjusted.Ft * catalogue.area * members.net_factor[:, None]
         found = Resistances(
             tension=np.where(usable, tension, 0.0),
             compression=np.where(usable & ~slender, compression, 0.0),
@@ -156,50 +136,6 @@ class NDS:
             notes=notes,
         )
         return limit_slenderness(found, greatest, members, reasons, LIMIT)
-
-    def _column(
-        self, values: Adjusted, slenderness: FloatArray, catalogue: Catalogue
-    ) -> FloatArray:
-        """Return CP (u, s), times Kf of 15.3 for built-up sections (about both axes)."""
-        critical = F_cE(values.Emin, slenderness / SQRT12)
-        factor = C_P(critical, values.Fc_star, C_COLUMN[self.grade.product])
-        return factor * self._plies(catalogue)
-
-    def _plies(self, catalogue: Catalogue) -> FloatArray:
-        return np.where(is_built_up(catalogue), self.settings.built_up, 1.0)
-
-    def adjusted(self, catalogue: Catalogue, duration: LoadDuration) -> Adjusted:
-        """Return the adjusted values of every section for one load duration."""
-        factors = self.factors(catalogue)
-        lasting = self.settings.durations[duration]
-        tension, compression, modulus = lasting, lasting, 1.0
-        if self.settings.method == "LRFD":
-            tension, compression = (K_F[v] * PHI[v] * lasting for v in ("Ft", "Fc"))
-            modulus = K_F["Emin"] * PHI["Emin"]
-        return Adjusted(
-            Ft=self.grade.Ft * factors["Ft"] * tension,
-            Fc_star=self.grade.Fc * factors["Fc"] * compression,
-            Emin=self.grade.Emin * self.stiffness_factor() * modulus,
-        )
-
-    def factors(self, catalogue: Catalogue) -> dict[str, FloatArray]:
-        """Return CF CM Ct Ci and the user's factor on Ft and Fc, per section (s,)."""
-        s = self.settings
-        _, larger = smaller_and_larger(catalogue)
-        size_t, size_c = size_factors(self.grade.size_rule, larger)
-        heat_t, heat_c, _ = temperature_factors(s.temperature, wet=s.wet)
-        wet_t, wet_c = 1.0, np.ones_like(size_c)
-        if s.wet:
-            wet_t, wet_c, _ = wet_factors(self.grade.product, self.grade.Fc / PSI * size_c)
-        cut_t, cut_c = (INCISED["Ft"], INCISED["Fc"]) if s.incised else (1.0, 1.0)
-        return {
-            "Ft": size_t * (wet_t * heat_t * cut_t * s.factor_Ft),
-            "Fc": size_c * wet_c * (heat_c * cut_c * s.factor_Fc),
-        }
-
-    def stiffness_factor(self) -> float:
-        """Return CM Ct Ci and the user's factor on E and Emin."""
-        return _stiffness_factor(self.grade, self.settings)
 
     def working(
         self,
@@ -219,85 +155,9 @@ class NDS:
         values = table.tension if sense == "tension" else table.compression
         if float(values[0, 0, 0]) == 0.0:
             reason = table.reasons[int(table.notes[0, 0])]
-            return (_step("T" if sense == "tension" else "P", "0", 0.0, "N", clause, reason),)
-        if sense == "tension":
-            return self._tension_steps(one, condition, duration, clause)
-        return self._compression_steps(one, table, duration, clause)
-
-    def _value_steps(self, one: Catalogue, duration: LoadDuration, value: str) -> list[Step]:
-        """The lines from the reference value to Ft' or Fc*."""
-        s, grade = self.settings, self.grade
-        reference = grade.Ft if value == "Ft" else grade.Fc
-        factor = float(self.factors(one)[value][0])
-        size = size_factors(grade.size_rule, smaller_and_larger(one)[1])
-        lasting = s.durations[duration]
-        other = factor / float(size[0 if value == "Ft" else 1][0])
-        steps = [
-            _step(value, grade.source, reference, "Pa", "Supplement", grade.name),
-            _step("C_F", "Table 4A", factor / other, "-", "4.3.6", "size factor"),
-            _step("C_MtI", "C_M C_t C_i", other, "-", "4.3.3, 4.3.4, 4.3.8", "moisture, heat"),
-        ]
-        result = "F_t'" if value == "Ft" else "F_c*"
-        values = self.adjusted(one, duration)
-        number = float((values.Ft if value == "Ft" else values.Fc_star)[0])
-        if s.method == "ASD":
-            text = f"load duration {duration}"
-            steps.append(_step("C_D", "Table 2.3.2", lasting, "-", "2.3.2", text))
-            steps.append(_step(result, f"{value} C_D C_F C_MtI", number, "Pa", "Table 4.3.1"))
-            return steps
-        text = f"time effect, load duration {duration}"
-        steps += [
-            _step("λ", "Table N3", lasting, "-", "N.3.3", text),
-            _step("K_F", "Table N1", K_F[value], "-", "N.3.1", "format conversion"),
-            _step("φ", "Table N2", PHI[value], "-", "N.3.2", "resistance factor"),
-            _step(result, f"{value} K_F φ λ C_F C_MtI", number, "Pa", "Table 4.3.1"),
-        ]
-        return steps
-
-    def _tension_steps(
-        self, one: Catalogue, members: MemberConditions, duration: LoadDuration, clause: str
-    ) -> tuple[Step, ...]:
-        area, net = float(one.area[0]), float(members.net_factor[0])
-        steps = self._value_steps(one, duration, "Ft")
-        resistance = steps[-1].value * area * net
-        return (
-            _step("A", "catalogue", area, "m²", "section"),
-            *steps,
-            _step("k_net", "brief", net, "-", "3.1.2", "net over gross area at the joints"),
-            _step("T", "F_t' k_net A", resistance, "N", clause, "resistance"),
-        )
-
-    def _compression_steps(
-        self, one: Catalogue, table: ResistanceTable, duration: LoadDuration, clause: str
-    ) -> tuple[Step, ...]:
-        area, c = float(one.area[0]), C_COLUMN[self.grade.product]
-        values = self.adjusted(one, duration)
-        plies = float(self._plies(one)[0])
-        strength = self._value_steps(one, duration, "Fc")
-        steps = [
-            _step("A", "catalogue", area, "m²", "section"),
-            *strength,
-            _step("E_min'", "E_min, adjusted", values.Emin, "Pa", "Table 4.3.1", self.grade.name),
-            _step("c", self.grade.product, c, "-", "3.7.1.5"),
-            _step("K_f", "15.3.2 for plies, else 1", plies, "-", "15.3.2"),
-        ]
-        columns = []
-        for mark, slenderness in (("in", table.slenderness_in), ("out", table.slenderness_out)):
-            le_d = slenderness[0] / SQRT12
-            critical = F_cE(values.Emin, le_d)
-            factor = plies * float(C_P(critical, values.Fc_star, c)[0])
-            columns.append(factor)
-            text = f"3.7.1 {'in' if mark == 'in' else 'out of'} plane"
-            stress = float(critical[0])
-            root = f"(1 + r)/(2c) − √([(1 + r)/(2c)]² − r/c), r = F_cE,{mark} / F_c*"
-            steps += [
-                _step(f"(le/d)_{mark}", f"L_{mark} / d_{mark}", float(le_d[0]), "-", text),
-                _step(f"F_cE,{mark}", f"0.822 E_min' / (le/d)_{mark}²", stress, "Pa", text),
-                _step(f"C_P,{mark}", f"K_f ({root})", factor, "-", text),
-            ]
-        resistance = min(columns) * strength[-1].value * area
-        expression = "F_c* min(C_P,in, C_P,out) A"
-        return (*steps, _step("P", expression, resistance, "N", clause, "resistance"))
+            return (step("T" if sense == "tension" else "P", "0", 0.0, "N", clause, reason),)
+        steps = tension_steps if sense == "tension" else compression_steps
+        return steps(self.values, one, condition, duration, clause)
 
     def basis(self) -> tuple[tuple[str, str], ...]:
         """Return (what, value with source) rows for the basis of design."""
@@ -338,9 +198,7 @@ class NDS:
             " and nothing else. Row and group tear-out are not checked.",
             "Wood: compression uses the gross section; bearing, bending, fire, decay and treatment"
             " are not checked, and the buckling stiffness factor of sheathed chords is not used.",
-            "Wood: sections that the catalogue calls built-up take Kf "
-            f"{self.settings.built_up:g} about both axes; plies must be fastened to 15.3.3 or"
-            " 15.3.4.",
+            self._plies_caution(),
         ]
         if self.settings.slenderness_limit > 50.0:
             lines.append("Wood: le/d above 50 is for the time of construction only (3.7.1.4).")
@@ -350,20 +208,13 @@ class NDS:
             lines.append("Wood: one Emin serves both axes; give the lower one for glulam.")
         return tuple(lines)
 
-
-def _stiffness_factor(grade: NDSGrade, s: NDSSettings) -> float:
-    factor = temperature_factors(s.temperature, wet=s.wet)[2] * s.factor_E
-    if s.wet:
-        factor *= wet_factors(grade.product, np.ones(1))[2]
-    return factor * INCISED["E"] if s.incised else factor
-
-
-def _step(
-    symbol: str, expression: str, value: float, unit: str, clause: str, meaning: str = ""
-) -> Step:
-    return Step(
-        symbol=symbol, expression=expression, value=value, unit=unit, clause=clause, meaning=meaning
-    )
+    def _plies_caution(self) -> str:
+        if self.settings.built_up == 0.0:
+            return "Wood: boards of built-up sections count one by one, as if nothing joined them."
+        return (
+            f"Wood: built-up sections take Kf {self.settings.built_up:g} across the plies, which"
+            " must be fastened to 15.3.3 (nails) or 15.3.4 (bolts)."
+        )
 
 
 def make_nds(grade: str | None, settings: Mapping[str, Any]) -> NDS:
@@ -384,7 +235,7 @@ def make_nds(grade: str | None, settings: Mapping[str, Any]) -> NDS:
         settings=chosen,
         material=Material(
             name=found.name,
-            E=found.E * _stiffness_factor(found, chosen),
+            E=found.E * Values(grade=found, settings=chosen).stiffness_factor(),
             density=density(found.G, moisture),
             creep=CREEP_WET if chosen.wet or chosen.unseasoned else CREEP_DRY,
         ),

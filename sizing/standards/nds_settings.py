@@ -69,7 +69,7 @@ def read_settings(settings: Mapping[str, Any]) -> tuple[SettingsReader, NDSSetti
     """Return the reader (for the grade) and the settings; raises :class:`SettingsError`."""
     reader = SettingsReader(NAME, settings, KEYS)
     method = cast(Method, reader.choice("method", get_args(Method), "ASD"))
-    fasteners = reader.choice("built_up_fasteners", tuple(BUILT_UP), "nails")
+    fasteners = reader.choice("built_up_fasteners", tuple(BUILT_UP), "none")
     return reader, NDSSettings(
         method=method,
         wet=_flag(settings, "wet_service"),

@@ -10,7 +10,7 @@ from sizing.standards.nds_strength import (
     SIZE_TOLERANCE,
     STUD_WIDEST,
 )
-from sizing.standards.timber_sections import Exclusions, is_built_up, smaller_and_larger
+from sizing.standards.timber_sections import Exclusions, smaller_and_larger
 
 THINNEST, THICKEST = 1.5 * INCH, 4.0 * INCH
 """Dimension lumber is 2 to 4 in thick: 1.5 in dressed to 4 in rough (4.1.3.2)."""
@@ -22,13 +22,10 @@ def exclude_sizes(grade: NDSGrade, catalogue: Catalogue, excluded: Exclusions) -
     """Leave out the sections for which the grade has no reference values."""
     smaller, larger = smaller_and_larger(catalogue)
     if grade.product in ("dimension lumber", "sized lumber"):
-        single = ~is_built_up(catalogue)
         thin = smaller < THINNEST - SIZE_TOLERANCE
-        excluded.exclude(thin & single, "thinner than 2 in nominal: no dimension lumber")
+        excluded.exclude(thin, "thinner than 2 in nominal: no dimension lumber")
         thick = smaller > THICKEST + SIZE_TOLERANCE
-        excluded.exclude(
-            thick & single, "thicker than 4 in: no dimension lumber, take posts and timbers"
-        )
+        excluded.exclude(thick, "thicker than 4 in: no dimension lumber, take posts and timbers")
     if grade.product == "posts and timbers":
         small = smaller < POST_LEAST - SIZE_TOLERANCE
         excluded.exclude(small, "smaller than 5 x 5 in: no posts and timbers")

@@ -47,8 +47,8 @@ K_CE = 0.822
 LE_D_LIMIT = 50.0
 LE_D_LIMIT_CONSTRUCTION = 75.0
 
-BUILT_UP = {"nails": 0.60, "bolts": 0.75}
-"""Kf of 15.3.2 for buckling across the plies."""
+BUILT_UP = {"none": 0.0, "nails": 0.60, "bolts": 0.75}
+"""Kf of 15.3.2 for buckling across the plies; 0: the boards act one by one."""
 
 SIZE_TOLERANCE = 0.001
 """m; metric dressed sizes are rounded to the millimetre (89 for 88.9, 140 for 139.7)."""

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from dataclasses import replace
 
 import numpy as np
 
@@ -19,10 +20,23 @@ SQRT12 = math.sqrt(12.0)
 
 
 def smaller_and_larger(catalogue: Catalogue) -> tuple[FloatArray, FloatArray]:
-    """Return the sides of each rectangle (s,) in m: as given, else √12 i about each axis."""
-    depth = np.where(np.isnan(catalogue.depth), SQRT12 * catalogue.r_major, catalogue.depth)
-    width = np.where(np.isnan(catalogue.width), SQRT12 * catalogue.r_minor, catalogue.width)
+    """Return the sides (s,) in m of each rectangle, or of one board of a built-up section.
+
+    As given, else √12 i about each axis. A built-up row states second moments of boards that
+    slip freely, so that √12 i is the side of one board about either axis.
+    """
+    apart = is_built_up(catalogue)
+    no_depth, no_width = np.isnan(catalogue.depth) | apart, np.isnan(catalogue.width) | apart
+    depth = np.where(no_depth, SQRT12 * catalogue.r_major, catalogue.depth)
+    width = np.where(no_width, SQRT12 * catalogue.r_minor, catalogue.width)
     return np.minimum(depth, width), np.maximum(depth, width)
+
+
+def joined(catalogue: Catalogue) -> Catalogue:
+    """Return the catalogue with built-up sections in one piece: I = A width²/12 across plies."""
+    whole = catalogue.area * np.square(catalogue.width) / 12.0
+    built_up = is_built_up(catalogue) & ~np.isnan(whole)
+    return replace(catalogue, i_minor=np.where(built_up, whole, catalogue.i_minor))
 
 
 def is_rectangle(catalogue: Catalogue) -> BoolArray:
