@@ -87,21 +87,27 @@ class Findings:
         order: Callable[[KeyPath], tuple[int, ...]] = lambda _: (),
     ) -> None:
         self.file = file
-        self.problems: list[Problem] = []
         self.cautions: list[str] = []
         self.place = place
         self._order = order
-        self._paths: list[KeyPath] = []
+        self._paths: dict[Problem, KeyPath] = {}
         self._suggestions = 0
+
+    @property
+    def problems(self) -> tuple[Problem, ...]:
+        """The mistakes so far, in the order of the file."""
+        return tuple(sorted(self._paths, key=lambda problem: self._order(self._paths[problem])))
+
+    def __len__(self) -> int:
+        return len(self._paths)
 
     def add(self, path: KeyPath, *, found: str, expected: str, fix: str = "") -> None:
         """Record one mistake."""
         problem = Problem(
             file=self.file, place=self.place(path), found=found, expected=expected, fix=fix
         )
-        if problem not in self.problems:
-            self.problems.append(problem)
-            self._paths.append(path)
+        if problem not in self._paths:
+            self._paths[problem] = path
 
     def caution(self, text: str) -> None:
         """Record something that is allowed but that a checking engineer wants to know."""
@@ -135,9 +141,8 @@ class Findings:
 
     def raise_if_any(self) -> None:
         """Raise :class:`InputError` with every mistake in the file's order, if there is one."""
-        if self.problems:
-            pairs = zip(self._paths, self.problems, strict=True)
-            raise InputError([p for _, p in sorted(pairs, key=lambda pair: self._order(pair[0]))])
+        if self._paths:
+            raise InputError(self.problems)
 
 
 class Quantities:

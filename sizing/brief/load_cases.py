@@ -35,7 +35,7 @@ def read_cases(
 ) -> CaseTable:
     """Return the load cases in the order of the brief."""
     names = Names(findings, "load case", raw, complete=present)
-    before = len(findings.problems)
+    before = len(findings)
     if present and not raw:
         findings.add(("cases",), found="an empty table", expected="at least one load case")
     cases: list[LoadCase] = []
@@ -74,7 +74,7 @@ def read_cases(
                 may_be_absent=entry.may_be_absent,
             )
         )
-    if present and len(findings.problems) == before:
+    if present and len(findings) == before:
         _check_cases(cases, findings)
     return CaseTable(cases=tuple(cases), names=names)
 

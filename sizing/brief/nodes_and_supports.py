@@ -55,7 +55,7 @@ def read_nodes(
     """Return the nodes; all must have the same number of coordinates, 2 or 3."""
     own = [name for name in raw if name not in RawBrief.model_fields]
     names = Names(findings, "node", own, complete=present)
-    before = len(findings.problems)
+    before = len(findings)
     if present and not raw:
         findings.add(("nodes",), found="an empty table", expected="at least two nodes")
     if len(raw) > MOST_NODES:
@@ -79,7 +79,7 @@ def read_nodes(
         if all(math.isfinite(x) and abs(x) <= FARTHEST for x in position):
             names.index[name] = len(nodes)
             nodes.append(Node(name=name, position=position))
-    whole = present and len(findings.problems) == before
+    whole = present and len(findings) == before
     if whole and nodes:
         _must_have_size(nodes, findings)
     return NodeTable(nodes=tuple(nodes), names=names, dimensions=dimensions, whole=whole)

@@ -38,7 +38,7 @@ def read_sections(path: Path, brief: Brief) -> dict[str, dict[str, str]]:
         place: KeyPath = (head, name)
         if options.resolve(place, name) is not None:
             sections[name] = _one_option(place, table, brief, findings)
-    if not sections and not findings.problems:
+    if not sections and len(findings) == 0:
         findings.add(
             (head,), found="no option", expected='tables [sections.OPTION] with group = "..."'
         )

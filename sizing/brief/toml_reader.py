@@ -49,13 +49,13 @@ def brief_from_tables(
         return key not in faulty
 
     nodes = read_nodes(raw.nodes, findings, quantities, present=present("nodes"))
-    before = len(findings.problems)
+    before = len(findings)
     supports = read_supports(raw.supports, nodes, findings, present=present("supports"))
-    supports_known = nodes.whole and bool(supports) and len(findings.problems) == before
+    supports_known = nodes.whole and bool(supports) and len(findings) == before
     groups = read_groups(raw.groups, nodes, findings, quantities, present=present("groups"))
     check_truss(nodes, groups, findings)
     cases = read_cases(raw.cases, nodes, findings, quantities, present=present("cases"))
-    before = len(findings.problems)
+    before = len(findings)
     combinations, names = read_combinations(
         raw.combinations, cases, findings, quantities, complete=present("combinations")
     )
@@ -69,7 +69,7 @@ def brief_from_tables(
         findings,
         quantities,
         supports_known=supports_known,
-        states_known=present("combinations") and len(findings.problems) == before,
+        states_known=present("combinations") and len(findings) == before,
     )
     options = read_options(raw.options, findings, quantities, present=present("options"))
     findings.raise_if_any()
