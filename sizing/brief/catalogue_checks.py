@@ -9,11 +9,19 @@ keeps quiet up to a small deviation, remarks on a larger one and refuses what no
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from sizing.brief import section_geometry as geometry
+from sizing.brief.catalogue_causes import (
+    AREA_CAUSES,
+    INERTIA_CAUSES,
+    LENGTH_CAUSES,
+    MASS_CAUSES,
+    likely_cause,
+)
 from sizing.brief.catalogue_rows import Entry, Findings, place_of
+from sizing.brief.catalogue_shapes import formed_by, has_dimensions, has_thin_us_wall, other_make
 
 QUIET = 0.01
 """Relative deviation, beyond rounding, that is not worth a word: twice that of published tables."""
@@ -43,36 +51,6 @@ GREATEST_POLAR = 50.0
 
 TIMBER_DENSITIES = (250.0, 1300.0)
 """kg/m³, lightest softwood to heaviest hardwood class with a margin (EN 338: 290 to 1080)."""
-
-CAUSE_MARGIN = 0.05
-"""Relative distance within which a ratio is taken as the sign of a known slip."""
-
-AREA_CAUSES = {
-    100.0: "mm2 given as cm2", 0.01: "cm2 given as mm2", 645.16: "mm2 given as in2",
-    6.4516: "cm2 given as in2", 1 / 6.4516: "in2 given as cm2", 1 / 645.16: "in2 given as mm2",
-    10.0: "a figure with the decimal mark one place too far right",
-    0.1: "a figure with the decimal mark one place too far left",
-}  # fmt: skip
-INERTIA_CAUSES = {
-    1e4: "mm4 given as cm4", 1e-4: "cm4 given as mm4", 416231.4: "mm4 given as in4",
-    41.62314: "cm4 given as in4", 1 / 41.62314: "in4 given as cm4",
-    10.0: "a figure with the decimal mark one place too far right",
-    0.1: "a figure with the decimal mark one place too far left",
-}  # fmt: skip
-LENGTH_CAUSES = {
-    10.0: "mm given as cm", 0.1: "cm given as mm",
-    25.4: "mm given as in", 1 / 25.4: "in given as mm",
-}  # fmt: skip
-MASS_CAUSES = {
-    1.488164: "kg/m given as lb/ft", 1 / 1.488164: "lb/ft given as kg/m",
-    9.80665: "N/m given as kg/m", 0.01: "kN/m given as kg/m", 1000.0: "g/m given as kg/m",
-}  # fmt: skip
-
-
-def likely_cause(ratio: float, causes: dict[float, str]) -> str:
-    """Return the slip that explains found/expected = ``ratio``, empty when none does."""
-    nearest = min(causes, key=lambda known: abs(math.log(ratio / known)))
-    return causes[nearest] if abs(ratio / nearest - 1.0) <= CAUSE_MARGIN else ""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -113,14 +91,6 @@ def _rows(count: int) -> str:
     return "1 row" if count == 1 else f"{count} rows"
 
 
-def _has_thin_us_wall(entry: Entry) -> bool:
-    """ASTM A500 and A53 tables print the mass of the nominal wall, the area of 0.93 of it."""
-    product = entry.product.upper().replace(" ", "")
-    if product:
-        return product.startswith(("ASTMA500", "ASTMA53", "A500", "A53"))
-    return entry.designation.upper().startswith(("HSS", "PIPE"))
-
-
 def _outside(value: float, low: float, high: float) -> float:
     """Return how far a value lies outside a range, relative to the nearer end (0 inside)."""
     if value < low:
@@ -152,7 +122,7 @@ def _check_masses(
         if unstated and TIMBER_DENSITIES[0] <= ratio <= TIMBER_DENSITIES[1]:
             continue
         low = density if density is not None else geometry.STEEL_DENSITY
-        high = low / geometry.US_WALL_FACTOR if _has_thin_us_wall(row.entry) else low
+        high = low / geometry.US_WALL_FACTOR if has_thin_us_wall(row.entry) else low
         rounding = row.entry.rounding("mass") + row.entry.rounding("area")
         deviation = _beyond(_outside(ratio, low, high), rounding)
         if abs(deviation) > REFUSED:
@@ -362,91 +332,16 @@ def _check_polar(row: Checked, findings: Findings) -> bool:
     return False
 
 
-Shape = Callable[[Entry], list[geometry.SectionProperties]]
-
-
-def _hollow(entry: Entry) -> list[geometry.SectionProperties]:
-    h, b, t = _dimensions(entry)
-    sharp = geometry.rectangular_hollow(
-        depth=h, width=b, wall=t, outside_radius=0.0, inside_radius=0.0
-    )
-    hot = geometry.hot_finished_hollow(depth=h, width=b, wall=t)
-    cold = geometry.cold_formed_hollow(depth=h, width=b, wall=t)
-    if entry.product.upper().startswith("EN 10210"):
-        return [hot]
-    if entry.product.upper().startswith("EN 10219"):
-        return [cold]
-    found = [sharp, hot, cold]
-    if _has_thin_us_wall(entry):
-        found.append(geometry.us_square_hollow(depth=h, width=b, nominal_wall=t))
-    return found
-
-
-def _tube(entry: Entry) -> list[geometry.SectionProperties]:
-    d, _, t = _dimensions(entry)
-    found = [geometry.circular_hollow(diameter=d, wall=t)]
-    if _has_thin_us_wall(entry):
-        found.append(geometry.us_pipe(diameter=d, nominal_wall=t))
-    return found
-
-
-def _angle(entry: Entry) -> list[geometry.SectionProperties]:
-    a, b, t = _dimensions(entry)
-    root = entry.value("root_radius")
-    radii = [0.0, 1.6 * t] if root is None else [root]
-    return [
-        geometry.angle(leg=a, other_leg=b, thickness=t, root_radius=r, toe_radius=r / 2.0)
-        for r in radii
-    ]
-
-
-def _i_section(entry: Entry) -> list[geometry.SectionProperties]:
-    h, b, t = _dimensions(entry)
-    flange = entry.numbers["flange"].value
-    root = entry.value("root_radius")
-    radii = [0.0, 0.15 * h] if root is None else [root]
-    return [
-        geometry.i_section(depth=h, width=b, web=t, flange=flange, root_radius=r) for r in radii
-    ]
-
-
-def _rectangle(entry: Entry) -> list[geometry.SectionProperties]:
-    depth, width = entry.numbers["depth"].value, entry.numbers["width"].value
-    plies = entry.value("plies") or 1.0
-    apart = geometry.built_up_plies(depth=depth, ply=width / plies, plies=round(plies))
-    return [apart, geometry.rectangle(depth=depth, width=width)]
-
-
-def _dimensions(entry: Entry) -> tuple[float, float, float]:
-    return (
-        entry.numbers["depth"].value,
-        entry.numbers["width"].value,
-        entry.numbers["thickness"].value,
-    )
-
-
-SHAPES: dict[str, tuple[tuple[str, ...], Shape]] = {
-    "SHS": (("depth", "width", "thickness"), _hollow),
-    "RHS": (("depth", "width", "thickness"), _hollow),
-    "CHS": (("depth", "width", "thickness"), _tube),
-    "angle": (("depth", "width", "thickness"), _angle),
-    "I": (("depth", "width", "thickness", "flange"), _i_section),
-    "rectangle": (("depth", "width"), _rectangle),
-}
-"""Dimensions that each family's formula needs, and the formulas that its tables may follow."""
-
-
 def _check_shape(
     row: Checked, findings: Findings, deviations: dict[str, list[tuple[float, Entry]]]
 ) -> bool:
     """Hold area and second moments against the family's own formulas."""
     entry = row.entry
-    needed, shape = SHAPES.get(entry.family, ((), _rectangle))
-    if not needed or any(key not in entry.numbers for key in needed):
+    if not has_dimensions(entry):
         return True
     if not _fits(entry, findings):
         return False
-    formed = shape(entry)
+    formed = formed_by(entry)
     if not _check_area(row, formed, findings, deviations):
         return False
     good = True
@@ -505,7 +400,7 @@ def _check_area(
     entry = row.entry
     areas = [properties.area for properties in formed]
     deviation = _beyond(_outside(row.area, min(areas), max(areas)), entry.rounding("area"))
-    other = _other_make(row, deviation)
+    other = other_make(entry, row.area) if abs(deviation) > 2.0 * QUIET else ""
     if other:
         findings.in_row(
             entry,
@@ -534,19 +429,3 @@ def _check_area(
         name = "Area differs from the formula of the shape by more than 2 %"
         deviations.setdefault(name, []).append((deviation, entry))
     return True
-
-
-def _other_make(row: Checked, deviation: float) -> str:
-    """Say whether a row of one EN product has the area of the other one."""
-    entry = row.entry
-    if entry.family not in {"SHS", "RHS"} or abs(deviation) <= 2.0 * QUIET:
-        return ""
-    h, b, t = _dimensions(entry)
-    product = entry.product.upper()
-    if product.startswith("EN 10210"):
-        other, name = geometry.cold_formed_hollow(depth=h, width=b, wall=t), "cold formed"
-    elif product.startswith("EN 10219"):
-        other, name = geometry.hot_finished_hollow(depth=h, width=b, wall=t), "hot finished"
-    else:
-        return ""
-    return name if abs(row.area / other.area - 1.0) <= QUIET / 2.0 + entry.rounding("area") else ""

@@ -13,106 +13,28 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Literal
 
+from sizing.brief.catalogue_names import (
+    AXES,
+    CONCEPTS,
+    FILLERS,
+    NUMBER_NAMES,
+    PLAIN_HEADS,
+    STRENGTH_OF_AXIS_LETTER,
+    TEXT_NAMES,
+)
 from sizing.brief.catalogue_text import TextTable
 from sizing.brief.catalogue_units import unit_factor
 from sizing.errors import Problem
 
 Axis = Literal["major", "minor", "least", "any"]
 
-TEXT_NAMES: Mapping[str, frozenset[str]] = {
-    "designation": frozenset(
-        {"designation", "section", "size", "name", "profile", "bezeichnung", "profil"}
-    ),
-    "family": frozenset({"family", "shape", "kind", "profilart"}),
-    "product": frozenset({"product", "product standard", "standard", "norm", "produktnorm"}),
-}
-"""Columns of text."""
-
-NUMBER_NAMES: Mapping[str, tuple[frozenset[str], tuple[str, ...]]] = {
-    "area": (
-        frozenset(
-            {"area", "a", "cross section area", "cross sectional area", "section area"}
-            | {"fläche", "querschnittsfläche"}
-        ),
-        ("area",),
-    ),
-    "mass": (
-        frozenset(
-            {"mass", "m", "mass per metre", "mass per length", "weight", "w", "g"}
-            | {
-                "nominal weight",
-                "nominal mass",
-                "weight per foot",
-                "weight per metre",
-                "gewicht",
-                "masse",
-            }
-        ),
-        ("mass per length", "weight per length"),
-    ),
-    "depth": (
-        frozenset(
-            {"depth", "h", "height", "overall depth", "diameter", "outside diameter", "od", "d"}
-            | {"leg", "leg length", "a", "höhe", "durchmesser", "schenkel"}
-        ),
-        ("length",),
-    ),
-    "width": (
-        frozenset({"width", "b", "breadth", "bf", "flange width", "other leg", "breite"}),
-        ("length",),
-    ),
-    "thickness": (
-        frozenset(
-            {"thickness", "t", "wall", "wall thickness", "design wall", "t des", "tdes", "tw"}
-            | {"web", "web thickness", "leg thickness", "s", "dicke", "wanddicke", "stegdicke"}
-        ),
-        ("length",),
-    ),
-    "flange": (frozenset({"flange", "flange thickness", "tf", "flanschdicke"}), ("length",)),
-    "root_radius": (
-        frozenset({"root radius", "fillet", "fillet radius", "r1", "ausrundungsradius"}),
-        ("length",),
-    ),
-    "surface": (
-        frozenset({"surface", "surface area", "painted area", "perimeter", "u"})
-        | frozenset({"mantelfläche", "oberfläche", "umfang"}),
-        ("length",),
-    ),
-    "plies": (frozenset({"plies", "lagen"}), ()),
-}
-"""Columns of numbers: accepted names, and what the unit must measure."""
-
-STRENGTH_OF_AXIS_LETTER = {
-    "x y": {"x": "major", "y": "minor", "z": "least"},
-    "y z": {"y": "major", "z": "minor"},
-    "x": {"x": "major"},
-}
-"""x-x major, y-y minor (z-z least, of angles) where x is used; else y-y major, z-z minor (EN)."""
-
-PLAIN_HEADS = (
-    "designation, family, product, area [cm2], mass [kg/m], I major [cm4], I minor [cm4], "
-    "I least [cm4], i major [cm], i minor [cm], i least [cm], depth [mm], width [mm], "
-    "thickness [mm], flange [mm], root radius [mm], surface [m2/m], price [EUR/m], plies"
-)
-"""Every head in its plain form."""
+LONGEST_LETTER_NAME = 2
+"""Names this short have many meanings: W is a weight or a section modulus. With a unit of another
+kind they are not used, where a full word with such a unit is a mistake."""
 
 _BRACKETED = re.compile(r"^(.*?)[\s_]*[\[(]\s*(.*?)\s*[\])]\s*$")
 _WORDED = re.compile(r"^(.+?)(?:\s+in\s+|\s*/\s*)(\S+)$")
 _CURRENCY = re.compile(r"^\s*([^/\d]{0,12}?)\s*(?:/|\bper\b)\s*([A-Za-z]+)\s*$")
-
-_CONCEPTS = {
-    "i": "", "r": "", "radius": "radius of gyration", "gyration": "radius of gyration",
-    "trägheitsradius": "radius of gyration", "inertia": "second moment",
-    "second": "second moment", "trägheitsmoment": "second moment",
-    "flächenmoment": "second moment",
-}  # fmt: skip
-_AXES = {
-    "major": "major", "strong": "major", "stark": "major", "max": "major",
-    "minor": "minor", "weak": "minor", "schwach": "minor",
-    "least": "least", "min": "least", "v": "least", "vv": "least",
-    "x": "x", "xx": "x", "y": "y", "yy": "y", "z": "z", "zz": "z",
-}  # fmt: skip
-_FILLERS = frozenset({"of", "the", "area", "axis", "about", "moment"})
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -214,6 +136,8 @@ def _understand(
     if not wanted:
         return None
     if measured is None or measured[0] not in wanted.values():
+        if head.unit and len(head.name) <= LONGEST_LETTER_NAME:
+            return None
         return _unit_problem(head, wanted, measured, file=file, line=line)
     kind, factor = measured
     prop = next(key for key, value in wanted.items() if value == kind)
@@ -251,9 +175,9 @@ def _gyration(name: str, letters: Mapping[str, str]) -> tuple[str, Axis] | None:
     glued = re.match(r"^([ir])(max|min|xx?|yy?|zz?|vv?)$", words[0]) if words else None
     if glued:
         words = [glued[1], glued[2], *words[1:]]
-    concepts = [word for word in words if word in _CONCEPTS]
-    axes = [_AXES[word] for word in words if word in _AXES]
-    known = set(_CONCEPTS) | set(_AXES) | _FILLERS
+    concepts = [word for word in words if word in CONCEPTS]
+    axes = [AXES[word] for word in words if word in AXES]
+    known = set(CONCEPTS) | set(AXES) | FILLERS
     if not concepts or any(word not in known for word in words) or len(set(axes)) > 1:
         return None
     if name == "r":  # root radius in one table, radius of gyration in the next
@@ -262,7 +186,7 @@ def _gyration(name: str, letters: Mapping[str, str]) -> tuple[str, Axis] | None:
     axis = letters.get(axis, axis)
     if axis not in {"major", "minor", "least", "any"}:
         return None
-    return _CONCEPTS[concepts[-1]], axis  # type: ignore[return-value]  # one of the four words
+    return CONCEPTS[concepts[-1]], axis  # type: ignore[return-value]  # one of the four words
 
 
 def _axis_letters(

@@ -23,13 +23,13 @@ import numpy as np
 
 from sizing.brief.catalogue_checks import Checked, check_rows
 from sizing.brief.catalogue_heads import (
-    PLAIN_HEADS,
     Column,
     Heads,
     looks_like_heads,
     read_heads,
     with_unit_row,
 )
+from sizing.brief.catalogue_names import PLAIN_HEADS
 from sizing.brief.catalogue_rows import (
     Entry,
     Findings,
@@ -48,6 +48,9 @@ SUFFIX = ".csv"
 ALIKE_ON_BOTH_AXES = frozenset({"SHS", "CHS"})
 """Families with one second moment; equal angles too, about their geometric axes."""
 
+
+SYMMETRIC = frozenset({"SHS", "RHS", "CHS", "I", "rectangle"})
+"""Families whose minor axis is their least one."""
 
 SHORT_FORMS = {
     "shs": "square-hollow-sections", "rhs": "rectangular-hollow-sections",
@@ -258,8 +261,10 @@ def _settle(entry: Entry, density: float | str | None, findings: Findings) -> Ch
         )  # fmt: skip
     both = _about(entry, "", area) if _is_alike(entry) else None
     major = _about(entry, " major", area) or both
-    minor = _about(entry, " minor", area) or (major if _is_alike(entry) else None)
     least = _about(entry, " least", area)
+    minor = _about(entry, " minor", area) or (major if _is_alike(entry) else None)
+    if minor is None and entry.family in SYMMETRIC:
+        minor = least
     if major is None or minor is None:
         axis = "major" if major is None else "minor"
         key = f"i {axis}" if f"i {axis}" in findings.heads else f"I {axis}"

@@ -6,7 +6,7 @@ from pathlib import Path
 
 import pytest
 
-from sizing.brief.catalogue_heads import PLAIN_HEADS
+from sizing.brief.catalogue_names import PLAIN_HEADS
 from sizing.brief.catalogue_reader import read_catalogue, shipped_catalogues
 from sizing.errors import InputError
 

@@ -194,6 +194,17 @@ def test_an_unknown_shape_keeps_its_doubt(tmp_path: Path) -> None:
     )
 
 
+def test_letters_with_a_unit_of_another_kind_are_not_used(tmp_path: Path) -> None:
+    """W [cm3] is a section modulus and no weight, g [mm] a gauge, u [m2/t] no perimeter."""
+    text = (
+        "designation,family,A [cm2],G [kg/m],Imax [cm4],Imin [cm4],W [cm3],g [mm],U [m2/t]\n"
+        "IPE 200,I,28.5,22.4,1943,142,194,56,34.4\n"
+    )
+    catalogue = read(tmp_path, text.replace("G [kg/m]", "mass [kg/m]"))
+    assert catalogue.remarks == ("Columns not used: 'W [cm3]', 'g [mm]', 'U [m2/t]'.",)
+    assert catalogue.i_minor[0] == catalogue.i_least[0] == pytest.approx(142e-8)
+
+
 def test_a_file_beside_the_brief_may_lie_in_a_folder(tmp_path: Path) -> None:
     """Paths are relative to the brief's folder; a shipped name goes before a file of that name."""
     (tmp_path / "stock").mkdir()
