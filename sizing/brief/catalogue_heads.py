@@ -123,13 +123,11 @@ def _understand(
     head: _Head, letters: Mapping[str, str], *, file: str, line: int
 ) -> Column | Problem | None:
     """Return the column, a problem with its unit, or None for a head that is not used."""
-    for name, words in TEXT_NAMES.items():
+    for name, words in (*TEXT_NAMES.items(), ("plies", NUMBER_NAMES["plies"][0])):
         if head.name in words:
             return Column(index=head.index, head=head.text, property=name)
     if head.name in {"price", "cost", "preis"}:
         return _price(head, file=file, line=line)
-    if head.name in NUMBER_NAMES["plies"][0]:
-        return Column(index=head.index, head=head.text, property="plies")
     measured = unit_factor(head.unit) if head.unit else None
     gyration = _gyration(head.name, letters)
     wanted = _wanted(head.name, gyration)

@@ -143,19 +143,18 @@ def split(text: str, file: str, looks_like_heads: Callable[[list[str]], bool]) -
     remarks: tuple[str, ...] = ()
     if titles:
         remarks = (f"Taken as a title, above the column heads: {'; '.join(titles)}.",)
-    if first is None:
-        what = "only header lines" if header else "nothing"
+    delimiter, detected = _delimiter(settings, "" if first is None else body[first], file)
+    rows = _cells(body, delimiter, file)
+    if first is None or not rows:
         raise TextProblemsError(
             Problem(
                 file=file,
                 place="file",
-                found=what,
+                found="only header lines" if header else "nothing",
                 expected="a line of column heads and at least one row",
                 fix=f"Write {HEADS_WANTED}.",
             )
         )
-    delimiter, detected = _delimiter(settings, body[first], file)
-    rows = _cells(body, delimiter, file)
     heads, rest = rows[0], rows[1:]
     _check_widths(heads, rest, delimiter, file)
     return TextTable(
