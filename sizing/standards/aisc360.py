@@ -48,7 +48,6 @@ from sizing.standards.conditions import (
     limit_slenderness,
     spread,
     take_members,
-    take_section,
 )
 from sizing.standards.contract import (
     FloatArray,
@@ -59,6 +58,7 @@ from sizing.standards.contract import (
     Sense,
     Step,
 )
+from sizing.standards.settings import require_groups
 
 MODULUS = 29000.0 * KSI
 """E = 29 000 ksi in Pa (AISC 360, symbols)."""
@@ -87,8 +87,11 @@ class AISC360:
     ) -> ResistanceTable:
         """Return the table of design (LRFD) or allowable (ASD) strengths in N.
 
-        Load duration has no influence.
+        Load duration has no influence. Raises
+        :class:`~sizing.standards.contract.SettingsError` when ``webs`` names a group that the
+        members do not have.
         """
+        require_groups("webs", self.options.webs, members.role)
         distinct, inverse = distinct_members(members)
         reasons = Reasons()
         found = self._distinct(catalogue, distinct, reasons)
@@ -168,7 +171,7 @@ class AISC360:
     ) -> tuple[Step, ...]:
         """Return the worked lines of one strength; the last line is the strength."""
         del duration
-        one = take_section(catalogue, section)
+        one = catalogue.only(section)
         condition = take_members(members, np.array([member], dtype=np.intp))
         reasons = Reasons()
         found = self._distinct(one, condition, reasons)

@@ -5,6 +5,7 @@ Values of AISC Manual, 15th ed., Tables 2-4 and 2-5, from memory; ``Fy`` and ``F
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from typing import Literal
 
@@ -74,6 +75,16 @@ def find_grade(name: str) -> GradeUS | None:
             return grade
     starting = [grade for grade in GRADES if _plain(grade.name.split(" Gr ")[0]) == wanted]
     return starting[0] if len(starting) == 1 else None
+
+
+def specification_of(name: str) -> str:
+    """Return the ASTM specification that a grade or product names (``A500``), else empty."""
+    found = re.search(r"A\s?(\d+)", name.upper())
+    return f"A{found.group(1)}" if found else ""
+
+
+SPECIFICATIONS = frozenset(specification_of(grade.name) for grade in GRADES)
+"""Specifications that carry a strength; A6 and the like only carry dimensions."""
 
 
 def _plain(name: str) -> str:

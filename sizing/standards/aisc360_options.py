@@ -4,12 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from fnmatch import fnmatchcase
 from typing import Any
 
 from sizing.standards.aisc360_grades import GradeUS, find_grade, grade_names
 from sizing.standards.contract import SettingsError
-from sizing.standards.settings import SettingsReader, nearest
+from sizing.standards.settings import SettingsReader, matches, nearest
 
 NAME = "AISC 360"
 KEYS = (
@@ -58,7 +57,7 @@ class Options360:
         """Return whether the E5 rule holds for the group ``role``."""
         if self.single_angles == "E3":
             return False
-        return not self.webs or any(fnmatchcase(role, pattern) for pattern in self.webs)
+        return not self.webs or matches(role, self.webs)
 
 
 def read_options(grade: str | None, settings: Mapping[str, Any]) -> Options360:

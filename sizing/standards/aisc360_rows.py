@@ -8,11 +8,18 @@ from dataclasses import dataclass
 import numpy as np
 
 from sizing.brief.sections import Catalogue
-from sizing.standards.aisc360_grades import FORMS, KSI
+from sizing.standards.aisc360_grades import (
+    FORMS,
+    KSI,
+    SPECIFICATIONS,
+    GradeUS,
+    specification_of,
+)
 from sizing.standards.aisc360_options import Options360
 from sizing.standards.aisc360_rules import effective_width, round_share
 from sizing.standards.conditions import beyond
 from sizing.standards.contract import FloatArray
+from sizing.standards.steel_rows import not_steel
 
 HSS_WALL = (1.40, 0.20, 1.38)
 STIFFENED = (1.49, 0.18, 1.31)
@@ -161,19 +168,33 @@ def judge_row(catalogue: Catalogue, section: int, options: Options360, E: float)
 
 
 def _strength(family: str, product: str, options: Options360) -> tuple[float, float, str] | str:
+    """Return Fy and Fu in Pa with their origin, or why the row has none."""
+    if timber := not_steel(family, product):
+        return timber
     if options.Fy is not None and options.Fu is not None:
         return options.Fy, options.Fu, "Fy and Fu as set"
+    grade = options.grade
+    if grade is None:
+        return "no grade is given"
+    if other := _other_product(product, grade):
+        return other
+    form = FORMS.get(family, "shape or angle")
+    if form not in grade.strengths:
+        return f"grade {grade.name} is not made as {form}; set Fy and Fu to use it"
+    Fy, Fu = (value * KSI for value in grade.strengths[form])
+    own = [name for name in ("Fy", "Fu") if getattr(options, name) is not None]
+    origin = f"{grade.name}, {form}" + "".join(f"; {name} as set" for name in own)
+    return options.Fy or Fy, options.Fu or Fu, origin
+
+
+def _other_product(product: str, grade: GradeUS) -> str:
+    """Return why the row's product is not of the grade: pipe to A53 has no A500 strength."""
     if "EN 10" in product.upper():
         return f"{product} is not a product of the ASTM grade table; set Fy and Fu"
-    if options.grade is None:
-        return "no grade is given"
-    form = FORMS.get(family, "shape or angle")
-    if form not in options.grade.strengths:
-        return f"grade {options.grade.name} is not made as {form}; set Fy and Fu to use it"
-    Fy, Fu = (value * KSI for value in options.grade.strengths[form])
-    own = [name for name in ("Fy", "Fu") if getattr(options, name) is not None]
-    origin = f"{options.grade.name}, {form}" + "".join(f"; {name} as set" for name in own)
-    return options.Fy or Fy, options.Fu or Fu, origin
+    named = specification_of(product)
+    if named in SPECIFICATIONS and named != specification_of(grade.name):
+        return f"the catalogue row is {product}, the grade {grade.name}; set Fy and Fu to use it"
+    return ""
 
 
 def _elements(catalogue: Catalogue, section: int, root: float) -> tuple[Element, ...] | str:

@@ -7,7 +7,7 @@ distinct ones (u) and spread the answer over members and load durations as views
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, fields
+from dataclasses import dataclass
 
 import numpy as np
 
@@ -94,14 +94,7 @@ def take_members(members: MemberConditions, index: IntArray) -> MemberConditions
 
 def take_section(catalogue: Catalogue, section: int) -> Catalogue:
     """Return a catalogue that holds row ``section`` only."""
-    kept = {}
-    for item in fields(catalogue):
-        value = getattr(catalogue, item.name)
-        if item.name in ("name", "source", "header"):
-            kept[item.name] = value
-        elif isinstance(value, np.ndarray) or len(value) == len(catalogue):
-            kept[item.name] = value[section : section + 1]
-    return Catalogue(**kept)
+    return catalogue.only(section)
 
 
 def limit_slenderness(

@@ -24,7 +24,6 @@ from sizing.standards.conditions import (
     limit_slenderness,
     spread,
     take_members,
-    take_section,
 )
 from sizing.standards.contract import (
     FloatArray,
@@ -132,7 +131,7 @@ class Elastic:
         sense: Sense,
     ) -> tuple[Step, ...]:
         """Return the worked lines of one resistance; the last line is the resistance."""
-        one = take_section(catalogue, section)
+        one = catalogue.only(section)
         condition = take_members(members, np.array([member], dtype=np.intp))
         table = self.resistances(one, condition, (duration,))
         area = float(one.area[0])

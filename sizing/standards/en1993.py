@@ -22,7 +22,6 @@ from sizing.standards.conditions import (
     limit_slenderness,
     spread,
     take_members,
-    take_section,
 )
 from sizing.standards.contract import (
     FloatArray,
@@ -167,7 +166,7 @@ class EN1993:
     ) -> tuple[Step, ...]:
         """Return the worked lines of one resistance; the last line is the resistance."""
         del duration
-        one = take_section(catalogue, section)
+        one = catalogue.only(section)
         condition = take_members(members, np.array([member], dtype=np.intp))
         reasons = Reasons()
         found = self._distinct(one, condition, reasons)

@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from fnmatch import fnmatchcase
 from typing import Literal
 
 import numpy as np
 
 from sizing.standards.contract import IntArray, SettingsError
 from sizing.standards.en1993_curves import HOLLOW
+from sizing.standards.settings import matches, require_groups
 
 AS_GIVEN, CHORD, WEB = range(3)
 Place = Literal[0, 1, 2]
@@ -32,7 +32,11 @@ class Preset:
         """Return AS_GIVEN, CHORD or WEB for each group name of ``roles``."""
         return np.array(
             [
-                CHORD if _named(role, self.chords) else WEB if _named(role, self.webs) else AS_GIVEN
+                CHORD
+                if matches(role, self.chords)
+                else WEB
+                if matches(role, self.webs)
+                else AS_GIVEN
                 for role in roles
             ],
             dtype=np.intp,
@@ -40,16 +44,10 @@ class Preset:
 
     def require_groups(self, roles: Sequence[str]) -> None:
         """Raise :class:`SettingsError` for a name that fits no group, or a group named twice."""
-        for key, patterns in (("chords", self.chords), ("webs", self.webs)):
-            for pattern in patterns:
-                if not any(fnmatchcase(role, pattern) for role in roles):
-                    raise SettingsError(
-                        key=key,
-                        found=f'"{pattern}", which is no group',
-                        expected="one of " + ", ".join(sorted(set(roles))),
-                    )
+        require_groups("chords", self.chords, roles)
+        require_groups("webs", self.webs, roles)
         for role in sorted(set(roles)):
-            if _named(role, self.chords) and _named(role, self.webs):
+            if matches(role, self.chords) and matches(role, self.webs):
                 raise SettingsError(
                     key="webs", found=f'"{role}", named by chords too', expected="one of the two"
                 )
@@ -69,7 +67,3 @@ class Preset:
         if place == WEB and family != "angle":
             return 0.9, 1.0
         return 1.0, 1.0
-
-
-def _named(role: str, patterns: tuple[str, ...]) -> bool:
-    return any(fnmatchcase(role, pattern) for pattern in patterns)

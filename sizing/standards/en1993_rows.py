@@ -20,6 +20,7 @@ from sizing.standards.en1993_walls import (
     effective_area,
     walls_of,
 )
+from sizing.standards.steel_rows import not_steel
 
 UNKNOWN_FINISH = (
     "the catalogue does not say whether the hollow section is hot finished (EN 10210) or cold "
@@ -161,6 +162,8 @@ def _strength(
     size: Dimensions, product: str, finish: Finish | None, options: Options1993
 ) -> Strength | str:
     """Return the strength of the row, as set or from the table, or why there is none."""
+    if timber := not_steel(size.family, product):
+        return timber
     if options.fy is not None and options.fu is not None:
         return Strength(fy=options.fy, fu=options.fu, origin="fy and fu as set")
     found = _table_strength(size, product, finish, options)

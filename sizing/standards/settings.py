@@ -5,6 +5,7 @@ from __future__ import annotations
 import difflib
 import math
 from collections.abc import Mapping, Sequence
+from fnmatch import fnmatchcase
 from typing import Any, Literal
 
 from sizing.brief.model import Units
@@ -159,3 +160,21 @@ def _bounds_text(at_least: float, above: float, at_most: float) -> str:
     if math.isfinite(at_most):
         parts.append(f"not above {at_most:g}")
     return " " + " and ".join(parts) if parts else ""
+
+
+def matches(name: str, patterns: Sequence[str]) -> bool:
+    """Return whether a group name fits one of the patterns (* and ?, case counts)."""
+    return any(fnmatchcase(name, pattern) for pattern in patterns)
+
+
+def require_groups(key: str, patterns: Sequence[str], groups: Sequence[str]) -> None:
+    """Raise :class:`SettingsError` for a pattern of setting ``key`` that fits no group."""
+    for pattern in patterns:
+        if not any(fnmatchcase(group, pattern) for group in groups):
+            close = nearest(pattern, groups)
+            raise SettingsError(
+                key=key,
+                found=f'"{pattern}", which fits no group',
+                expected="one of " + ", ".join(sorted(set(groups))),
+                fix=f'Did you mean "{close}"?' if close else "",
+            )

@@ -81,7 +81,13 @@ W = {
     "thickness": 0.45 * INCH,
     "flange": 0.785 * INCH,
 }
-BAR = {"family": "rectangle", "area": INCH**2, "i_major": INCH**4 / 12, "depth": INCH}
+BAR = {
+    "family": "rectangle",
+    "product": "ASTM A36",
+    "area": INCH**2,
+    "i_major": INCH**4 / 12,
+    "depth": INCH,
+}
 TEE = {"family": "other", "area": 1e-3, "i_major": 1e-6, "thickness": 0.008}
 ROWS = (hss(6, 0.349), hss(8, 0.116), pipe(4.5, 0.221), L4, L3_THIN, L6X4, L7X4, W, BAR, TEE)
 OWN = {"Fy": "46 ksi", "Fu": "58 ksi"}
@@ -126,13 +132,14 @@ def test_unclear_grade_names_are_not_guessed(name):
     [
         # AISC Manual, 15th ed., Tables 2-4 and 2-5 (from memory)
         ("A36", L4, 36, 58),
+        ("A36", {**L4, "product": "ASTM A6"}, 36, 58),
         ("A500 Gr B", hss(6, 0.349), 46, 58),
         ("A500 Gr B", pipe(4.5, 0.221, "ASTM A500"), 42, 58),
         ("A500 Gr C", hss(6, 0.349), 50, 62),
         ("A53 Gr B", pipe(4.5, 0.221), 35, 60),
         ("A992", W, 50, 65),
         ("A572 Gr 50", L4, 50, 65),
-        ("A1085", hss(6, 0.375), 50, 65),
+        ("A1085", hss(6, 0.375, "ASTM A1085"), 50, 65),
     ],
 )
 def test_tension_by_grade_and_form(catalogue_of, members_of, grade, row, Fy, Fu):
@@ -305,9 +312,12 @@ def test_rows_left_out_of_compression(catalogue_of, members_of, row, reason, usa
 @pytest.mark.parametrize(
     ("grade", "row", "reason"),
     [
-        ("A992", hss(6, 0.349), "grade A992 is not made as rectangular HSS; set Fy and Fu"),
-        ("A53", hss(6, 0.349), "grade A53 Gr B is not made as rectangular HSS"),
+        ("A992", hss(6, 0.349, ""), "grade A992 is not made as rectangular HSS; set Fy and Fu"),
+        ("A992", hss(6, 0.349), "the catalogue row is ASTM A500, the grade A992; set Fy and Fu"),
+        ("A53", hss(6, 0.349, ""), "grade A53 Gr B is not made as rectangular HSS"),
         ("A500 Gr B", hss(6, 0.3, "EN 10210-2"), "EN 10210-2 is not a product of the ASTM"),
+        ("A500 Gr B", pipe(4.5, 0.221), "the catalogue row is ASTM A53, the grade A500 Gr B"),
+        ("A36", {**BAR, "product": "NDS"}, "a solid rectangle, product NDS, counts as timber"),
     ],
 )
 def test_rows_that_the_grade_does_not_cover(catalogue_of, members_of, grade, row, reason):
@@ -430,14 +440,14 @@ def test_any_member(catalogue_of, members_of, reach, net, upright, role, chosen)
     standard = make_aisc360(None, chosen)
     catalogue = catalogue_of(*ROWS)
     members = members_of(
-        length=[l_in, factor * l_in],
-        in_plane=[l_in, factor * l_in],
-        out_of_plane=[l_out, factor * l_out],
+        length=[l_in, factor * l_in, 1.0],
+        in_plane=[l_in, factor * l_in, 1.0],
+        out_of_plane=[l_out, factor * l_out, 1.0],
         net_factor=net,
         depth_in_plane=upright,
         max_slenderness_compression=180.0,
         max_slenderness_tension=300.0,
-        role=role,
+        role=(role, role, "web"),
     )
     table = standard.resistances(catalogue, members, ("permanent", "short"))
     for values in (table.tension, table.compression):
@@ -454,3 +464,14 @@ def test_any_member(catalogue_of, members_of, reach, net, upright, role, chosen)
             assert lines[-1].value == values[0, section, 1]
             assert lines[-1].unit == "N"
             assert all(line.symbol and line.clause and line.expression for line in lines)
+
+
+def test_web_groups_must_exist(catalogue_of, members_of):
+    """A pattern in webs that fits no group is refused when the groups are known."""
+    standard = make_aisc360("A36", {"single_angles": "E5 planar", "webs": ["diagnals"]})
+    with pytest.raises(SettingsError) as caught:
+        standard.resistances(catalogue_of(L4), members_of(role="diagonals"), SHORT)
+    assert str(caught.value) == (
+        'webs: found "diagnals", which fits no group; expected one of diagonals.'
+        ' Did you mean "diagonals"?'
+    )

@@ -66,6 +66,7 @@ IPE_330 = {
 }
 FLAT = {
     "family": "rectangle",
+    "product": "EN 10058",
     "area": 1e-3,
     "i_major": 8.3333e-7,
     "i_minor": 8.3333e-9,
@@ -188,6 +189,8 @@ def test_class_4_is_left_out_or_takes_effective_widths(catalogue_of, members_of)
         (square(0.1, 0.005, "ASTM A500"), "ASTM A500 is not a product of the EN grade tables"),
         (square(0.5, 0.09), "thickness 90 mm is beyond 80 mm"),
         ({**ANGLE, "thickness": math.nan}, "the catalogue gives no thickness"),
+        ({**FLAT, "product": "EN 14080"}, "a solid rectangle, product EN 14080, counts as timber"),
+        ({**FLAT, "product": ""}, "a solid rectangle, no product named, counts as timber"),
     ],
 )
 def test_rows_without_a_strength_are_not_usable(catalogue_of, members_of, row, reason):

@@ -323,9 +323,8 @@ def test_preset_groups_must_exist():
     assert list(preset.places(["top chord", "web", "post"])) == [CHORD, WEB, 0]
     with pytest.raises(SettingsError) as caught:
         preset.require_groups(["top chord", "post"])
-    assert (
-        str(caught.value)
-        == 'webs: found "web", which is no group; expected one of post, top chord.'
+    assert str(caught.value) == (
+        'webs: found "web", which fits no group; expected one of post, top chord.'
     )
     twice = Preset(chords=("web*",), webs=("web",), web_ends="bolted")
     with pytest.raises(SettingsError, match="named by chords too"):
