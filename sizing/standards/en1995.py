@@ -37,13 +37,13 @@ from sizing.standards.en1995_strength import (
     BETA_C,
     GAMMA_M,
     K_DEF,
-    design_value,
-    k_buckling,
+    K_MOD_DRY,
     k_c,
     k_h,
     k_mod,
     lambda_rel,
 )
+from sizing.standards.en1995_working import Strength, compression_steps, step, tension_steps
 from sizing.standards.settings import SettingsReader, nearest
 from sizing.standards.slenderness import slenderness_in_and_out
 from sizing.standards.timber_sections import (
@@ -160,99 +160,23 @@ class EN1995:
         values = table.tension if sense == "tension" else table.compression
         if float(values[0, 0, 0]) == 0.0:
             symbol = "N_t,Rd" if sense == "tension" else "N_c,Rd"
-            return (_step(symbol, "0", 0.0, "N", clause, reason),)
-        if sense == "tension":
-            return self._tension_steps(one, condition, duration, clause)
-        return self._compression_steps(one, table, duration, clause)
-
-    def _strength_steps(self, mark: str, f_k: float, duration: LoadDuration) -> list[Step]:
-        k = k_mod(self.service_class, duration)
-        f_d = design_value(k, f_k, self.gamma_M)
-        state = f"service class {self.service_class}, load duration {duration}"
-        return [
-            _step(f"f_{mark},0,k", self.grade.edition, f_k, "Pa", "grade", self.grade.name),
-            _step("k_mod", "Table 3.1", k, "-", "3.1.3", state),
-            _step("γ_M", "Table 2.3", self.gamma_M, "-", "2.4.1", self.grade.product),
-            _step(f"f_{mark},0,d", f"k_mod f_{mark},0,k / γ_M", f_d, "Pa", "2.4.1"),
-        ]
-
-    def _tension_steps(
-        self, one: Catalogue, members: MemberConditions, duration: LoadDuration, clause: str
-    ) -> tuple[Step, ...]:
-        area, net = float(one.area[0]), float(members.net_factor[0])
-        larger = smaller_and_larger(one)[1]
-        size = float(k_h(self.grade.product, self.grade.rho_k, larger)[0])
-        expression, size_clause = self._k_h_text()
-        steps = self._strength_steps("t", self.grade.ft0k, duration)
-        resistance = size * steps[-1].value * net * area
-        return (
-            _step("A", "catalogue", area, "m²", "section"),
-            *steps,
-            _step("h", "larger side", float(larger[0]), "m", "section"),
-            _step("k_h", expression, size, "-", size_clause, "size factor, not below 1"),
-            _step("k_net", "brief", net, "-", "6.1.2", "net over gross area at the joints"),
-            _step("N_t,Rd", "k_h f_t,0,d k_net A", resistance, "N", clause, "resistance"),
+            return (step(symbol, "0", 0.0, "N", clause, reason),)
+        strength = Strength(
+            grade=self.grade,
+            service_class=self.service_class,
+            gamma_M=self.gamma_M,
+            duration=duration,
         )
-
-    def _k_h_text(self) -> tuple[str, str]:
-        if self.grade.product == "glulam":
-            return "min((600 mm / h)^0.1, 1.1)", "3.3(3)"
-        return "min((150 mm / h)^0.2, 1.3)", "3.2(3)"
-
-    def _compression_steps(
-        self, one: Catalogue, table: ResistanceTable, duration: LoadDuration, clause: str
-    ) -> tuple[Step, ...]:
-        grade, beta = self.grade, BETA_C[self.grade.product]
-        area = float(one.area[0])
-        steps = [
-            _step("A", "catalogue", area, "m²", "section"),
-            *self._strength_steps("c", grade.fc0k, duration),
-            _step("E_0,05", grade.edition, grade.E0_05, "Pa", "grade"),
-            _step("β_c", "straightness of " + grade.product, beta, "-", "6.3.2(3)"),
-        ]
-        f_d = design_value(k_mod(self.service_class, duration), grade.fc0k, self.gamma_M)
-        factors = []
-        for mark, values in (("in", table.slenderness_in), ("out", table.slenderness_out)):
-            slenderness = values[0]
-            relative = lambda_rel(slenderness, grade.fc0k, grade.E0_05)
-            factor = float(k_c(relative, beta)[0])
-            factors.append(factor)
-            text = f"buckling {'in' if mark == 'in' else 'out of'} plane"
-            steps += [
-                _step(f"λ_{mark}", f"L_{mark} / i_{mark}", float(slenderness[0]), "-", text),
-                _step(
-                    f"λ_rel,{mark}",
-                    f"(λ_{mark} / π) √(f_c,0,k / E_0,05)",
-                    float(relative[0]),
-                    "-",
-                    "6.3.2(1)",
-                ),
-                _step(
-                    f"k_{mark}",
-                    f"0.5 (1 + β_c (λ_rel,{mark} − 0.3) + λ_rel,{mark}²)",
-                    float(k_buckling(relative, beta)[0]),
-                    "-",
-                    "6.3.2(3)",
-                ),
-                _step(
-                    f"k_c,{mark}",
-                    f"1 / (k_{mark} + √(k_{mark}² − λ_rel,{mark}²)), 1 for λ_rel ≤ 0.3",
-                    factor,
-                    "-",
-                    "6.3.2(3)",
-                ),
-            ]
-        resistance = min(factors) * f_d * area
-        expression = "min(k_c,in, k_c,out) f_c,0,d A"
-        steps.append(_step("N_c,Rd", expression, resistance, "N", clause, "resistance"))
-        return tuple(steps)
+        if sense == "tension":
+            return tension_steps(strength, one, float(condition.net_factor[0]), clause)
+        return compression_steps(strength, one, table, clause)
 
     def basis(self) -> tuple[tuple[str, str], ...]:
         """Return (what, value with source) rows for the basis of design."""
         grade = self.grade
         assumed = " (usual value, not given in the brief)" if self.service_class_assumed else ""
         factors = ", ".join(
-            f"{duration} {k_mod(self.service_class, duration):g}" for duration in DURATIONS
+            f"{duration} {k_mod(self.service_class, duration):g}" for duration in K_MOD_DRY
         )
         return (
             ("Standard", f"{self.name}: {self.edition}"),
@@ -295,17 +219,6 @@ class EN1995:
                 " it is 3 and the strength is less."
             )
         return tuple(lines)
-
-
-DURATIONS: tuple[LoadDuration, ...] = ("permanent", "long", "medium", "short", "instantaneous")
-
-
-def _step(
-    symbol: str, expression: str, value: float, unit: str, clause: str, meaning: str = ""
-) -> Step:
-    return Step(
-        symbol=symbol, expression=expression, value=value, unit=unit, clause=clause, meaning=meaning
-    )
 
 
 def make_en1995(grade: str | None, settings: Mapping[str, Any]) -> EN1995:
