@@ -8,6 +8,7 @@ not see red and green apart), dotted where there is no force.
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 from xml.etree import ElementTree as Xml
 
@@ -15,7 +16,7 @@ from sizing.documents.label_layout import text_width
 from sizing.documents.plain_text import shortened, visible
 from sizing.documents.projection import View, views_of
 from sizing.documents.quantities import ShownUnits, shown_units
-from sizing.documents.svg_paper import QUIET, Paper, svg_document
+from sizing.documents.svg_paper import QUIET, Paper, number, svg_document
 from sizing.documents.view_drawing import (
     COMPRESSION,
     NONE,
@@ -42,36 +43,47 @@ NARROWEST_SHEET = 900.0
 
 @dataclass(frozen=True, slots=True)
 class Sheet:
-    """A finished drawing of one option."""
+    """The drawing of one option and its size in px."""
 
     paper: Paper
     width: float
     height: float
 
 
-def svg_bytes(job: JobResult) -> bytes:
-    """Return truss.svg for ``job``: its options one below the other."""
-    sheets = [_sheet(job, option) for option in job.options]
-    paper = Paper()
-    down = 0.0
-    for sheet in sheets:
-        paper.add(sheet.paper, right=0.0, down=down)
-        down += sheet.height
-    root = _root(paper, max((s.width for s in sheets), default=NARROWEST_SHEET), down, job)
-    text: str = Xml.tostring(root, encoding="unicode")
-    return f'<?xml version="1.0" encoding="UTF-8"?>\n{text}\n'.encode()
+def draw_options(job: JobResult) -> tuple[Xml.Element, ...]:
+    """Return one drawing per option, each a complete SVG element."""
+    return tuple(_drawing(job, option) for option in job.options)
 
 
-def option_svg(job: JobResult, option: OptionResult) -> str:
-    """Return the drawing of one option as an SVG element to be set into a page."""
+def svg_bytes(job: JobResult, drawings: Sequence[Xml.Element]) -> bytes:
+    """Return truss.svg: the drawings of all options, one below the other."""
+    if len(drawings) == 1:
+        root = drawings[0]
+    else:
+        width = max((float(d.get("width", "0")) for d in drawings), default=NARROWEST_SHEET)
+        height = sum(float(d.get("height", "0")) for d in drawings)
+        root = svg_document(
+            Paper(), width, height, title=visible(job.brief.title), text=CLOSING_CAUTION
+        )
+        down = 0.0
+        for one in drawings:
+            placed = Xml.SubElement(root, "svg", {**one.attrib, "y": number(down)})
+            placed.extend(one)
+            down += float(one.get("height", "0"))
+    return f'<?xml version="1.0" encoding="UTF-8"?>\n{svg_text(root)}\n'.encode()
+
+
+def svg_text(drawing: Xml.Element) -> str:
+    """Return a drawing as text that can be set into a page."""
+    text: str = Xml.tostring(drawing, encoding="unicode")
+    return text
+
+
+def _drawing(job: JobResult, option: OptionResult) -> Xml.Element:
     sheet = _sheet(job, option)
-    return Xml.tostring(_root(sheet.paper, sheet.width, sheet.height, job), encoding="unicode")
-
-
-def _root(paper: Paper, width: float, height: float, job: JobResult) -> Xml.Element:
-    title = visible(job.brief.title)
-    text = f"Line diagram of {title} with member marks, sections and supports. {CLOSING_CAUTION}"
-    return svg_document(paper, width, height, title=title, text=text)
+    title = visible(f"{job.brief.title}, option {option.option}")
+    text = f"Line diagram with member marks, sections and supports. {CLOSING_CAUTION}"
+    return svg_document(sheet.paper, sheet.width, sheet.height, title=title, text=text)
 
 
 def _sheet(job: JobResult, option: OptionResult) -> Sheet:
@@ -151,10 +163,12 @@ def _legend(
     paper.text("Line weight by area of section.", (x, y), size=11.0, ink=QUIET)
     y += 20.0
     y = _group_lines(paper, option, units, y, width)
+    space = job.brief.dimensions == 3
     notes = (
         f"Centre lines, true to scale; dimensions in {units.length.unit}; nodes are system "
         "points. Supports: triangle on hatching is held in both directions, triangle on a line "
-        "slides along it; letters name the axes held.",
+        "slides along it; letters name the axes held."
+        + (" Members behind one another share a line in a view." if space else ""),
         CLOSING_CAUTION,
         f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256[:12]}; "
         f"sizing {job.version}",

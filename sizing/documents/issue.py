@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from datetime import UTC, date, datetime
 from pathlib import Path
 
-from sizing.documents.drawing import svg_bytes
+from sizing.documents.drawing import draw_options, svg_bytes
 from sizing.documents.report import report_bytes
 from sizing.documents.result_json import json_bytes
 from sizing.documents.workbook import workbook_bytes
@@ -40,10 +40,11 @@ def write_documents(
 
 def render_documents(result: JobResult, issued: date) -> dict[str, bytes]:
     """Return the content of every document by file name."""
+    drawings = draw_options(result)
     return {
         WORKBOOK: workbook_bytes(result, issued),
-        REPORT: report_bytes(result, issued),
-        DRAWING: svg_bytes(result),
+        REPORT: report_bytes(result, issued, drawings),
+        DRAWING: svg_bytes(result, drawings),
         RESULT: json_bytes(result),
     }
 

@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date
 from typing import Any
+from xml.etree import ElementTree as Xml
 
-from sizing.documents.drawing import option_svg
+from sizing.documents.drawing import svg_text
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.rows import job_tables
@@ -46,8 +48,11 @@ class _Worked:
     met: bool
 
 
-def report_bytes(job: JobResult, issued: date) -> bytes:
-    """Return report.html for ``job`` as UTF-8, with drawings inside and no outside links."""
+def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) -> bytes:
+    """Return report.html for ``job`` as UTF-8, with ``drawings`` inside and no outside links.
+
+    ``drawings`` are those of :func:`sizing.documents.drawing.draw_options`.
+    """
     tables = job_tables(job, issued)
     cover, *shared = tables.shared
     page: str = _template().render(
@@ -59,11 +64,11 @@ def report_bytes(job: JobResult, issued: date) -> bytes:
                 "name": visible(option.option),
                 "outcome": outcome_sentence(option),
                 "adequate": option.adequate,
-                "drawing": option_svg(job, option),
+                "drawing": svg_text(drawing),
                 "worked": [_worked(check, tables.units) for check in option.worked],
                 "tables": {table.name: essential_part(table) for table in own},
             }
-            for option, own in tables.by_option
+            for (option, own), drawing in zip(tables.by_option, drawings, strict=True)
         ],
         brief=f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256}",
         maker=f"sizing {job.version}",

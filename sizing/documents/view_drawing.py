@@ -19,7 +19,7 @@ COMPRESSION = ("#c2500a", "8 3.5")
 NONE = ("#7a8690", "1.5 3")
 """Ink and dash per governing sense; blue and vermilion stay apart for colour-blind readers."""
 
-MARGIN_LEFT, MARGIN_RIGHT, MARGIN_TOP, MARGIN_BOTTOM = 62.0, 46.0, 52.0, 74.0
+MARGIN_LEFT, MARGIN_RIGHT, MARGIN_TOP, MARGIN_BOTTOM = 84.0, 54.0, 52.0, 74.0
 SIGN = 13.0
 """Height of a support triangle, px."""
 
