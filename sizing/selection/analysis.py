@@ -230,7 +230,7 @@ class DesignAnalysis:
             if right.shape[0] <= DENSE_LIMIT:
                 x = np.linalg.solve((self._dense.T * k) @ self._dense, right)
             else:
-                from scipy.sparse.linalg import splu  # noqa: PLC0415 - slow to load
+                from scipy.sparse.linalg import splu
 
                 B = self._compatibility
                 x = splu(sparse.csc_array(B.T @ sparse.diags_array(k) @ B)).solve(right)

@@ -64,7 +64,7 @@ def determinate_forces(problem: SizingProblem) -> DeterminateForces | None:
     m, n = problem.compatibility.shape
     if m != n:
         return None
-    from scipy.linalg import LinAlgError, lu_factor, lu_solve  # noqa: PLC0415 - slow to load
+    from scipy.linalg import LinAlgError, lu_factor, lu_solve
 
     try:
         factors = lu_factor(problem.compatibility.toarray().T)

@@ -199,7 +199,7 @@ _STATUS: dict[str, LinearStatus] = {
 
 @cache
 def _quiet_class() -> Any:  # the library has no useful types
-    import highspy  # noqa: PLC0415 - loading it takes a fifth of a second
+    import highspy
 
     class QuietHighs(highspy.Highs):  # type: ignore[misc] # untyped library
         """The library prints a banner when its callbacks are set up, unless told before."""
@@ -229,7 +229,7 @@ def _quiet_solver(threads: int) -> Any:
 
 
 def _library_model(model: LinearModel) -> Any:
-    import highspy  # noqa: PLC0415
+    import highspy
 
     rows, variables = model.matrix.shape
     program = highspy.HighsLp()
@@ -257,7 +257,7 @@ def _finite(values: FloatArray) -> FloatArray:
 
 
 def _hand_over_start(highs: Any, start: FloatArray) -> None:
-    import highspy  # noqa: PLC0415
+    import highspy
 
     solution = highspy.HighsSolution()
     solution.col_value = list(np.asarray(start, dtype=np.float64))

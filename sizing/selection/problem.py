@@ -71,12 +71,12 @@ class SizingProblem:
     @property
     def groups(self) -> int:
         """Number of groups g."""
-        return self.allowed.shape[0]
+        return int(self.allowed.shape[0])
 
     @property
     def sections(self) -> int:
         """Number of sections s."""
-        return self.stiffness.shape[0]
+        return int(self.stiffness.shape[0])
 
     def objective(self, sections: IntArray) -> float:
         """Return what the design ``sections`` (g,) costs, summed over the groups."""
