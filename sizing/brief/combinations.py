@@ -1,65 +1,116 @@
-"""Combinations of a brief: those written out, each with its shortest load duration."""
+"""Combinations of a brief: those written out, and those that a rule makes of the load cases."""
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
-from typing import Any, get_args
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from typing import Any
 
-from sizing.brief.findings import Findings, KeyPath, Names, Quantities, quoted
+from sizing.brief.combination_rules import read_rule, usual_long_term
+from sizing.brief.combination_rules_durations import shortest_duration, usual_durations
+from sizing.brief.findings import Findings, KeyPath, Names, Quantities, listed, quoted
 from sizing.brief.load_cases import CaseTable
-from sizing.brief.model import ActionKind, Combination, LoadCase, LoadDuration
-from sizing.brief.raw_tables import RawCombination, read_entry
-
-USUAL_DURATION: dict[ActionKind, LoadDuration] = {
-    "permanent": "permanent",
-    "imposed": "medium",
-    "imposed roof": "short",
-    "snow": "medium",
-    "wind": "short",
-    "temperature": "medium",
-    "settlement": "permanent",
-    "other": "medium",
-}
-"""EN 1995-1-1:2004 Table 2.2 (from memory): self-weight permanent, imposed floor load medium,
-wind short or instantaneous, snow medium or short by national choice (the longer is taken here,
-on the safe side); roof access short: EN 1991-1-1 category H, national choice (from memory).
-Temperature, settlement and other: common practice. A case's own ``duration`` overrides."""
+from sizing.brief.model import Combination, LoadCase
+from sizing.brief.raw_tables import RawBrief, RawCombination, read_entry
 
 GREATEST_FACTOR = 10.0
 """Partial and combination factors lie below 2; ten times a load case is a slip."""
 
 
+@dataclass(frozen=True, kw_only=True)
+class CombinationTable:
+    """The combinations and their names.
+
+    ``whole``: all were read without a mistake, so that what is missing is missing indeed.
+    ``assumed``: indices of those whose long-term part is the usual one, not stated.
+    """
+
+    combinations: tuple[Combination, ...]
+    names: Names
+    whole: bool
+    assumed: frozenset[int]
+
+
 def read_combinations(
-    raw: Sequence[Any],
+    raw: RawBrief,
     cases: CaseTable,
+    standards: Sequence[str],
     findings: Findings,
     quantities: Quantities,
     *,
-    complete: bool,
-) -> tuple[tuple[Combination, ...], Names]:
-    """Return all combinations in brief order, and their names.
+    present: bool,
+) -> CombinationTable:
+    """Return the combinations written out, in brief order, and after them those of the rule.
 
-    ``complete`` is False when the list itself could not be read.
+    ``standards`` are the names of the options' standards: they settle the usual load durations
+    (EN 1995-1-1 Table 2.2 or NDS Table 2.3.2, see :mod:`sizing.brief.combination_rules_durations`).
+    ``present`` is False when the list of combinations itself could not be read.
     """
-    entries = [_entry(place, value, findings) for place, value in enumerate(raw, start=1)]
+    before = len(findings)
+    entries = [_entry(place, value, findings) for place, value in enumerate(raw.combinations, 1)]
     declared = [e.name for _, e, faulty in entries if e is not None and "name" not in faulty]
+    all_named = present and len(declared) == len(entries)
+    made = _made_by_rule(raw, cases, standards, declared, findings)
     names = Names(
-        findings, "combination", declared, complete=complete and len(declared) == len(raw)
+        findings,
+        "combination",
+        [*declared, *(c.name for c in made)],
+        complete=all_named and (raw.combination_rule is None or bool(made)),
     )
+    written, assumed = _written(entries, cases, standards, names, findings, quantities)
+    combinations = (*written, *made)
+    names.index = {c.name: i for i, c in enumerate(combinations)}
+    states_read = all(e is not None and "state" not in faulty for _, e, faulty in entries)
+    if present and states_read and (raw.combination_rule is None or made):
+        states = [e.state for _, e, _ in entries if e is not None] + [c.state for c in made]
+        _must_hold_strength(states, findings)
+    _caution(combinations, cases.cases, findings)
+    return CombinationTable(
+        combinations=combinations,
+        names=names,
+        whole=present and cases.whole and len(findings) == before,
+        assumed=frozenset(assumed),
+    )
+
+
+def _made_by_rule(
+    raw: RawBrief,
+    cases: CaseTable,
+    standards: Sequence[str],
+    declared: Sequence[str],
+    findings: Findings,
+) -> tuple[Combination, ...]:
+    """Return the combinations of the brief's rule; none while the load cases hold mistakes."""
+    if raw.combination_rule is None or not cases.whole:
+        return ()
+    path: KeyPath = ("combination_rule",)
+    made = read_rule(findings, path, raw.combination_rule, cases.cases, standards)
+    clash = [c.name for c in made if c.name in declared]
+    if clash:
+        findings.add(
+            path,
+            found=f"the names {listed(clash)} both written out and given by the rule",
+            expected="a name of its own for each combination",
+            fix="Rename the combinations that are written out.",
+        )
+    return made
+
+
+def _written(
+    entries: Sequence[tuple[KeyPath, RawCombination | None, frozenset[str]]],
+    cases: CaseTable,
+    standards: Sequence[str],
+    names: Names,
+    findings: Findings,
+    quantities: Quantities,
+) -> tuple[list[Combination], set[int]]:
+    usual = usual_durations(standards)
     combinations: list[Combination] = []
+    assumed: set[int] = set()
     for path, entry, faulty in entries:
         if entry is None:
             continue
-        factors, good = read_factors(
-            (*path, "factors"), entry.factors, cases.names, findings, quantities
-        )
-        good = good and "factors" not in faulty
-        if good and not factors:
-            findings.add(
-                (*path, "factors"),
-                found="only zero factors" if entry.factors else "no factors",
-                expected="at least one factor that is not 0",
-            )
+        factors = _factors(path, entry, faulty, cases, findings, quantities)
         long_term = _long_term(path, entry, factors, cases, findings, quantities)
         if entry.name in names.index:
             findings.add(
@@ -67,30 +118,22 @@ def read_combinations(
                 found=f"combination {quoted(entry.name)} for the second time",
                 expected="a name of its own for each combination",
             )
-            continue
-        if "name" in faulty:
+        if "name" in faulty or entry.name in names.index:
             continue
         names.index[entry.name] = len(combinations)
+        if entry.state == "serviceability" and not entry.long_term:
+            long_term = usual_long_term(factors, cases.cases)
+            assumed.add(len(combinations))
         combinations.append(
             Combination(
                 name=entry.name,
                 state=entry.state,
                 factors=factors,
-                duration=entry.duration or shortest_duration(cases.cases[q] for q in factors),
+                duration=entry.duration or shortest_duration(tuple(factors), cases.cases, usual),
                 long_term=long_term,
             )
         )
-    if complete and all(e is not None and "state" not in faulty for _, e, faulty in entries):
-        _must_hold_strength([e for _, e, _ in entries if e is not None], findings)
-    _caution(combinations, cases.cases, findings)
-    return tuple(combinations), names
-
-
-def shortest_duration(cases: Iterable[LoadCase]) -> LoadDuration:
-    """Return the shortest load duration of the cases (EN 1995-1-1 3.1.3(2), from memory)."""
-    order: tuple[LoadDuration, ...] = get_args(LoadDuration)
-    durations = [case.duration or USUAL_DURATION[case.kind] for case in cases]
-    return max(durations, key=order.index, default="permanent")
+    return combinations, assumed
 
 
 def _entry(
@@ -109,6 +152,25 @@ def named_place(table: str, place: int, value: Any) -> KeyPath:
     if isinstance(name, str) and name.strip() and not name.isdigit():
         return (table, f"[{name}]")
     return (table, place)
+
+
+def _factors(
+    path: KeyPath,
+    entry: RawCombination,
+    faulty: frozenset[str],
+    cases: CaseTable,
+    findings: Findings,
+    quantities: Quantities,
+) -> dict[int, float]:
+    place = (*path, "factors")
+    factors, good = read_factors(place, entry.factors, cases.names, findings, quantities)
+    if good and not factors and "factors" not in faulty:
+        findings.add(
+            place,
+            found="only zero factors" if entry.factors else "no factors",
+            expected="at least one factor that is not 0",
+        )
+    return factors
 
 
 def read_factors(
@@ -164,13 +226,13 @@ def _long_term(
     return part
 
 
-def _must_hold_strength(entries: Sequence[RawCombination], findings: Findings) -> None:
-    if not any(entry.state == "strength" for entry in entries):
-        found = f"no strength combination among {len(entries)}" if entries else "nothing"
+def _must_hold_strength(states: Sequence[str], findings: Findings) -> None:
+    if "strength" not in states:
+        found = f"no strength combination among {len(states)}" if states else "nothing"
         findings.add(
             ("combinations",),
             found=found,
-            expected='at least one table [[combinations]] with state = "strength"',
+            expected='a table [[combinations]] with state = "strength", or a combination_rule',
         )
 
 

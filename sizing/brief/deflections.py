@@ -8,8 +8,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from sizing.brief.combinations import named_place, read_factors
-from sizing.brief.findings import Findings, KeyPath, Names, Quantities, listed, quoted, shown
+from sizing.brief.combinations import CombinationTable, named_place, read_factors
+from sizing.brief.findings import Findings, KeyPath, Quantities, listed, quoted, shown
 from sizing.brief.load_cases import CaseTable
 from sizing.brief.model import Combination, DeflectionLimit, Support
 from sizing.brief.nodes_and_supports import FARTHEST, NodeTable
@@ -23,20 +23,19 @@ LEAST_DIVISOR = 10.0
 
 @dataclass(frozen=True, kw_only=True)
 class _Known:
-    """What limits refer to.
-
-    ``supports_known``, ``states_known``: supports and combinations were read without a mistake.
-    """
+    """What limits refer to. ``supports_known``: the supports were read without a mistake."""
 
     nodes: NodeTable
     cases: CaseTable
     supports: tuple[Support, ...]
-    combinations: tuple[Combination, ...]
-    names: Names
+    table: CombinationTable
     findings: Findings
     quantities: Quantities
     supports_known: bool
-    states_known: bool
+
+    @property
+    def combinations(self) -> tuple[Combination, ...]:
+        return self.table.combinations
 
 
 def read_deflection_limits(
@@ -44,25 +43,21 @@ def read_deflection_limits(
     nodes: NodeTable,
     supports: tuple[Support, ...],
     cases: CaseTable,
-    combinations: tuple[Combination, ...],
-    names: Names,
+    table: CombinationTable,
     findings: Findings,
     quantities: Quantities,
     *,
     supports_known: bool,
-    states_known: bool,
 ) -> tuple[DeflectionLimit, ...]:
     """Return the deflection limits in the order of the brief."""
     known = _Known(
         nodes=nodes,
         cases=cases,
         supports=supports,
-        combinations=combinations,
-        names=names,
+        table=table,
         findings=findings,
         quantities=quantities,
         supports_known=supports_known,
-        states_known=states_known,
     )
     limits: list[DeflectionLimit] = []
     taken: set[str] = set()
@@ -97,7 +92,7 @@ def _read(
     limit = None if "limit" in faulty else _limit(path, entry, nodes, known)
     combinations = _combinations((*path, "combinations"), entry.combinations, known)
     precamber = _precamber((*path, "precamber"), entry, faulty, known)
-    _must_creep((*path, "component"), entry, combinations, known)
+    _caution_creep(entry, combinations, known)
     if not nodes or not direction or limit is None or not combinations:
         return None
     return DeflectionLimit(
@@ -137,17 +132,14 @@ def _precamber(
     return factors
 
 
-def _must_creep(path: KeyPath, entry: RawLimit, combinations: Sequence[int], known: _Known) -> None:
-    """Record a final deflection in combinations that do not say what acts for long."""
-    chosen = [known.combinations[c] for c in combinations]
-    silent = [c.name for c in chosen if c.state == "serviceability" and not c.long_term]
-    if entry.component != "instantaneous" and silent and known.states_known:
-        known.findings.add(
-            path,
-            found=f"{quoted(entry.component)} in {listed(silent)} without a long-term part",
-            expected="long_term in every combination of a final deflection",
-            fix="Write long_term = { permanent = 1.0, ... }: permanent loads in full, variable "
-            "ones times psi2.",
+def _caution_creep(entry: RawLimit, combinations: Sequence[int], known: _Known) -> None:
+    """Say where a final deflection rests on a long-term part that the brief does not state."""
+    assumed = [known.combinations[c].name for c in combinations if c in known.table.assumed]
+    if entry.component != "instantaneous" and assumed:
+        known.findings.caution(
+            f"Deflection limit {entry.name}: the part of {listed(assumed)} that acts for long is "
+            "taken with the usual psi2 of EN 1990 Table A1.1; write long_term in the combination "
+            "to state it."
         )
 
 
@@ -270,7 +262,7 @@ def _span(
 def _combinations(path: KeyPath, value: Any, known: _Known) -> list[int]:
     serviceability = [i for i, c in enumerate(known.combinations) if c.state == "serviceability"]
     if value is None or value == "serviceability":
-        if not serviceability and known.states_known:
+        if not serviceability and known.table.whole:
             known.findings.add(
                 path,
                 found="no serviceability combination in the brief",
@@ -285,4 +277,4 @@ def _combinations(path: KeyPath, value: Any, known: _Known) -> list[int]:
             path, found=shown(value), expected='a list of combinations or "serviceability"'
         )
         return []
-    return known.names.resolve_all(path, value)
+    return known.table.names.resolve_all(path, value)

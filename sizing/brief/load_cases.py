@@ -19,10 +19,11 @@ GRAVITY_KINDS = ("permanent", "imposed", "imposed roof", "snow")
 
 @dataclass(frozen=True, kw_only=True)
 class CaseTable:
-    """The load cases and their names."""
+    """The load cases and their names. ``whole``: all were read without a mistake."""
 
     cases: tuple[LoadCase, ...]
     names: Names
+    whole: bool
 
 
 def read_cases(
@@ -74,9 +75,10 @@ def read_cases(
                 may_be_absent=entry.may_be_absent,
             )
         )
-    if present and len(findings) == before:
+    whole = present and len(findings) == before
+    if whole:
         _check_cases(cases, findings)
-    return CaseTable(cases=tuple(cases), names=names)
+    return CaseTable(cases=tuple(cases), names=names, whole=whole)
 
 
 def _read_nodal(

@@ -39,6 +39,7 @@ class RawBrief(RawTable):
     )
     groups: dict[str, Any] = Field({}, description="tables [groups.NAME], one for each group")
     cases: dict[str, Any] = Field({}, description="tables [cases.NAME], one for each load case")
+    combination_rule: Any = None
     combinations: list[Any] = Field([], description="tables [[combinations]]")
     deflection_limits: list[Any] = Field([], description="tables [[deflection_limits]]")
     options: dict[str, Any] = Field({}, description="tables [options.NAME], one for each option")

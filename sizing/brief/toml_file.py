@@ -48,11 +48,11 @@ def load_json(path: Path, largest: int) -> tuple[SourceFile, Any]:
 def read_text(path: Path, largest: int) -> tuple[SourceFile, str]:
     """Return identity and text of a UTF-8 file (a byte-order mark is dropped)."""
     name = str(path)
-    if path.is_dir():
-        raise _refused(name, "a folder", "a file")
     try:
         with path.open("rb") as stream:
             content = stream.read(largest + 1)
+    except IsADirectoryError as error:
+        raise _refused(name, "a folder", "a file") from error
     except FileNotFoundError as error:
         raise _refused(
             name, "no such file", "an existing file", "Check the path and the folder you are in."

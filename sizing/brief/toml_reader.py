@@ -55,9 +55,10 @@ def brief_from_tables(
     groups = read_groups(raw.groups, nodes, findings, quantities, present=present("groups"))
     check_truss(nodes, groups, findings)
     cases = read_cases(raw.cases, nodes, findings, quantities, present=present("cases"))
-    before = len(findings)
-    combinations, names = read_combinations(
-        raw.combinations, cases, findings, quantities, complete=present("combinations")
+    options = read_options(raw.options, findings, quantities, present=present("options"))
+    standards = [option.standard for option in options]
+    combinations = read_combinations(
+        raw, cases, standards, findings, quantities, present=present("combinations")
     )
     limits = read_deflection_limits(
         raw.deflection_limits,
@@ -65,13 +66,10 @@ def brief_from_tables(
         supports,
         cases,
         combinations,
-        names,
         findings,
         quantities,
         supports_known=supports_known,
-        states_known=present("combinations") and len(findings) == before,
     )
-    options = read_options(raw.options, findings, quantities, present=present("options"))
     findings.raise_if_any()
     return Brief(
         title=raw.title.strip() or source.path.stem,
@@ -83,7 +81,7 @@ def brief_from_tables(
         groups=groups.groups,
         members=groups.members,
         cases=cases.cases,
-        combinations=combinations,
+        combinations=combinations.combinations,
         deflection_limits=limits,
         options=options,
         notes=raw.notes,

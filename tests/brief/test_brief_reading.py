@@ -249,6 +249,37 @@ def test_a_movement_relative_to_a_node_with_creep_and_precamber(tmp_path: Path) 
     assert brief.combinations[1].long_term == {0: 1.0, 1: 0.2}
 
 
+def test_combinations_of_a_rule_follow_those_written_out(tmp_path: Path) -> None:
+    """EN 1990 (6.10): 1.35 G + 1.5 Q for strength, G + Q for serviceability (from memory)."""
+    text = 'combination_rule = "EN 1990"\n' + IN_KIP_AND_FEET.replace('"U1"', '"own"')
+    brief = read(tmp_path, text.replace('"S1"', '"own S"'))
+    assert [c.name for c in brief.combinations[:3]] == ["own", "own S", "U1"]
+    made = {tuple(c.factors.items()): c.state for c in brief.combinations[2:]}
+    assert made[(0, 1.35), (1, 1.5)] == "strength"
+    assert made[(0, 1.0), (1, 1.0)] == "serviceability"
+    limited = [brief.combinations[c].state for c in brief.deflection_limits[0].combinations]
+    assert set(limited) == {"serviceability"}
+
+
+def test_durations_follow_the_timber_standard(tmp_path: Path) -> None:
+    """NDS Table 2.3.2 gives wind ten minutes, EN 1995-1-1 Table 2.2 short (both from memory)."""
+    text = IN_KIP_AND_FEET.replace('kind = "snow"', 'kind = "wind"')
+    assert read(tmp_path, text).combinations[0].duration == "short"
+    american = text.replace("EN 1993-1-1", "NDS")
+    assert read(tmp_path, american).combinations[0].duration == "instantaneous"
+
+
+def test_an_assumed_long_term_part_is_said(tmp_path: Path) -> None:
+    """A final deflection without long_term takes permanent loads in full and says so."""
+    text = IN_KIP_AND_FEET.replace('limit = "1 in"', 'limit = "1 in"\ncomponent = "final"')
+    brief = read(tmp_path, text)
+    assert brief.combinations[1].long_term == {0: 1.0}
+    assert brief.cautions == (
+        "Deflection limit sag: the part of S1 that acts for long is taken with the usual psi2 of "
+        "EN 1990 Table A1.1; write long_term in the combination to state it.",
+    )
+
+
 def girder(restraint: str, supports: str = "", limits: str = "") -> str:
     """A girder of eight panels of 2 m in two chord groups; invented."""
     bottom = [f"A{i}-A{i + 1}" for i in range(8)]
