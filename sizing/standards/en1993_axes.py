@@ -7,10 +7,10 @@ from dataclasses import dataclass
 import numpy as np
 
 from sizing.brief.sections import Catalogue
-from sizing.standards.contract import BoolArray, FloatArray, MemberConditions
+from sizing.standards.contract import BoolArray, FloatArray, IntArray, MemberConditions
 from sizing.standards.en1993_angles import web_angle_slenderness
 from sizing.standards.en1993_curves import reference_slenderness
-from sizing.standards.en1993_lengths import WEB, Preset
+from sizing.standards.en1993_lengths import AS_GIVEN, WEB, Preset
 from sizing.standards.en1993_rows import RowArrays
 from sizing.standards.slenderness import is_angle, radii_in_and_out
 
@@ -47,15 +47,20 @@ def buckling_axes(
     """Return the axes for buckling in plane, out of plane, and about v-v (angles only).
 
     λ̄ = (L_cr/i) / λ₁ · √(A_eff/A), λ₁ = π √(E/fy). Angles buckle about v-v over the greater of
-    their two lengths. Under Annex BB.1 angles of the webs take their system length, or a
-    greater length where the brief gives one, and λ̄_eff of BB.1.2(2).
+    their two lengths. Under Annex BB.1 chords and webs start from their system length, or a
+    greater length where the brief gives one, so that no reduction counts twice; angles of the
+    webs take λ̄_eff of BB.1.2(2).
     """
     shape = (members.length.size, len(catalogue))
     angle = np.broadcast_to(is_angle(catalogue), shape)
-    factor_in, factor_out, web = _preset_factors(catalogue, members, preset)
-    system = np.where(web & angle, members.length[:, None], 0.0)
-    length_in = np.maximum(members.in_plane[:, None] * factor_in, system)
-    length_out = np.maximum(members.out_of_plane[:, None] * factor_out, system)
+    places = (
+        np.full(members.length.size, AS_GIVEN) if preset is None else preset.places(members.role)
+    )
+    factor_in, factor_out = _preset_factors(catalogue, places, preset)
+    web = places[:, None] == WEB
+    system = np.where(places == AS_GIVEN, 0.0, members.length)
+    length_in = np.maximum(members.in_plane, system)[:, None] * factor_in
+    length_out = np.maximum(members.out_of_plane, system)[:, None] * factor_out
     radius_in, radius_out = radii_in_and_out(catalogue, members)
     least = np.broadcast_to(catalogue.r_least, shape)
     upright = members.depth_in_plane[:, None]
@@ -86,17 +91,15 @@ def buckling_axes(
 
 
 def _preset_factors(
-    catalogue: Catalogue, members: MemberConditions, preset: Preset | None
-) -> tuple[FloatArray, FloatArray, BoolArray]:
-    """Return factors on the lengths in and out of plane (u, s) and which members are webs."""
-    shape = (members.length.size, len(catalogue))
-    if preset is None:
-        return np.ones(shape), np.ones(shape), np.zeros(shape, dtype=bool)
-    places = preset.places(members.role)
+    catalogue: Catalogue, places: IntArray, preset: Preset | None
+) -> tuple[FloatArray, FloatArray]:
+    """Return the factors of Annex BB.1 on the lengths in and out of plane (u, s)."""
+    shape = (places.size, len(catalogue))
     factor_in, factor_out = np.ones(shape), np.ones(shape)
-    families = np.array(catalogue.family)
-    for place in np.unique(places):
-        for family in dict.fromkeys(catalogue.family):
-            where = np.ix_(places == place, families == family)
-            factor_in[where], factor_out[where] = preset.factors(int(place), family)
-    return factor_in, factor_out, np.broadcast_to(places[:, None] == WEB, shape)
+    if preset is not None:
+        families = np.array(catalogue.family)
+        for place in np.unique(places):
+            for family in dict.fromkeys(catalogue.family):
+                where = np.ix_(places == place, families == family)
+                factor_in[where], factor_out[where] = preset.factors(int(place), family)
+    return factor_in, factor_out

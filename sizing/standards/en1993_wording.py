@@ -62,7 +62,7 @@ def _lengths(options: Options1993) -> str:
     if options.preset is None:
         return "as given in the brief"
     preset = options.preset
-    parts = ["Annex BB.1 on the lengths of the brief"]
+    parts = ["Annex BB.1 on the system lengths, or greater lengths of the brief"]
     if preset.chords:
         parts.append(f"chords: {', '.join(preset.chords)}")
     if preset.webs:

@@ -234,6 +234,18 @@ def test_preset_lengths_reach_the_resistance(catalogue_of, members_of):
     np.testing.assert_allclose(with_preset.slenderness_in, reduced.slenderness_in, rtol=EXACT)
 
 
+def test_a_preset_never_reduces_a_length_twice(catalogue_of, members_of):
+    """Factors of the brief below 1 do not multiply those of BB.1; longer lengths stay longer."""
+    standard = make_en1993("S355", {"buckling_lengths": "BB.1", "chords": ["chord"]})
+    members = members_of(length=2.0, in_plane=1.8, out_of_plane=6.0, role="chord")
+    lines = standard.working(
+        catalogue_of(square(0.1, 0.005)), 0, members, 0, "short", "compression"
+    )
+    found = {line.symbol: line.value for line in lines}
+    assert found["L_in"] == pytest.approx(0.9 * 2.0)
+    assert found["L_out"] == pytest.approx(0.9 * 6.0)
+
+
 def test_web_angles_never_take_less_than_their_system_length(catalogue_of, members_of):
     """BB.1.2 starts from the system length, however short the given buckling lengths are."""
     standard = make_en1993("S235", {"buckling_lengths": "BB.1", "webs": "web"})
