@@ -9,18 +9,10 @@ from collections.abc import Callable
 
 import numpy as np
 from scipy import sparse
-from scipy.linalg import LinAlgError, cho_factor, cho_solve
-from scipy.sparse.linalg import splu
 
 from sizing.errors import SolverError, UnstableTrussError
+from sizing.mechanics.factor import cholesky
 from sizing.mechanics.geometry import FloatArray
-
-DENSE_LIMIT = 250
-"""Free displacements up to which dense Cholesky is used.
-
-Measured on girders and space grids: equal near 230 (about 2 ms); at 400 the sparse factorisation
-is 3 to 10 times faster, below 100 the dense one is a little faster and exact about its pivots.
-"""
 
 PIVOT_FLOOR = 1e-14
 """Least pivot over its diagonal entry in a factorisation that is believed.
@@ -117,33 +109,8 @@ class Stiffness:
     def _factorise(self) -> Callable[[FloatArray], FloatArray]:
         if self.free == 0:
             return lambda p: p
-        return self._dense() if self.free <= DENSE_LIMIT else self._sparse()
-
-    def _dense(self) -> Callable[[FloatArray], FloatArray]:
-        matrix = self.matrix().toarray()
-        try:
-            factor = cho_factor(matrix, lower=True, check_finite=False)
-        except LinAlgError as error:
-            raise UnstableTrussError(_UNSTABLE) from error
-        _require_pivots(np.diagonal(factor[0]) ** 2, np.diagonal(matrix))
-        return lambda p: np.asarray(cho_solve(factor, p, check_finite=False))
-
-    def _sparse(self) -> Callable[[FloatArray], FloatArray]:
         matrix = self.matrix()
-        try:
-            factor = splu(
-                matrix,
-                permc_spec="MMD_AT_PLUS_A",
-                diag_pivot_thresh=0.0,
-                options={"SymmetricMode": True},
-            )
-        except RuntimeError as error:  # "Factor is exactly singular"
-            raise UnstableTrussError(_UNSTABLE) from error
-        # perm_c[i] is where column i went
-        _require_pivots(factor.U.diagonal()[factor.perm_c], matrix.diagonal())
-        return lambda p: np.asarray(factor.solve(p))
-
-
-def _require_pivots(pivots: FloatArray, diagonal: FloatArray) -> None:
-    if not np.all(pivots > PIVOT_FLOOR * diagonal):
-        raise UnstableTrussError(_UNSTABLE)
+        factor = cholesky(matrix)
+        if factor is None or not np.all(factor.pivots > PIVOT_FLOOR * matrix.diagonal()):
+            raise UnstableTrussError(_UNSTABLE)
+        return factor.solve
