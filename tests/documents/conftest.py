@@ -474,3 +474,66 @@ def tower_job() -> JobResult:
 def large_job() -> JobResult:
     """About 300 members and 25 combinations."""
     return job_of(girder(75, combinations=22), title="Long shed, girder G9 (invented)")
+
+
+HOSTILE = (
+    "<script>alert(1)</script>",
+    "a & b \"c\" 'd' ]]>",
+    "=cmd|' /C calc'!A0",
+    "+1",
+    "-2",
+    "@SUM(A1)",
+    "שלום עולם",
+    "exe\u202egnp",
+    "🏗️ crane",
+    "two\nlines\tand a tab",
+    "x" * 300,
+    "_x0041_",
+    "bell\x07",
+    "{{ 7 * 7 }} {% raw %}",
+    "[bold red]loud[/] :smile:",
+    "&A&P &[Page]",
+)
+
+
+def hostile_girder() -> Lines:
+    """A girder whose nodes, marks and groups carry names that try to break a document."""
+    plain = girder(7)
+    nodes = dict(zip(plain.nodes, HOSTILE, strict=True))
+    marks = iter(HOSTILE * 3)
+    groups = dict(zip(plain.groups, HOSTILE, strict=False))
+    return Lines(
+        nodes={nodes[n]: p for n, p in plain.nodes.items()},
+        held={nodes[n]: h for n, h in plain.held.items()},
+        groups={
+            groups[g]: [(nodes[a], nodes[b], next(marks)) for a, b, _ in members]
+            for g, members in plain.groups.items()
+        },
+        sections={groups[g]: s for g, s in plain.sections.items()},
+        cases={
+            c if c == "permanent" else f"{c} {HOSTILE[2]}": {nodes[n]: f for n, f in loads.items()}
+            for c, loads in plain.cases.items()
+        },
+        combinations=[
+            (
+                HOSTILE[k],
+                state,
+                {c if c == "permanent" else f"{c} {HOSTILE[2]}": f for c, f in factors.items()},
+            )
+            for k, (_, state, factors) in enumerate(plain.combinations)
+        ],
+        limited=[nodes[n] for n in plain.limited],
+        out_of_plane={groups[g]: r for g, r in plain.out_of_plane.items()},
+    )
+
+
+@pytest.fixture(scope="session")
+def hostile_job() -> JobResult:
+    """A job in which every name tries to break a document."""
+    return job_of(hostile_girder(), title=" ".join(HOSTILE), options=HOSTILE[:8])
+
+
+@pytest.fixture(scope="session")
+def hostile_names() -> tuple[str, ...]:
+    """The names used in ``hostile_job``."""
+    return HOSTILE
