@@ -10,6 +10,8 @@ from sizing.brief.nodes_and_supports import FARTHEST
 from sizing.brief.raw_tables import RawGroup
 
 GREATEST_FACTOR = 100.0
+LEAST_FACTOR = 0.02
+"""Nobody restrains a member fifty times along its length: the length is in another unit."""
 LEAST_USUAL_FACTOR = 0.5
 """A member held against turning at both ends buckles over half its length (Euler); a shorter
 buckling length means intermediate restraint that the brief does not show."""
@@ -56,7 +58,7 @@ def read_buckling_length(
                 fix="Write buckling_length = { in_plane = ... } and keep restrained_nodes.",
             )
         rule = _one(path, value, EXPECTED, findings, quantities)
-        _cautions(name, "", rule, lengths, findings)
+        _judge(path, name, "", rule, lengths, findings)
         return rule, rule
     return _two(path, value, name, entry, lengths, findings, quantities)
 
@@ -88,7 +90,7 @@ def _two(
                 _caution_default(name, entry, findings, f"no buckling length {words} is given", key)
             continue
         rule = _one((*path, key), value[key], EXPECTED_ONE, findings, quantities)
-        _cautions(name, words, rule, lengths, findings)
+        _judge((*path, key), name, words, rule, lengths, findings)
         rules.append(rule)
     if entry.restrained_nodes and "out_of_plane" in value:
         findings.add(
@@ -140,7 +142,8 @@ def _one(
     return BucklingLength(rule="length", value=1.0 if length is None else length)
 
 
-def _cautions(
+def _judge(
+    path: KeyPath,
     name: str,
     plane: str,
     rule: BucklingLength,
@@ -152,7 +155,14 @@ def _cautions(
         return
     ratio = rule.of(longest) / longest
     where = f" {plane}" if plane else ""
-    if ratio < LEAST_USUAL_FACTOR:
+    if ratio < LEAST_FACTOR:
+        findings.add(
+            path,
+            found=f"{ratio:.2g} of the longest member",
+            expected=f"at least {LEAST_FACTOR:g} of it",
+            fix="Check the unit of length.",
+        )
+    elif ratio < LEAST_USUAL_FACTOR:
         findings.caution(
             f"Group {name}: the buckling length{where} is {ratio:.2f} of the longest member; below "
             "0.5 it needs restraint between the nodes that the brief does not show."

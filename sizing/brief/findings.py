@@ -8,6 +8,7 @@ A *key path* is a tuple of names and positions (counted from 1) such as
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Callable, Collection, Iterable, Sequence
 from difflib import get_close_matches
 
@@ -19,6 +20,7 @@ KeyPath = tuple[str | int, ...]
 MOST_SUGGESTIONS = 200
 """Looking up near names is slow in a hopeless file; nobody reads so many suggestions."""
 LONGEST_SHOWN = 60
+_PLAIN_NAME = re.compile(r"[\w +'-]+")
 LEAST_LIKENESS = 0.5
 """Two names of two letters that share one are just alike enough for a suggestion."""
 
@@ -30,9 +32,10 @@ def key_path_text(path: KeyPath) -> str:
         if isinstance(part, int):
             text += f"[{part}]"
         elif part.startswith("["):
-            text += part
+            text += part.replace("\n", " / ")
         else:
-            text += f".{part}" if text else part
+            name = part if _PLAIN_NAME.fullmatch(part) else quoted(part)
+            text += f".{name}" if text else name
     return text or "the file"
 
 
@@ -131,13 +134,17 @@ class Findings:
 
     def did_you_mean(self, name: str, known: Iterable[str]) -> str:
         """Return a question that names the nearest known name; empty when none is near."""
+        near = self.nearest(name, known)
+        return f"Did you mean {quoted(near)}?" if near else ""
+
+    def nearest(self, name: str, known: Iterable[str]) -> str:
+        """Return the nearest known name; empty when none is near."""
         self._suggestions += 1
         if self._suggestions > MOST_SUGGESTIONS:
             return ""
-        names = list(known)
-        folded = {candidate.casefold(): candidate for candidate in reversed(names)}
+        folded = {candidate.casefold(): candidate for candidate in reversed(list(known))}
         close = get_close_matches(name.casefold(), folded, n=1, cutoff=LEAST_LIKENESS)
-        return f"Did you mean {quoted(folded[close[0]])}?" if close else ""
+        return folded[close[0]] if close else ""
 
     def raise_if_any(self) -> None:
         """Raise :class:`InputError` with every mistake in the file's order, if there is one."""

@@ -36,7 +36,7 @@ def read_cases(
 ) -> CaseTable:
     """Return the load cases in the order of the brief."""
     names = Names(findings, "load case", raw, complete=present)
-    before = len(findings)
+    before, loads_known = len(findings), True
     if present and not raw:
         findings.add(("cases",), found="an empty table", expected="at least one load case")
     cases: list[LoadCase] = []
@@ -49,6 +49,7 @@ def read_cases(
         if entry is None:
             continue
         nodal = _read_nodal(entry, (*path, "nodal"), nodes, findings, quantities)
+        loads_known = loads_known and len(nodal) == len(entry.nodal)
         if not entry.nodal and not entry.self_weight and not faulty & {"nodal", "self_weight"}:
             findings.add(
                 path,
@@ -75,7 +76,7 @@ def read_cases(
                 may_be_absent=entry.may_be_absent,
             )
         )
-    whole = present and len(findings) == before
+    whole = present and loads_known and len(findings) == before
     if whole:
         _check_cases(cases, findings)
     return CaseTable(cases=tuple(cases), names=names, whole=whole)

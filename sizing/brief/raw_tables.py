@@ -206,7 +206,8 @@ def read_entry(
 ) -> tuple[Table | None, frozenset[str]]:
     """Return the entry's good keys as a record, and the names of its faulty or missing keys.
 
-    Every mistake goes to ``findings``. None when ``value`` is not a table at all.
+    A key whose name is a slip counts as faulty under its right name too. Every mistake goes to
+    ``findings``. None when ``value`` is not a table at all.
     """
     if not isinstance(value, dict):
         findings.add(path, found=shown(value), expected=what)
@@ -224,7 +225,7 @@ def read_entry(
             faulty.add(str(mistake["loc"][0]))
             _remove(good, mistake["loc"])
         for mistake in error.errors(include_url=False):
-            _add_mistake(model, value, mistake, path, findings)
+            faulty.add(_add_mistake(model, value, mistake, path, findings))
     return model.model_validate(good), frozenset(faulty)
 
 
@@ -246,8 +247,10 @@ def _add_missing(
 ) -> None:
     description = model.model_fields[key].description or DESCRIBED_HERE[key]
     strangers = [k for k in value if k not in model.model_fields]
-    near = findings.did_you_mean(key, strangers)
-    fix = f"Rename the key {near[len('Did you mean ') : -1]} to {quoted(key)}." if near else ""
+    near = findings.nearest(key, strangers)
+    if near and model.model_config.get("extra") == "forbid":
+        return  # told where the stranger stands
+    fix = f"Rename the key {quoted(near)} to {quoted(key)}." if near else ""
     findings.add(path, found="nothing", expected=description, fix=fix)
 
 
@@ -257,13 +260,13 @@ def _add_mistake(
     mistake: Any,
     path: KeyPath,
     findings: Findings,
-) -> None:
+) -> str:
+    """Record one mistake; return the name of the key that it leaves without a value."""
     location: tuple[str | int, ...] = mistake["loc"]
     place = (*path, *(p + 1 if isinstance(p, int) else p for p in location))
     key, given = str(location[0]), mistake["input"]
     if mistake["type"] == "extra_forbidden":
-        _add_unknown_key(model, value, place, key, findings)
-        return
+        return _add_unknown_key(model, value, place, key, findings)
     field = model.model_fields[key]
     fix = ""
     if mistake["type"] == "literal_error" and isinstance(given, str):
@@ -276,6 +279,7 @@ def _add_mistake(
             else findings.did_you_mean(given, known)
         )
     findings.add(place, found=shown(given), expected=str(field.description), fix=fix)
+    return key
 
 
 def _add_unknown_key(
@@ -284,12 +288,14 @@ def _add_unknown_key(
     place: KeyPath,
     key: str,
     findings: Findings,
-) -> None:
+) -> str:
     known = list(model.model_fields)
     missing = [name for name in known if name not in value]
-    fix = findings.did_you_mean(key, missing) or findings.did_you_mean(key, known)
+    near = findings.nearest(key, missing) or findings.nearest(key, known)
+    fix = f"Did you mean {quoted(near)}?" if near else ""
     if key in RawBrief.model_fields and model is not RawBrief:
         fix = f"A key of the whole brief stands before the first table: move {key} there."
     findings.add(
         place, found=f"the unknown key {quoted(key)}", expected=f"one of {listed(known)}", fix=fix
     )
+    return near or key
