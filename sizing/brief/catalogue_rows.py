@@ -41,6 +41,22 @@ _FAMILY_BY_DESIGNATION = (
 )
 _HSS = re.compile(rf"^HSS\s*([0-9.,/-]+){_TIMES}([0-9.,/-]+)({_TIMES}[0-9.,/-]+)?", re.IGNORECASE)
 
+PLAUSIBLE: Mapping[str, tuple[float, float, str]] = {
+    "area": (1e-6, 10.0, "an area between 1 mm2 and 10 m2"),
+    "second moment": (1e-13, 100.0, "a second moment between 0.1 mm4 and 100 m4"),
+    "radius": (1e-4, 10.0, "a radius of gyration between 0.1 mm and 10 m"),
+    "mass": (1e-3, 1e5, "a mass between 1 g/m and 100 t/m"),
+    "surface": (1e-3, 100.0, "a surface between 0.001 and 100 m2/m"),
+    "plies": (1.0, 20.0, "a number of plies between 1 and 20"),
+    "price": (1e-6, 1e9, "a price"),
+}
+"""Least and greatest SI value of a property that any bar can have: beyond lies a slip."""
+
+PLAUSIBLE_LENGTH = (1e-4, 10.0, "a dimension between 0.1 mm and 10 m")
+
+PLAUSIBLE_DENSITY = (100.0, 20000.0)
+"""kg/m³, from balsa to tungsten alloys."""
+
 MOST_PROBLEMS_OF_ONE_KIND = 10
 """After this many the rest of one kind is told in one line that lists their line numbers."""
 
@@ -331,9 +347,7 @@ def _numbers(
         if cell.casefold() in EMPTY:
             continue
         try:
-            number = read_number(cell, marks)
-            if number.value <= 0.0:
-                raise NumberError("a number above zero")
+            numbers[key_of(column)] = _si(read_number(cell, marks), column)
         except NumberError as error:
             good = False
             findings.problem(
@@ -344,12 +358,22 @@ def _numbers(
                 kind=f"number {column.index} {error.expected[:24]}",
                 line=row.line,
             )
-            continue
-        factor = column.factor
-        if column.kind == "weight per length":
-            factor /= STANDARD_GRAVITY
-        numbers[key_of(column)] = Number(value=number.value * factor, half=number.half * factor)
     return numbers if good else None
+
+
+def _si(number: Number, column: Column) -> Number:
+    """Return a number in SI; raise :class:`NumberError` when no bar can have it."""
+    if number.value == 0.0 and column.property == "root_radius":
+        return number
+    if number.value <= 0.0:
+        raise NumberError("a number above zero")
+    factor = column.factor
+    if column.kind == "weight per length":
+        factor /= STANDARD_GRAVITY
+    low, high, words = PLAUSIBLE.get(column.property, PLAUSIBLE_LENGTH)
+    if not low <= number.value * factor <= high:
+        raise NumberError(words, "Compare the unit in the column head with the table.")
+    return Number(value=number.value * factor, half=number.half * factor)
 
 
 def read_density(table: TextTable, findings: Findings) -> float | str | None:
@@ -369,4 +393,12 @@ def read_density(table: TextTable, findings: Findings) -> float | str | None:
             fix="Write for instance: # density = 7850 kg/m3",
         )
         return None
-    return float(match[1].replace(",", ".")) * measured[1]
+    density = float(match[1].replace(",", ".")) * measured[1]
+    if not PLAUSIBLE_DENSITY[0] <= density <= PLAUSIBLE_DENSITY[1]:
+        findings.problem(
+            place="header, density",
+            found=f"{density:.4g} kg/m3",
+            expected="the density of a building material, 100 to 20000 kg/m3",
+        )
+        return None
+    return density

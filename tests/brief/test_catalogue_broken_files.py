@@ -164,6 +164,16 @@ BROKEN: dict[str, tuple[str, str]] = {
         PLACE + "'area [cm2]': found '1e999'; expected a number. No property of a section is of "
         "this size.",
     ),
+    "lengths in mm under m": (
+        GOOD.replace("depth [mm]", "depth [m]").replace(SHS80, ""),
+        PLACE + "'depth [m]': found '100'; expected a dimension between 0.1 mm and 10 m. Compare "
+        "the unit in the column head with the table.",
+    ),
+    "a density of another planet": (
+        "# density = 7.85 kg/m3\n" + GOOD,
+        "list.csv: header, density: found 7.85 kg/m3; expected the density of a building "
+        "material, 100 to 20000 kg/m3.",
+    ),
     "a unit in the cell": (
         GOOD.replace(",18.7,", ",18.7 cm2,"),
         PLACE + "'area [cm2]': found '18.7 cm2'; expected a number. Put the unit into the column "
