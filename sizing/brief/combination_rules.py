@@ -12,17 +12,22 @@ In a brief the rule is a name, or a table of its settings::
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Mapping, Sequence
 
-from sizing.brief.combination_rules_actions import Actions, action_name, actions_of
+from sizing.brief.combination_rules_actions import (
+    action_name,
+    actions_of,
+    count_selections,
+)
 from sizing.brief.combination_rules_asce7 import asce7, read_asce7
 from sizing.brief.combination_rules_draft import finished
 from sizing.brief.combination_rules_durations import usual_durations
+from sizing.brief.combination_rules_en1990 import RULE as EN_1990
 from sizing.brief.combination_rules_en1990 import USUAL_PSI, en1990, read_en1990
 from sizing.brief.findings import Findings, KeyPath, quoted, shown
 from sizing.brief.model import Combination, LoadCase
 
-EN_1990 = "EN 1990"
 ASCE_7: dict[str, tuple[str, str]] = {
     f"ASCE {edition} {method}": (edition, method)
     for edition in ("7-16", "7-22")
@@ -30,8 +35,9 @@ ASCE_7: dict[str, tuple[str, str]] = {
 }
 RULES = (EN_1990, *ASCE_7)
 
-MOST_COMBINATIONS = 2000
-"""More than this is no set that anyone can check; alternatives are then not told apart."""
+MOST_SELECTIONS = 500
+"""Two permanent cases, three of snow and four of wind make 20; a set of thousands of combinations
+is one that nobody can check, and shows that alternatives were not told apart."""
 
 
 def expand(
@@ -74,9 +80,10 @@ def read_rule(
     _check_actions(findings, cases)
     if rule is None:
         return ()
-    actions = actions_of(cases, by_kind=rule != EN_1990)
-    if _too_many(findings, path, actions) or len(findings.problems) > before:
+    by_kind = rule != EN_1990
+    if _too_many(findings, path, cases, by_kind=by_kind) or len(findings.problems) > before:
         return ()
+    actions = actions_of(cases, by_kind=by_kind)
     usual = usual_durations(standards)
     if rule == EN_1990:
         european = read_en1990(findings, path, settings, actions)
@@ -142,18 +149,20 @@ def _check_actions(findings: Findings, cases: Sequence[LoadCase]) -> None:
             )
 
 
-def _too_many(findings: Findings, path: KeyPath, actions: Actions) -> bool:
-    count = 2 * len(actions.optional) * len(actions.settlements)
-    for action in actions.variable:
-        count *= len(action.or_none)
-    if count <= MOST_COMBINATIONS:
+def _too_many(
+    findings: Findings, path: KeyPath, cases: Sequence[LoadCase], *, by_kind: bool
+) -> bool:
+    """Record more selections of cases than anyone can check."""
+    counts = count_selections(cases, by_kind=by_kind)
+    total = math.prod(counts.values())
+    if total <= MOST_SELECTIONS:
         return False
-    widest = max(actions.variable, key=lambda action: len(action.choices), default=None)
-    name = "the permanent cases that may be absent" if widest is None else widest.name
+    widest = max(counts, key=lambda name: counts[name])
     findings.add(
         path,
-        found=f"more than {MOST_COMBINATIONS} combinations of the cases",
-        expected=f"at most {MOST_COMBINATIONS}",
-        fix=f"Give cases of {quoted(name)} that never act together the same alternative_set.",
+        found=f"{total} selections of load cases that may act together",
+        expected=f"at most {MOST_SELECTIONS}",
+        fix=f"Give cases of {quoted(widest)} that never act together the same alternative_set, "
+        "or join those that always do in one case.",
     )
     return True

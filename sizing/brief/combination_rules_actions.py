@@ -13,6 +13,7 @@ Permanent cases act together. Those that ``may_be_absent``, and settlements, are
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from itertools import product
@@ -72,10 +73,19 @@ def alternative_set(case: LoadCase) -> str | None:
     return action_name(case) if case.kind in ALTERNATIVE_KINDS else None
 
 
-def actions_of(cases: Sequence[LoadCase], *, by_kind: bool = False) -> Actions:
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Sorted:
+    """Case indices: permanent ones, those that may be absent, settlements, variable actions."""
+
+    permanent: tuple[int, ...]
+    optional: tuple[int, ...]
+    settlements: tuple[int, ...]
+    variable: dict[str, tuple[int, ...]]
+
+
+def sort_cases(cases: Sequence[LoadCase], *, by_kind: bool = False) -> Sorted:
     """Sort the cases into actions; ``by_kind`` takes all cases of a kind as one action."""
-    sets = tuple(alternative_set(case) for case in cases)
-    members: dict[str, list[int]] = {}
+    variable: dict[str, tuple[int, ...]] = {}
     optional: list[int] = []
     settlements: list[int] = []
     permanent: list[int] = []
@@ -85,27 +95,67 @@ def actions_of(cases: Sequence[LoadCase], *, by_kind: bool = False) -> Actions:
         elif case.kind == "permanent":
             (optional if case.may_be_absent else permanent).append(q)
         else:
-            members.setdefault(case.kind if by_kind else action_name(case), []).append(q)
-    return Actions(
+            name = case.kind if by_kind else action_name(case)
+            variable[name] = (*variable.get(name, ()), q)
+    return Sorted(
         permanent=tuple(permanent),
-        optional=tuple(selections(optional, sets)),
-        settlements=tuple(selections(settlements, sets)),
+        optional=tuple(optional),
+        settlements=tuple(settlements),
+        variable=variable,
+    )
+
+
+def actions_of(cases: Sequence[LoadCase], *, by_kind: bool = False) -> Actions:
+    """Return the actions with every selection of their cases that acts together.
+
+    Selections multiply: ask :func:`count_selections` first.
+    """
+    sets = tuple(alternative_set(case) for case in cases)
+    found = sort_cases(cases, by_kind=by_kind)
+    return Actions(
+        permanent=found.permanent,
+        optional=tuple(selections(found.optional, sets)),
+        settlements=tuple(selections(found.settlements, sets)),
         variable=tuple(
             Action(
                 name=name,
                 kind=cases[of[0]].kind,
                 choices=tuple(choice for choice in selections(of, sets) if choice),
             )
-            for name, of in members.items()
+            for name, of in found.variable.items()
         ),
         sets=sets,
     )
 
 
+def count_selections(cases: Sequence[LoadCase], *, by_kind: bool = False) -> dict[str, int]:
+    """Return the number of selections, none included, of each action without making them.
+
+    Permanent cases that may be absent, and settlements, are counted under those names.
+    """
+    sets = tuple(alternative_set(case) for case in cases)
+    found = sort_cases(cases, by_kind=by_kind)
+    groups = {
+        "permanent cases that may be absent": found.optional,
+        "settlement": found.settlements,
+        **found.variable,
+    }
+    return {
+        name: math.prod(len(of) + 1 for of in _slots(cases_, sets))
+        for name, cases_ in groups.items()
+    }
+
+
 def selections(cases: Sequence[int], sets: Sequence[str | None]) -> Iterator[Choice]:
     """Yield every selection of ``cases`` with at most one of each set, fullest first."""
+    slots = _slots(cases, sets)
+    for picked in product(*([(q,) for q in of] + [NONE] for of in slots)):
+        yield tuple(sorted(q for choice in picked for q in choice))
+
+
+def _slots(cases: Sequence[int], sets: Sequence[str | None]) -> list[list[int]]:
+    """Return the cases by alternative set; a case without a set has a slot of its own."""
     slots: dict[str | int, list[int]] = {}
     for q in cases:
         slots.setdefault(sets[q] or q, []).append(q)
-    for picked in product(*([(q,) for q in of] + [NONE] for of in slots.values())):
-        yield tuple(sorted(q for choice in picked for q in choice))
+    return list(slots.values())

@@ -66,11 +66,21 @@ USUAL_PSI: dict[ActionKind, Psi] = {
     "other": UNREDUCED,
 }
 
+CHOICES: dict[ActionKind, str] = {
+    "imposed": "categories A and B, domestic and offices",
+    "snow": "sites up to 1000 m outside the Nordic countries",
+    "other": "no reduction",
+}
+"""Kinds of which Table A1.1 has several rows, or none, and the row that is usual here."""
+
+RULE = "EN 1990"
+
 NEVER_TOGETHER = (("imposed roof", "snow"), ("imposed roof", "wind"))
 """EN 1991-1-1 3.3.2(1): imposed load on roofs of category H acts without snow or wind."""
 
 EXPRESSIONS = ("6.10", "6.10a and 6.10b")
 SERVICEABILITY = ("characteristic", "frequent", "quasi-permanent", "variable")
+ALONE = "permanent alone"
 KEYS = (
     "expression",
     "gamma_G_sup",
@@ -109,6 +119,8 @@ def read_en1990(
 ) -> EN1990Settings:
     """Read the settings of the rule; mistakes are recorded in ``findings``."""
     read = RuleTable(findings, path, table, KEYS)
+    given = read.table("psi")
+    _caution_usual(findings, given, actions.variable)
     known = {name for action in actions.variable for name in (action.name, action.kind)}
     return EN1990Settings(
         expression=read.choice("expression", EXPRESSIONS, "6.10"),
@@ -117,11 +129,24 @@ def read_en1990(
         gamma_q=read.number("gamma_Q", 1.50, at_least=1.0, at_most=MOST_GAMMA),
         xi=read.number("xi", 0.85, at_least=0.5, at_most=1.0),
         k_fi=read.number("K_FI", 1.0, at_least=0.8, at_most=1.2),
-        psi=_read_psi(findings, (*path, "psi"), read.table("psi"), actions.variable),
+        psi=_read_psi(findings, (*path, "psi"), given, actions.variable),
         never_together=read.pairs("never_together", known | set(USUAL_PSI), NEVER_TOGETHER),
         serviceability=read.choices("serviceability", SERVICEABILITY, ("characteristic",)),
         equilibrium=read.flag("equilibrium"),
     )
+
+
+def _caution_usual(
+    findings: Findings, given: Mapping[str, object], actions: Sequence[Action]
+) -> None:
+    """Say which ψ were taken where the table leaves a choice and the brief makes none."""
+    for action in actions:
+        if action.kind in CHOICES and not {action.name, action.kind} & given.keys():
+            values = ", ".join(f"{psi:g}" for psi in USUAL_PSI[action.kind])
+            findings.caution(
+                f"Combination rule {RULE}: {action.name} takes ψ0, ψ1, ψ2 = {values} "
+                f"({CHOICES[action.kind]}); set psi where that does not hold."
+            )
 
 
 def _read_psi(
@@ -226,7 +251,7 @@ class _Rule:
         """Yield 6.16b."""
         states, text = self._permanent([(1.0, "")], 1.0), "quasi-permanent 6.16b"
         for state in states:
-            yield self._draft("Q", text, "permanent", state, {})
+            yield self._draft("Q", text, ALONE, state, {})
         yield from self._unled("Q", text, states, self._factors(1.0, 2))
 
     def variable_only(self) -> Iterator[Draft]:
@@ -240,7 +265,7 @@ class _Rule:
     ) -> Iterator[Draft]:
         states = self._permanent([(1.0, "")], 1.0)
         for state in states:
-            yield self._draft(letter, text, "permanent", state, {})
+            yield self._draft(letter, text, ALONE, state, {})
         leading, accompanying = self._factors(1.0, own), self._factors(1.0, others)
         yield from self._led(letter, text, states, leading, accompanying)
 
@@ -257,11 +282,11 @@ class _Rule:
     def _alone(self, expression: str, unfavourable: float) -> Iterator[Draft]:
         """Permanent actions alone; favourable ones only where a settlement acts against them."""
         for state in self._permanent([(unfavourable, "")], unfavourable):
-            yield self._draft("U", expression, "permanent", state, {})
+            yield self._draft("U", expression, ALONE, state, {})
         favourable = [(self.settings.gamma_inf, "permanent favourable")]
         for state in self._permanent(favourable, unfavourable):
             if any(self.cases[q].kind == "settlement" for q in state.factors):
-                yield self._draft("U", expression, "permanent", state, {})
+                yield self._draft("U", expression, ALONE, state, {})
 
     def _led(
         self,

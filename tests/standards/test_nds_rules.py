@@ -320,7 +320,8 @@ KEYS = (
         (
             "DF-L No.2",
             {"wetservice": True},
-            f"wetservice: found an unknown setting; expected one of NDS's settings: {KEYS}. Remove it.",
+            f"wetservice: found an unknown setting; expected one of NDS's settings: {KEYS}. "
+            'Did you mean "wet_service"?',
         ),
         (
             "DF-L No.2",
