@@ -7,6 +7,8 @@ with its unit in square brackets, then the rows::
 
     designation, family, product, area [cm2], mass [kg/m], I major [cm4], I minor [cm4], ...
 
+The first sheet with such heads in a workbook (.xlsx) is read the same way.
+
 Needed are the designation, the area, the mass (or a density in the header), and the second
 moment or radius of gyration about the major and the minor axis; for angles also about the least
 axis.
@@ -17,6 +19,7 @@ from __future__ import annotations
 import difflib
 import hashlib
 from collections.abc import Sequence
+from dataclasses import replace
 from pathlib import Path
 
 import numpy as np
@@ -39,7 +42,8 @@ from sizing.brief.catalogue_rows import (
     read_density,
     read_entries,
 )
-from sizing.brief.catalogue_text import LARGEST_FILE, TextProblemsError, decode, split
+from sizing.brief.catalogue_text import TextProblemsError, decode, refuse_large, split
+from sizing.brief.catalogue_workbook import MAGIC, workbook_table
 from sizing.brief.model import SourceFile
 from sizing.brief.sections import Catalogue, FloatArray
 from sizing.errors import InputError, Problem
@@ -81,10 +85,12 @@ def read_catalogue(name_or_path: str, base: Path) -> Catalogue:
     """
     path = _find(name_or_path, base)
     try:
-        size = path.stat().st_size
-        data = path.read_bytes() if size <= LARGEST_FILE else b" " * (LARGEST_FILE + 1)
+        refuse_large(path.stat().st_size, name_or_path)
+        data = path.read_bytes()
     except OSError as error:
         raise InputError([_unreadable(name_or_path, error)]) from error
+    except TextProblemsError as error:
+        raise InputError(error.problems) from error
     source = SourceFile(name=name_or_path, path=path, sha256=hashlib.sha256(data).hexdigest())
     return catalogue_from_bytes(data, name=name_or_path, source=source)
 
@@ -93,13 +99,16 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
     """Build a catalogue from the bytes of its file; raises as :func:`read_catalogue` does."""
     file = source.name
     try:
-        text, encoding = decode(data, file)
-        table = split(text, file, looks_like_heads)
+        if data.startswith(MAGIC):
+            table = workbook_table(data, file, looks_like_heads)
+        else:
+            text, encoding = decode(data, file)
+            table = split(text, file, looks_like_heads)
+            table = replace(table, remarks=(*encoding, *table.remarks))
     except TextProblemsError as error:
         raise InputError(error.problems) from error
-    findings = Findings(file=file, remarks=[*encoding])
     table = with_unit_row(table)
-    findings.remarks += table.remarks
+    findings = Findings(file=file, remarks=list(table.remarks))
     heads = read_heads(table.heads.cells, file=file, line=table.heads.line)
     findings.heads = {key_of(column): column.head for column in heads.columns}
     findings.remarks += heads.remarks

@@ -37,6 +37,7 @@ SETTING_KEYS = frozenset(
 )
 """Keys of ``# key = value`` lines. The first five are acted upon, the others are for the reader."""
 
+_COMMENT = re.compile(r'^[\s"]*#(?!(?:N/A|REF!|VALUE!|NAME\?|DIV/0!|NULL!|NUM!))')
 _SETTING = re.compile(r"^\s*([A-Za-z][A-Za-z ]{0,30}?)\s*=\s*(.+?)\s*$")
 
 
@@ -73,6 +74,7 @@ def decode(data: bytes, file: str) -> tuple[str, tuple[str, ...]]:
 
     Raises :class:`TextProblemsError` for workbooks, other binary files and empty ones.
     """
+    refuse_large(len(data), file)
     _refuse_what_is_no_text(data, file)
     if data.startswith((b"\xff\xfe", b"\xfe\xff")):
         try:
@@ -86,24 +88,28 @@ def decode(data: bytes, file: str) -> tuple[str, tuple[str, ...]]:
         return text, ("The file is not UTF-8; it was read as Western European (Windows-1252).",)
 
 
-def _refuse_what_is_no_text(data: bytes, file: str) -> None:
-    if len(data) > LARGEST_FILE:
+def refuse_large(size: int, file: str) -> None:
+    """Raise :class:`TextProblemsError` for a file of more than :data:`LARGEST_FILE` bytes."""
+    if size > LARGEST_FILE:
         raise TextProblemsError(
             Problem(
                 file=file,
                 place="file",
-                found=f"{len(data) / 1024 / 1024:.1f} MiB",
+                found=f"{size / 1024 / 1024:.1f} MiB",
                 expected=f"at most {LARGEST_FILE // 1024 // 1024} MiB",
                 fix="A section table of a thousand rows takes about 0.1 MiB.",
             )
         )
-    if data.startswith((b"PK\x03\x04", b"\xd0\xcf\x11\xe0")):
+
+
+def _refuse_what_is_no_text(data: bytes, file: str) -> None:
+    if data.startswith(b"\xd0\xcf\x11\xe0"):
         raise TextProblemsError(
             Problem(
                 file=file,
                 place="file",
-                found="a workbook or archive",
-                expected="a text table (CSV)",
+                found="a workbook of the old kind (.xls), or one with a password",
+                expected="a text table (CSV) or a workbook (.xlsx)",
                 fix="Save the sheet as CSV (UTF-8) and name that file.",
             )
         )
@@ -131,9 +137,9 @@ def split(text: str, file: str, looks_like_heads: Callable[[list[str]], bool]) -
     stops the splitting.
     """
     lines = text.replace("\r\n", "\n").replace("\r", "\n").split("\n")
-    header = tuple(line.strip().lstrip("#").strip() for line in lines if _is_comment(line))
-    settings = _settings(header)
-    body = ["" if _is_comment(line) else line for line in lines]
+    header = tuple(line.strip().lstrip("#").strip() for line in lines if is_comment(line))
+    settings = header_settings(header)
+    body = ["" if is_comment(line) else line for line in lines]
     hint = re.match(r"^sep=(.)$", body[0].strip('"'))  # spreadsheets write their delimiter so
     if hint:
         settings.setdefault("delimiter", hint[1])
@@ -183,12 +189,16 @@ def _head_line(
     return (filled[0] if filled else None), ()
 
 
-def _is_comment(line: str) -> bool:
-    """Spreadsheets quote a comment line that holds the delimiter: ``"# a; b";;;``."""
-    return line.lstrip().lstrip('"').startswith("#")
+def is_comment(line: str) -> bool:
+    """Say whether a line is a header line; ``#N/A`` and its like are a spreadsheet's errors.
+
+    Spreadsheets quote a header line that holds the delimiter: ``"# a; b";;;``.
+    """
+    return _COMMENT.match(line) is not None
 
 
-def _settings(header: tuple[str, ...]) -> dict[str, str]:
+def header_settings(header: tuple[str, ...]) -> dict[str, str]:
+    """Return the settings ``key = value`` among the header lines."""
     found: dict[str, str] = {}
     for line in header:
         match = _SETTING.match(line.rstrip('";,\t '))

@@ -345,8 +345,13 @@ def test_files_that_are_no_text_tables_are_refused(tmp_path: Path) -> None:
         "list.csv: file: found bytes that are not text; expected a text table (CSV). Save the "
         "table as CSV (UTF-8)."
     )
-    assert messages(tmp_path, b"x" * (5 * 1024 * 1024 + 1)) == (
-        "list.csv: file: found 5.0 MiB; expected at most 5 MiB. A section table of a thousand "
+    assert messages(tmp_path, b"\xd0\xcf\x11\xe0 old") == (
+        "list.csv: file: found a workbook of the old kind (.xls), or one with a password; "
+        "expected a text table (CSV) or a workbook (.xlsx). Save the sheet as CSV (UTF-8) and "
+        "name that file."
+    )
+    assert messages(tmp_path, b"x" * (6 * 1024 * 1024)) == (
+        "list.csv: file: found 6.0 MiB; expected at most 5 MiB. A section table of a thousand "
         "rows takes about 0.1 MiB."
     )
 
