@@ -9,6 +9,7 @@ from typing import Any
 from sizing.standards.aisc360_grades import GradeUS, find_grade, grade_names
 from sizing.standards.contract import SettingsError
 from sizing.standards.settings import SettingsReader, matches, nearest
+from sizing.standards.steel_rows import STEEL_STRENGTH
 
 NAME = "AISC 360"
 KEYS = (
@@ -63,7 +64,10 @@ class Options360:
 def read_options(grade: str | None, settings: Mapping[str, Any]) -> Options360:
     """Return the choices; raise :class:`SettingsError` for the first that cannot be used."""
     reader = SettingsReader(NAME, settings, KEYS)
-    Fy, Fu = reader.quantity("Fy", "stress"), reader.quantity("Fu", "stress")
+    Fy, Fu = (
+        reader.quantity("Fy", "stress", STEEL_STRENGTH),
+        reader.quantity("Fu", "stress", STEEL_STRENGTH),
+    )
     if Fy is not None and Fu is not None and Fu < Fy:
         raise SettingsError(
             key="Fu", found=f'"{settings["Fu"]}"', expected="a tensile strength not below Fy"
@@ -75,7 +79,7 @@ def read_options(grade: str | None, settings: Mapping[str, Any]) -> Options360:
     return Options360(
         grade_name=grade or "steel as set",
         grade=_grade(grade, own=Fy is not None and Fu is not None),
-        edition=reader.choice("edition", ("360-22", "360-16"), "360-22"),
+        edition=reader.choice("edition", ("2022", "2016"), "2022"),
         method=reader.choice("method", tuple(FACTORS), "LRFD"),
         Fy=Fy,
         Fu=Fu,

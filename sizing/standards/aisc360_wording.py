@@ -11,7 +11,7 @@ def basis_rows(options: Options360, material: Material) -> tuple[tuple[str, str]
     """Return (what, value with source) rows."""
     sign, yielding, rupture = FACTOR_TEXTS[options.method]
     return (
-        ("Standard", f"ANSI/AISC {options.edition}, {options.method}"),
+        ("Method", f"{options.method}, edition {options.edition}"),
         ("Steel", options.grade_name),
         ("Strength", _strength(options)),
         ("Modulus of elasticity", f"{material.E / KSI:g} ksi"),

@@ -43,6 +43,11 @@ def design(method: str, symbol: str) -> str:
     return f"φ {symbol}" if method == "LRFD" else f"{symbol} / Ω"
 
 
+def design_text(method: str, symbol: str, factor: str) -> str:
+    """Return the formula of the strength: ``0.90 Pn`` or ``Pn / 1.67``."""
+    return f"{factor} {symbol}" if method == "LRFD" else f"{symbol} / {factor}"
+
+
 def _strength_steps(catalogue: Catalogue, row: Row360) -> list[Step]:
     return [
         step("Ag", "catalogue", catalogue.area[0], "m²", "section", catalogue.designation[0]),
@@ -65,7 +70,7 @@ def tension_steps(
     symbol = design(options.method, "Pn")
     if row.unusable:
         return (step(symbol, "0", strength, "N", clause, note),)
-    sign, yielding_text, rupture_text = FACTOR_TEXTS[options.method]
+    _, yielding_text, rupture_text = FACTOR_TEXTS[options.method]
     yielding_factor, rupture_factor, _ = FACTORS[options.method]
     net = float(members.net_factor[0])
     area = float(catalogue.area[0])
@@ -75,13 +80,25 @@ def tension_steps(
     return (
         *_strength_steps(catalogue, row),
         step("Pn,y", "Fy Ag", yielding, "N", CLAUSES[YIELD]),
-        step(first, f"{sign} = {yielding_text}", yielding_factor * yielding, "N", CLAUSES[YIELD]),
+        step(
+            first,
+            design_text(options.method, "Pn,y", yielding_text),
+            yielding_factor * yielding,
+            "N",
+            CLAUSES[YIELD],
+        ),
         step("Fu", row.origin, row.Fu, "Pa", "A3.1", "tensile strength"),
         step("An", f"{net:g} Ag", net * area, "m²", "B4.3", "net area at the joints"),
         step("U", "shear lag factor", options.shear_lag, "-", "D3"),
         step("Ae", "An U", effective, "m²", "D3"),
         step("Pn,u", "Fu Ae", rupture, "N", CLAUSES[RUPTURE]),
-        step(second, f"{sign} = {rupture_text}", rupture_factor * rupture, "N", CLAUSES[RUPTURE]),
+        step(
+            second,
+            design_text(options.method, "Pn,u", rupture_text),
+            rupture_factor * rupture,
+            "N",
+            CLAUSES[RUPTURE],
+        ),
         step(symbol, f"min({first}, {second})", strength, "N", clause, "tension strength"),
     )
 
@@ -129,10 +146,11 @@ def compression_steps(
             *_width_steps(rows, Fcr),
             step("Ae", _area_text(row), area, "m²", "E7", "effective area"),
         ]
-    sign, factor, _ = FACTOR_TEXTS[options.method]
+    _, factor, _ = FACTOR_TEXTS[options.method]
     steps.append(step("Pn", f"Fcr {name}", Fcr[0, 0] * area, "N", clause))
     if not note:
-        last = step(symbol, f"{sign} = {factor}", strength, "N", clause, "compression strength")
+        text = design_text(options.method, "Pn", factor)
+        last = step(symbol, text, strength, "N", clause, "compression strength")
     return (*steps, last)
 
 

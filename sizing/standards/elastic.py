@@ -33,7 +33,7 @@ from sizing.standards.contract import (
     Sense,
     Step,
 )
-from sizing.standards.settings import SettingsReader
+from sizing.standards.settings import Range, SettingsReader
 from sizing.standards.slenderness import is_angle, slenderness_in_and_out
 
 KEYS = (
@@ -44,6 +44,11 @@ KEYS = (
     "buckling",
     "buckling_safety_factor",
 )
+
+USUAL_MODULUS = Range(least=1e8, greatest=1e12, text="a modulus of elasticity, 0.1 to 1000 GPa")
+USUAL_DENSITY = Range(least=10.0, greatest=25000.0, text="a density of 10 to 25 000 kg/m3")
+GREATEST_STRAIN = 0.1
+"""An allowable stress above E/10 is no elastic stress; it catches MPa written for GPa in E."""
 
 TENSION, COMPRESSION, BUCKLING_IN, BUCKLING_OUT, BUCKLING_LEAST, NO_INERTIA, LIMIT = range(7)
 CLAUSES = (
@@ -232,16 +237,20 @@ def make_elastic(grade: str | None, settings: Mapping[str, Any]) -> Elastic:
     buckling = reader.choice("buckling", ("Euler", "none"), "Euler")
     factor = None
     if buckling == "Euler":
-        factor = reader.required_number("buckling_safety_factor", at_least=1.0)
+        factor = reader.required_number("buckling_safety_factor", at_least=1.0, at_most=20.0)
     else:
         reader.forbid("buckling_safety_factor", 'buckling = "none"')
+    E = reader.required_quantity("E", "stress", USUAL_MODULUS)
+    usual = Range(
+        least=0.0, greatest=GREATEST_STRAIN * E, text=f"at most E/{1 / GREATEST_STRAIN:g}"
+    )
     return Elastic(
         material=Material(
             name=grade or "material as set",
-            E=reader.required_quantity("E", "stress"),
-            density=reader.required_quantity("density", "density"),
+            E=E,
+            density=reader.required_quantity("density", "density", USUAL_DENSITY),
         ),
-        allowable_tension=reader.required_quantity("allowable_tension", "stress"),
-        allowable_compression=reader.required_quantity("allowable_compression", "stress"),
+        allowable_tension=reader.required_quantity("allowable_tension", "stress", usual),
+        allowable_compression=reader.required_quantity("allowable_compression", "stress", usual),
         safety_factor=factor,
     )

@@ -175,7 +175,9 @@ class EN1993:
         if sense == "tension":
             return tension_steps(self.options, one, condition, rows, found, note)
         axes = buckling_axes(one, condition, rows, self.material.E, self.options.preset)
-        return compression_steps(self.options, self.material.E, one, rows, axes, found, note)
+        return compression_steps(
+            self.options, self.material.E, one, condition, rows, axes, found, note
+        )
 
     def basis(self) -> tuple[tuple[str, str], ...]:
         """Return (what, value with source) rows for the basis of design."""

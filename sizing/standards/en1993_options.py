@@ -12,6 +12,7 @@ from sizing.standards.en1993_angles import LegBolts
 from sizing.standards.en1993_grades import TABLES, Grade, known_grades, parse_grade
 from sizing.standards.en1993_lengths import Preset
 from sizing.standards.settings import SettingsReader, nearest
+from sizing.standards.steel_rows import STEEL_STRENGTH
 
 NAME = "EN 1993-1-1"
 KEYS = (
@@ -34,6 +35,9 @@ KEYS = (
 )
 RECOMMENDED = {"gamma_M0": 1.00, "gamma_M1": 1.00, "gamma_M2": 1.25}
 """EN 1993-1-1:2005, 6.1(1) NOTE 2B; National Annexes may give others (from memory)."""
+
+GREATEST_FACTOR = 3.0
+"""National Annexes ask for 1.0 to 1.5; beyond 3 it is a slip of the keyboard."""
 
 BY_PRODUCT = "by product"
 LEAVE_OUT = "leave out"
@@ -68,12 +72,18 @@ def read_options(grade: str | None, settings: Mapping[str, Any]) -> Options1993:
     """Return the choices; raise :class:`SettingsError` for the first that cannot be used."""
     reader = SettingsReader(NAME, settings, KEYS)
     table = reader.choice("grade_table", tuple(TABLES), "EN 1993-1-1")
-    fy, fu = reader.quantity("fy", "stress"), reader.quantity("fu", "stress")
+    fy, fu = (
+        reader.quantity("fy", "stress", STEEL_STRENGTH),
+        reader.quantity("fu", "stress", STEEL_STRENGTH),
+    )
     if fy is not None and fu is not None and fu < fy:
         raise SettingsError(
             key="fu", found=f'"{settings["fu"]}"', expected="an ultimate strength not below fy"
         )
-    factors = {key: reader.number(key, value, at_least=1.0) for key, value in RECOMMENDED.items()}
+    factors = {
+        key: reader.number(key, value, at_least=1.0, at_most=GREATEST_FACTOR)
+        for key, value in RECOMMENDED.items()
+    }
     return Options1993(
         grade_name=grade or "steel as set",
         grade=_grade(grade, table, fy, fu),

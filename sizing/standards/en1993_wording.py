@@ -9,7 +9,6 @@ from sizing.standards.en1993_options import EFFECTIVE_WIDTH, RECOMMENDED, Option
 def basis_rows(options: Options1993, material: Material) -> tuple[tuple[str, str], ...]:
     """Return (what, value with source) rows."""
     return (
-        ("Standard", "EN 1993-1-1:2005 with AC:2009"),
         ("Steel", options.grade_name),
         ("Strength", _strength(options)),
         ("Modulus of elasticity", f"{material.E / 1e6:g} N/mm² (3.2.6)"),

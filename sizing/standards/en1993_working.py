@@ -24,6 +24,7 @@ from sizing.standards.en1993_curves import (
     reduction_factor,
     reference_slenderness,
 )
+from sizing.standards.en1993_lengths import AS_GIVEN
 from sizing.standards.en1993_options import Options1993
 from sizing.standards.en1993_rows import Row, RowArrays
 from sizing.standards.en1993_walls import epsilon
@@ -136,6 +137,7 @@ def compression_steps(
     options: Options1993,
     E: float,
     catalogue: Catalogue,
+    members: MemberConditions,
     rows: RowArrays,
     axes: tuple[Axis, Axis, Axis],
     found: Resistances,
@@ -171,9 +173,11 @@ def compression_steps(
         step("γM1", "partial factor", options.gamma_m1, "-", "6.1"),
     ]
     terms = ["N_c,Rd"]
+    by_annex = options.preset is not None and options.preset.places(members.role)[0] != AS_GIVEN
+    source = "Annex BB.1" if by_annex else "brief"
     for mark, index, axis in zip(("in", "out", "v"), (IN, OUT, LEAST), axes, strict=True):
         if axis.applies[0, 0]:
-            steps += _buckling_steps(options, row, rows, axis, mark, CLAUSES[index], area)
+            steps += _buckling_steps(options, rows, axis, (mark, area, source), CLAUSES[index])
             terms.append(f"N_b,{mark}")
     if not note:
         meaning = "compression resistance"
@@ -195,19 +199,22 @@ def _class_steps(row: Row) -> list[Step]:
 
 def _buckling_steps(
     options: Options1993,
-    row: Row,
     rows: RowArrays,
     axis: Axis,
-    mark: str,
+    words: tuple[str, str, str],
     clause: str,
-    area: str,
 ) -> list[Step]:
-    """Return the lines of N_b,Rd about one axis, 6.3.1."""
+    """Return the lines of N_b,Rd about one axis, 6.3.1.
+
+    ``words``: the mark of the axis, the symbol of the area, where the length comes from.
+    """
+    mark, area, source = words
+    row = rows.rows[0]
     relative, alpha = axis.relative[0, 0], axis.alpha[0, 0]
     chi = reduction_factor(relative, alpha)
     ratio = f"(L_{mark} / i_{mark}) / λ1" + (" · √(A_eff / A)" if row.class_4 else "")
     steps = [
-        step(f"L_{mark}", "buckling length", axis.length[0, 0], "m", clause),
+        step(f"L_{mark}", source, axis.length[0, 0], "m", clause, "buckling length"),
         step(f"i_{mark}", "√(I / A)", axis.radius[0, 0], "m", "section", "radius of gyration"),
         step(f"λ̄_{mark}", ratio, axis.plain[0, 0], "-", "6.3.1.3"),
     ]

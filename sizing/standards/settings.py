@@ -5,6 +5,7 @@ from __future__ import annotations
 import difflib
 import math
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 from fnmatch import fnmatchcase
 from typing import Any, Literal
 
@@ -18,6 +19,21 @@ EXAMPLES: dict[Kind, str] = {
     "density": "7850 kg/m3",
     "length": "22 mm",
 }
+
+
+GREATEST_NUMBER = 10**300
+"""Whole numbers beyond do not fit a float."""
+LONGEST_SHOWN = 80
+"""Longer values are cut in messages."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Range:
+    """Bounds in SI units of a quantity that make sense, and how a message says them."""
+
+    least: float
+    greatest: float
+    text: str
 
 
 def nearest(word: str, known: Sequence[str]) -> str | None:
@@ -65,13 +81,17 @@ class SettingsReader:
             )
 
     def choice(self, key: str, choices: Sequence[str], default: str) -> str:
-        """Return one of ``choices`` (case ignored), or ``default`` where not given."""
+        """Return one of ``choices``, or ``default`` where not given.
+
+        Case does not matter, and a whole number counts as its digits (an edition such as 2022).
+        """
         value = self._settings.get(key, default)
-        if isinstance(value, str):
-            for choice in choices:
-                if choice.casefold() == value.strip().casefold():
-                    return choice
-        close = nearest(value, choices) if isinstance(value, str) else None
+        whole = isinstance(value, int) and not isinstance(value, bool)
+        word = _shown(value).strip('" ') if whole or isinstance(value, str) else ""
+        for choice in choices:
+            if choice.casefold() == word.casefold():
+                return choice
+        close = nearest(word, choices) if word else None
         raise SettingsError(
             key=key,
             found=_shown(value),
@@ -103,19 +123,22 @@ class SettingsReader:
         bounds = _bounds_text(at_least, above, at_most)
         if isinstance(value, bool) or not isinstance(value, (int, float)):
             raise SettingsError(key=key, found=_shown(value), expected=f"a number{bounds}")
-        number = float(value)
+        number = float(value) if abs(value) < GREATEST_NUMBER else math.inf
         if not math.isfinite(number) or number < at_least or number <= above or number > at_most:
             raise SettingsError(key=key, found=_shown(value), expected=f"a number{bounds}")
         return number
 
-    def required_number(self, key: str, *, at_least: float) -> float:
+    def required_number(self, key: str, *, at_least: float, at_most: float = math.inf) -> float:
         """Return a plain number that must be given."""
         if not self.has(key):
-            raise self._missing(key, f"a number{_bounds_text(at_least, -math.inf, math.inf)}")
-        return self.number(key, math.nan, at_least=at_least)
+            raise self._missing(key, f"a number{_bounds_text(at_least, -math.inf, at_most)}")
+        return self.number(key, math.nan, at_least=at_least, at_most=at_most)
 
-    def quantity(self, key: str, kind: Kind) -> float | None:
-        """Return a positive quantity in SI units, or None where not given."""
+    def quantity(self, key: str, kind: Kind, usual: Range | None = None) -> float | None:
+        """Return a positive quantity in SI units, or None where not given.
+
+        ``usual`` bounds it: beyond, the unit is a slip of the keyboard (GPa for MPa).
+        """
         if not self.has(key):
             return None
         value = self._settings[key]
@@ -127,11 +150,15 @@ class SettingsReader:
             ) from error
         if quantity <= 0.0:
             raise SettingsError(key=key, found=_shown(value), expected=f"a {kind} above zero")
+        if usual is not None and not usual.least <= quantity <= usual.greatest:
+            raise SettingsError(
+                key=key, found=_shown(value), expected=usual.text, fix="Is the unit right?"
+            )
         return quantity
 
-    def required_quantity(self, key: str, kind: Kind) -> float:
+    def required_quantity(self, key: str, kind: Kind, usual: Range | None = None) -> float:
         """Return a positive quantity in SI units that must be given."""
-        found = self.quantity(key, kind)
+        found = self.quantity(key, kind, usual)
         if found is None:
             raise self._missing(key, f'a {kind} such as "{EXAMPLES[kind]}"')
         return found
@@ -148,7 +175,10 @@ class SettingsReader:
 def _shown(value: object) -> str:
     if isinstance(value, bool):
         return str(value).lower()
-    return f'"{value}"' if isinstance(value, str) else str(value)
+    if isinstance(value, int) and abs(value) >= GREATEST_NUMBER:
+        return "a number of more than 300 digits"
+    text = f'"{value}"' if isinstance(value, str) else str(value)
+    return text if len(text) <= LONGEST_SHOWN else text[: LONGEST_SHOWN - 4] + ' ..."'
 
 
 def _bounds_text(at_least: float, above: float, at_most: float) -> str:

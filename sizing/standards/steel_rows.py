@@ -1,8 +1,17 @@
-"""Which catalogue rows a steel standard may take for steel."""
+"""What a steel standard may take for steel: catalogue rows and strengths."""
 
 from __future__ import annotations
 
 import re
+
+from sizing.standards.settings import Range
+
+STEEL_STRENGTH = Range(
+    least=100e6,
+    greatest=2000e6,
+    text="a strength of structural steel, 100 to 2000 N/mm2 (15 to 290 ksi)",
+)
+"""Softest iron to hardest wire; structural grades lie between 185 and 960 N/mm²."""
 
 STEEL_PRODUCT = re.compile(r"EN\s*10\d{3}|ASTM\s*A\s*\d+|STEEL", re.IGNORECASE)
 

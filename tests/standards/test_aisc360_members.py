@@ -411,12 +411,24 @@ def test_bad_settings_are_refused(grade, chosen, message):
     assert str(caught.value) == message
 
 
+def test_the_edition_may_be_a_number():
+    """TOML writes an edition as a number or as text."""
+    assert make_aisc360("A36", {"edition": 2016}).edition == "2016, LRFD"
+    assert make_aisc360("A36", {"edition": "2016"}).edition == "2016, LRFD"
+    with pytest.raises(SettingsError) as caught:
+        make_aisc360("A36", {"edition": 2010})
+    assert str(caught.value) == (
+        'edition: found 2010; expected one of "2022", "2016". Did you mean "2016"?'
+    )
+
+
 def test_words_for_the_documents():
     """Basis and cautions say what was chosen and what is left out."""
     for chosen in SETTINGS:
         standard = make_aisc360("A36", chosen)
         basis = dict(standard.basis())
-        assert standard.options.method in basis["Standard"]
+        assert basis["Method"] == f"{standard.options.method}, edition 2022"
+        assert standard.edition == f"2022, {standard.options.method}"
         assert all(key and value for key, value in basis.items())
         assert any("Torsional" in line for line in standard.cautions())
     assert "E5(b)" in dict(make_aisc360("A36", SETTINGS[3]).basis())["Single angles"]

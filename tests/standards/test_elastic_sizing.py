@@ -129,7 +129,16 @@ def test_missing_second_moments_leave_a_row_out_of_compression(catalogue_of, mem
         ),
         (
             {"buckling": "euler", "buckling_safety_factor": True},
-            "buckling_safety_factor: found true; expected a number not below 1.",
+            "buckling_safety_factor: found true; expected a number not below 1 and not above 20.",
+        ),
+        (
+            {"E": "210 MPa"},
+            'allowable_tension: found "160 N/mm2"; expected at most E/10. Is the unit right?',
+        ),
+        (
+            {"E": "210 kPa"},
+            'E: found "210 kPa"; expected a modulus of elasticity, 0.1 to 1000 GPa. '
+            "Is the unit right?",
         ),
         (
             {"density": "-2 kg/m3"},

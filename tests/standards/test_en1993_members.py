@@ -290,8 +290,28 @@ def test_an_angle_by_one_leg_in_tension(catalogue_of, members_of):
             "buckling_lengths, chords, webs, web_ends, angle_bolts, bolt_hole, bolt_pitch, "
             'edge_distance. Did you mean "gamma_M1"?',
         ),
-        ("S355", {"gamma_M1": 0.9}, "gamma_M1: found 0.9; expected a number not below 1."),
-        ("S355", {"gamma_M1": "1.1"}, 'gamma_M1: found "1.1"; expected a number not below 1.'),
+        (
+            "S355",
+            {"gamma_M1": 0.9},
+            "gamma_M1: found 0.9; expected a number not below 1 and not above 3.",
+        ),
+        (
+            "S355",
+            {"gamma_M0": 10**400},
+            "gamma_M0: found a number of more than 300 digits; expected a number not below 1 and"
+            " not above 3.",
+        ),
+        (
+            "S355",
+            {"fy": "355 GPa"},
+            'fy: found "355 GPa"; expected a strength of structural steel, 100 to 2000 N/mm2 '
+            "(15 to 290 ksi). Is the unit right?",
+        ),
+        (
+            "S355",
+            {"gamma_M1": "1.1"},
+            'gamma_M1: found "1.1"; expected a number not below 1 and not above 3.',
+        ),
         (
             "S355",
             {"class_4": "efective width"},
@@ -328,7 +348,8 @@ def test_words_for_the_documents():
     for chosen in SETTINGS:
         standard = make_en1993("S355", chosen)
         basis = dict(standard.basis())
-        assert basis["Standard"] == "EN 1993-1-1:2005 with AC:2009"
+        assert basis["Steel"] == "S355"
+        assert standard.edition == "2005, with AC:2009"
         assert all(key and value for key, value in basis.items())
         assert any("Torsional" in line for line in standard.cautions())
     assert "setting" in dict(make_en1993("S355", SETTINGS[1]).basis())["Partial factor gamma_M1"]
