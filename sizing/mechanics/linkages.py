@@ -87,8 +87,15 @@ def _panel_around(geometry: Geometry, a: int, c: int) -> tuple[int, int, int, in
         beside = _neighbours(geometry, b)
         for e in common[i + 1 :]:
             if e not in beside:
-                return (a, b, c, e)
+                return _from_lowest((a, b, c, e))
     return None
+
+
+def _from_lowest(ring: tuple[int, int, int, int]) -> tuple[int, int, int, int]:
+    """Return the ring begun at its lowest node, towards the lower neighbour: one name each."""
+    i = ring.index(min(ring))
+    a, b, c, e = ring[i:] + ring[:i]
+    return (a, b, c, e) if b < e else (a, e, c, b)
 
 
 def _independent_rows(stretch: FloatArray, preferred: BoolArray) -> list[int]:
