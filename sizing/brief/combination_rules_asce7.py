@@ -99,6 +99,7 @@ def read_asce7(
                 expected="kinds to which ASCE 7 gives a factor",
                 fix="Give the case another kind, or write its combinations out.",
             )
+    _caution_levels(findings, {case.kind for case in cases}, edition)
     return ASCE7Settings(
         edition=edition,
         method=method,
@@ -109,6 +110,20 @@ def read_asce7(
         ),
         serviceability=read.choices("serviceability", SERVICEABILITY, ("total",)),
     )
+
+
+def _caution_levels(findings: Findings, kinds: set[ActionKind], edition: str) -> None:
+    """Say at which level wind and snow must be given; the factors differ by edition."""
+    if "wind" in kinds:
+        findings.caution(
+            f"Combination rule ASCE {edition}: wind cases count as strength-level wind (maps of "
+            "7-10 and later); pressures from older maps do not belong here."
+        )
+    if "snow" in kinds:
+        level = "strength-level" if SNOW[edition].leading == 1.0 else "service-level"
+        findings.caution(
+            f"Combination rule ASCE {edition}: snow cases count as {level} snow of that edition."
+        )
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

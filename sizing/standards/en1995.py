@@ -179,7 +179,6 @@ class EN1995:
             f"{duration} {k_mod(self.service_class, duration):g}" for duration in K_MOD_DRY
         )
         return (
-            ("Standard", f"{self.name}: {self.edition}"),
             ("Strength class", f"{grade.name}, {grade.product}, {grade.edition}"),
             (
                 "Strength along the grain",
@@ -202,7 +201,8 @@ class EN1995:
         """Return what this check leaves out, in plain sentences."""
         lines = [
             "Timber: values recommended by EN 1995-1-1 are used; a national annex may differ"
-            " (γM, kmod for the load durations of snow and wind, service class).",
+            " (γM, load durations of snow and wind). A load case without a duration of its own"
+            " counts as permanent, medium (imposed, snow) or short (roof imposed, wind).",
             "Timber: joints are not designed. Tension members count the net section factor of"
             " their group and nothing else; dowelled joints commonly reach only about 60 % of"
             " the member (common practice), so give that factor.",

@@ -166,7 +166,7 @@ class NDS:
         lasting = ", ".join(f"{name} {factor:g}" for name, factor in s.durations.items())
         service = "wet" if s.wet else "dry"
         return (
-            ("Standard", f"{self.edition}, {s.method}"),
+            ("Method", s.method),
             ("Grade", f"{g.name}, {g.product} ({g.source})"),
             (
                 "Reference values",

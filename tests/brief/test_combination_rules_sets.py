@@ -344,3 +344,17 @@ def test_usual_psi_values_are_said():
     findings = Findings("brief.toml")
     read_rule(findings, (), {"rule": "EN 1990", "psi": {"snow": "snow Nordic"}}, SMALL)
     assert findings.cautions == []
+
+
+@pytest.mark.parametrize(
+    ("edition", "level"), [("7-16", "service-level"), ("7-22", "strength-level")]
+)
+def test_the_level_of_wind_and_snow_is_said(edition, level):
+    """Wind is strength-level in both editions, snow in 7-22 only (recalled)."""
+    findings = Findings("brief.toml")
+    read_rule(findings, (), f"ASCE {edition} LRFD", SMALL)
+    assert findings.cautions == [
+        f"Combination rule ASCE {edition}: wind cases count as strength-level wind (maps of 7-10 "
+        "and later); pressures from older maps do not belong here.",
+        f"Combination rule ASCE {edition}: snow cases count as {level} snow of that edition.",
+    ]
