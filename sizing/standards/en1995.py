@@ -254,7 +254,7 @@ def make_en1995(grade: str | None, settings: Mapping[str, Any]) -> EN1995:
 def _strength_class(grade: str | None, edition: str) -> TimberGrade:
     names = grade_names(edition)
     for name in names:
-        if grade is not None and name.casefold() == grade.strip().casefold():
+        if grade is not None and name.casefold() == "".join(grade.split()).casefold():
             return timber_grade(name, edition)
     close = None if grade is None else nearest(grade, names)
     raise SettingsError(

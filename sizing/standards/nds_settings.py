@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from difflib import get_close_matches
 from typing import Any, Literal, cast, get_args
 
 from sizing.brief.model import LoadDuration
@@ -44,6 +45,9 @@ KEYS = (
     "specific_gravity",
     "product",
 )
+SAME_SPECIES = 0.75
+"""Likeness from which a grade is suggested: a slip in a name, never another species."""
+
 LEAST_DURATION_FACTOR, MOST_DURATION_FACTOR = 0.5, 2.0
 """Bounds of CD (0.9 to 2.0 for impact) and of the time effect factor (0.6 to 1.25)."""
 
@@ -96,13 +100,13 @@ def read_grade(grade: str | None, settings: Mapping[str, Any], reader: SettingsR
     found = find_grade(grade) if grade is not None else None
     if found is not None:
         return found
-    close = nearest(grade, names) if grade is not None else None
+    close = get_close_matches(grade or "", names, n=1, cutoff=SAME_SPECIES)
     raise SettingsError(
         key="grade",
         found="nothing" if grade is None else f'"{grade}"',
-        expected=f"one of {', '.join(names)}; or your own values: "
+        expected=f"one of {'; '.join(names)}; or your own values: "
         f"{', '.join(REFERENCE_KEYS)}, specific_gravity and product",
-        fix=f'Did you mean "{close}"?' if close else "",
+        fix=f'Did you mean "{close[0]}"?' if close else "",
     )
 
 
@@ -174,7 +178,7 @@ def _durations(
     factors = dict(usual)
     for duration, value in given.items():
         if duration not in known:
-            close = nearest(duration, known)
+            close = nearest(str(duration), known)
             raise SettingsError(
                 key=f"{key}.{duration}",
                 found="an unknown load duration",

@@ -8,7 +8,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from sizing.brief.combination_rules import expand
-from sizing.brief.combination_rules_durations import EN_DURATIONS, LONGEST_FIRST
+from sizing.brief.combination_rules_durations import EN_DURATIONS, LONGEST_FIRST, US_DURATIONS
 from sizing.brief.model import LoadCase
 
 PSI0 = {"imposed": 0.7, "imposed roof": 0.0, "snow": 0.5, "wind": 0.6, "temperature": 0.6}
@@ -131,6 +131,55 @@ def test_asce7_lrfd_envelope_equals_that_of_every_selection(seed):
     got = [
         sum(f * effect[q] for q, f in c.factors.items())
         for c in expand("ASCE 7-16 LRFD", cases_of(kinds), {})
+        if c.state == "strength"
+    ]
+    assert max(0.0, *got) == pytest.approx(max(every), abs=1e-12)
+    assert min(0.0, *got) == pytest.approx(min(every), abs=1e-12)
+
+
+ASD = [
+    ({"permanent": 1.0}, []),
+    ({"permanent": 1.0, "imposed": 1.0}, []),
+    ({"permanent": 1.0, "imposed roof": 1.0}, []),
+    ({"permanent": 1.0, "snow": 1.0}, []),
+    ({"permanent": 1.0}, [{"imposed": 0.75}, {"imposed roof": 0.75, "snow": 0.75}]),
+    ({"permanent": 1.0, "wind": 0.6}, []),
+    (
+        {"permanent": 1.0, "wind": 0.45},
+        [{"imposed": 0.75}, {"imposed roof": 0.75, "snow": 0.75}],
+    ),
+    ({"permanent": 0.6, "wind": 0.6}, []),
+]
+
+
+@settings(max_examples=100, deadline=None)
+@given(seed=st.integers(0, 2**32 - 1))
+def test_asce7_asd_envelope_over_strength_equals_that_of_every_selection(seed):
+    """The ASD envelope of force over CD is that of every selection, with every load there or not.
+
+    ASCE 7-16 2.4.1; CD of the shortest load of each combination, NDS Table 2.3.2.
+    """
+    kinds = ["permanent", "imposed", "imposed roof", "snow", "snow", "wind", "wind"]
+    factor = dict(zip(LONGEST_FIRST, (0.9, 1.0, 1.15, 1.25, 1.6), strict=True))
+    effect = np.random.default_rng(seed).normal(size=len(kinds))
+    every = [0.0]
+    for fixed, slots in ASD:
+        pick = [dict(fixed)]
+        for slot in slots:
+            pick = [
+                {**p, **extra} for p in pick for extra in [{}, *({k: f} for k, f in slot.items())]
+            ]
+        for factors in pick:
+            lasting = factor[max((US_DURATIONS[k] for k in factors), key=LONGEST_FIRST.index)]
+            totals = [0.0]
+            for kind, f in factors.items():
+                totals = [
+                    t + f * effect[q] for t in totals for q, k in enumerate(kinds) if k == kind
+                ]
+            every += [total / lasting for total in totals]
+    got = [
+        sum(f * effect[q] for q, f in c.factors.items()) / factor[c.duration]
+        for c in expand("ASCE 7-16 ASD", cases_of(kinds), {}, ["NDS"])
         if c.state == "strength"
     ]
     assert max(0.0, *got) == pytest.approx(max(every), abs=1e-12)

@@ -275,6 +275,14 @@ def test_own_reference_values(rectangles, members_of):
     assert "Wood: the reference values are the user's own." in standard.cautions()
 
 
+def test_no_other_species_is_suggested():
+    """An untabulated species, or none at all, gets no near grade of another species."""
+    for name in ("Southern Pine No.2", "No.2", ""):
+        with pytest.raises(SettingsError) as caught:
+            make_nds(name, {})
+        assert caught.value.fix == ""
+
+
 @pytest.mark.parametrize(
     ("said", "meant"),
     [
@@ -313,7 +321,7 @@ KEYS = (
             "Doug Fir-Larch No.2",
             {},
             'grade: found "Doug Fir-Larch No.2"; expected one of '
-            + ", ".join(nds_grades())
+            + "; ".join(nds_grades())
             + "; or your own values: Ft, Fc, E, Emin, specific_gravity and product. "
             'Did you mean "Douglas Fir-Larch No.2"?',
         ),
