@@ -143,7 +143,7 @@ class Elastic:
         steps = [Step(symbol="A", expression="catalogue", value=area, unit="m²", clause="section")]
         if sense == "tension":
             return (*steps, *self._tension_steps(condition, table))
-        return (*steps, *self._compression_steps(one, table))
+        return (*steps, *self._compression_steps(one, condition, table))
 
     def _tension_steps(self, members: MemberConditions, table: ResistanceTable) -> tuple[Step, ...]:
         clause = CLAUSES[TENSION]
@@ -154,7 +154,9 @@ class Elastic:
             _step("N_t", "k_net A σ_t", float(table.tension[0, 0, 0]), "N", clause, "resistance"),
         )
 
-    def _compression_steps(self, catalogue: Catalogue, table: ResistanceTable) -> tuple[Step, ...]:
+    def _compression_steps(
+        self, catalogue: Catalogue, members: MemberConditions, table: ResistanceTable
+    ) -> tuple[Step, ...]:
         clause = CLAUSES[COMPRESSION]
         area = float(catalogue.area[0])
         squash = area * self.allowable_compression
@@ -168,14 +170,17 @@ class Elastic:
                 _step("E", "setting", self.material.E, "Pa", "material"),
                 _step("n", "setting", self.safety_factor, "-", "safety factor on Euler's load"),
             ]
-            for mark, index, slenderness in (
-                ("in", BUCKLING_IN, float(table.slenderness_in[0, 0])),
-                ("out", BUCKLING_OUT, float(table.slenderness_out[0, 0])),
+            for mark, index, length, slenderness in (
+                ("in", BUCKLING_IN, members.in_plane[0], table.slenderness_in[0, 0]),
+                ("out", BUCKLING_OUT, members.out_of_plane[0], table.slenderness_out[0, 0]),
             ):
-                stress = float(euler_stress(self.material.E, np.array(slenderness)))
-                load, text = area * stress / self.safety_factor, CLAUSES[index]
+                if not slenderness > 0.0:
+                    continue  # held throughout, or no second moment of area: nothing to work
+                load = area * float(euler_stress(self.material.E, slenderness)) / self.safety_factor
+                text = CLAUSES[index]
                 steps += [
-                    _step(f"λ_{mark}", _radius_text(catalogue, mark), slenderness, "-", text),
+                    _step(f"L_{mark}", "brief", float(length), "m", text, "buckling length"),
+                    _step(f"λ_{mark}", _ratio(catalogue, mark), float(slenderness), "-", text),
                     _step(f"N_{mark}", f"π² E A / (n λ_{mark}²)", load, "N", text),
                 ]
                 terms.append(f"N_{mark}")
@@ -227,7 +232,7 @@ def _step(
     )
 
 
-def _radius_text(catalogue: Catalogue, mark: str) -> str:
+def _ratio(catalogue: Catalogue, mark: str) -> str:
     return f"L_{mark} / i_least" if catalogue.family[0] == "angle" else f"L_{mark} / i_{mark}"
 
 
