@@ -10,28 +10,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 from sizing.brief import section_geometry as geometry
 from sizing.brief.catalogue_causes import (
     AREA_CAUSES,
     INERTIA_CAUSES,
     LENGTH_CAUSES,
-    MASS_CAUSES,
     likely_cause,
 )
-from sizing.brief.catalogue_rows import Entry, Findings, place_of
-from sizing.brief.catalogue_shapes import formed_by, has_dimensions, has_thin_us_wall, other_make
-
-QUIET = 0.01
-"""Relative deviation, beyond rounding, that is not worth a word: twice that of published tables."""
-
-REFUSED = 0.03
-"""Relative deviation of mass against area, and of i against sqrt(I/A), that is an error.
-
-Within it lie other steel densities in use (7800 to 8000 kg/m³) and rounded walls; a slip of
-neighbouring rows, of hot for cold (5 %) or of a unit lies beyond it.
-"""
+from sizing.brief.catalogue_deviations import QUIET, REFUSED, beyond, outside, rows_text
+from sizing.brief.catalogue_masses import check_masses
+from sizing.brief.catalogue_rows import Checked, Entry, Findings, place_of
+from sizing.brief.catalogue_shapes import formed_by, has_dimensions, other_make
 
 SHAPE_REFUSED = 0.06
 """Relative deviation of the area from the shape's own formula that is an error.
@@ -49,24 +39,10 @@ LEAST_POLAR = 1.0 / (2.0 * math.pi)
 GREATEST_POLAR = 50.0
 """Greatest (I major + I minor)/A² met: a tube of D/t = 100 has 8."""
 
-TIMBER_DENSITIES = (250.0, 1300.0)
-"""kg/m³, lightest softwood to heaviest hardwood class with a margin (EN 338: 290 to 1080)."""
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Checked:
-    """A row with its second moments settled (m⁴) and the density its mass was held against."""
-
-    entry: Entry
-    area: float
-    i_major: float
-    i_minor: float
-    i_least: float
-
 
 def check_rows(rows: Sequence[Checked], density: float | str | None, findings: Findings) -> None:
     """Hold every row against itself; problems and remarks go to ``findings``."""
-    suspects = _check_masses(rows, density, findings)
+    suspects = check_masses(rows, density, findings)
     deviations: dict[str, list[tuple[float, Entry]]] = {}
     for row in rows:
         entry = row.entry
@@ -82,110 +58,9 @@ def check_rows(rows: Sequence[Checked], density: float | str | None, findings: F
     for what, found in deviations.items():
         greatest, entry = max(found, key=lambda item: abs(item[0]))
         findings.remarks.append(
-            f"{what} in {_rows(len(found))}; greatest {100 * greatest:+.1f} % in "
+            f"{what} in {rows_text(len(found))}; greatest {100 * greatest:+.1f} % in "
             f"{place_of(entry.line, entry.designation)}."
         )
-
-
-def _rows(count: int) -> str:
-    return "1 row" if count == 1 else f"{count} rows"
-
-
-def _outside(value: float, low: float, high: float) -> float:
-    """Return how far a value lies outside a range, relative to the nearer end (0 inside)."""
-    if value < low:
-        return value / low - 1.0
-    return value / high - 1.0 if value > high else 0.0
-
-
-def _beyond(deviation: float, rounding: float) -> float:
-    """Take the rounding of the printed figures off a deviation, towards zero."""
-    return math.copysign(max(0.0, abs(deviation) - rounding), deviation)
-
-
-def _check_masses(
-    rows: Sequence[Checked], density: float | str | None, findings: Findings
-) -> set[int]:
-    """Compare mass with area × density; return the lines that were refused."""
-    if isinstance(density, str):
-        return set()
-    refused: list[tuple[Checked, float, float]] = []
-    small: list[tuple[float, Entry]] = []
-    judged = 0
-    for row in rows:
-        mass = row.entry.value("mass")
-        if mass is None:
-            continue
-        judged += 1
-        ratio = mass / row.area
-        unstated = density is None and row.entry.family == "rectangle"
-        if unstated and TIMBER_DENSITIES[0] <= ratio <= TIMBER_DENSITIES[1]:
-            continue
-        low = density if density is not None else geometry.STEEL_DENSITY
-        high = low / geometry.US_WALL_FACTOR if has_thin_us_wall(row.entry) else low
-        rounding = row.entry.rounding("mass") + row.entry.rounding("area")
-        deviation = _beyond(_outside(ratio, low, high), rounding)
-        if abs(deviation) > REFUSED:
-            refused.append((row, ratio, low))
-        elif abs(deviation) > QUIET:
-            small.append((deviation, row.entry))
-    if small:
-        greatest, entry = max(small, key=lambda item: abs(item[0]))
-        findings.remarks.append(
-            f"Mass differs from area × density by more than 1 % in {_rows(len(small))}; greatest "
-            f"{100 * greatest:+.1f} % in {place_of(entry.line, entry.designation)}."
-        )
-    ratios = [ratio for _, ratio, _ in refused]
-    common = judged > 1 and len(refused) == judged and max(ratios) / min(ratios) < 1.0 + REFUSED
-    if common:
-        _refuse_common_mass(refused, findings)
-    else:
-        for row, ratio, expected in refused:
-            _refuse_mass(row, ratio, expected, findings)
-    return {row.entry.line for row, _, _ in refused}
-
-
-def _mass_cause(ratio: float) -> str:
-    """Return the likely slip behind mass/(area × density) = ``ratio``."""
-    cause = likely_cause(1.0 / ratio, AREA_CAUSES)
-    if cause and "decimal" not in cause:
-        return f"The area looks like {cause}."
-    by_mass = likely_cause(ratio, MASS_CAUSES)
-    if by_mass:
-        return f"The mass looks like {by_mass}."
-    if cause:
-        return "A decimal mark has slipped by one place in mass or area."
-    return ""
-
-
-def _refuse_common_mass(refused: list[tuple[Checked, float, float]], findings: Findings) -> None:
-    row, _, expected = refused[0]
-    typical = sorted(ratio for _, ratio, _ in refused)[len(refused) // 2]
-    cause = _mass_cause(typical / expected)
-    advice = (
-        f"{cause} Correct the unit in the column head."
-        if cause
-        else f"If the material is not steel, write: # density = {typical:.0f} kg/m3"
-    )
-    findings.problem(
-        place=f"every row ({place_of(row.entry.line, row.entry.designation)} first), "
-        f"columns {findings.head('area')!r} and {findings.head('mass')!r}",
-        found=f"mass over area of {typical:.4g} kg/m3",
-        expected=f"a density of {expected:.0f} kg/m3",
-        fix=advice,
-    )
-
-
-def _refuse_mass(row: Checked, ratio: float, expected: float, findings: Findings) -> None:
-    mass = row.entry.value("mass") or 0.0
-    findings.in_row(
-        row.entry,
-        "mass",
-        found=f"{mass:.4g} kg/m with an area of {row.area * 1e4:.4g} cm2 ({ratio:.4g} kg/m3)",
-        expected=f"about {row.area * expected:.4g} kg/m (area × {expected:.0f} kg/m3)",
-        fix=_mass_cause(ratio / expected) or "Compare area and mass with the printed table.",
-        kind="mass against area",
-    )
 
 
 def _check_order(row: Checked, findings: Findings) -> bool:
@@ -247,11 +122,11 @@ def _check_radius(
     stated = entry.numbers[r_key].value
     formed = math.sqrt(entry.numbers[i_key].value / row.area)
     rounding = entry.rounding(r_key) + (entry.rounding(i_key) + entry.rounding("area")) / 2.0
-    deviation = _beyond(stated / formed - 1.0, rounding)
+    deviation = beyond(stated / formed - 1.0, rounding)
     if abs(deviation) <= QUIET:
         return
     if abs(deviation) <= REFUSED:
-        name = "Radius of gyration differs from sqrt(I/A) by more than 1 %"
+        name = "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding"
         deviations.setdefault(name, []).append((deviation, entry))
         return
     cause = likely_cause(stated / formed, LENGTH_CAUSES)
@@ -349,7 +224,7 @@ def _check_shape(
         if not entry.numbers.keys() & _own_keys(axis):
             continue
         values = [getattr(properties, f"i_{axis}") for properties in formed]
-        deviation = _beyond(_outside(found, min(values), max(values)), _axis_rounding(entry, axis))
+        deviation = beyond(outside(found, min(values), max(values)), _axis_rounding(entry, axis))
         if abs(deviation) > INERTIA_REFUSED:
             good = False
             ratio = found / values[0]
@@ -365,7 +240,9 @@ def _check_shape(
                 kind=f"inertia {axis}",
             )
         elif abs(deviation) > REFUSED:
-            name = f"I {axis} differs from the formula of the shape by more than 3 %"
+            name = (
+                f"I {axis} differs from the formula of the shape by more than 3 % beyond rounding"
+            )
             deviations.setdefault(name, []).append((deviation, entry))
     return good
 
@@ -399,7 +276,7 @@ def _check_area(
 ) -> bool:
     entry = row.entry
     areas = [properties.area for properties in formed]
-    deviation = _beyond(_outside(row.area, min(areas), max(areas)), entry.rounding("area"))
+    deviation = beyond(outside(row.area, min(areas), max(areas)), entry.rounding("area"))
     other = other_make(entry, row.area) if abs(deviation) > 2.0 * QUIET else ""
     if other:
         findings.in_row(
@@ -426,6 +303,6 @@ def _check_area(
         )
         return False
     if abs(deviation) > 2.0 * QUIET:
-        name = "Area differs from the formula of the shape by more than 2 %"
+        name = "Area differs from the formula of the shape by more than 2 % beyond rounding"
         deviations.setdefault(name, []).append((deviation, entry))
     return True

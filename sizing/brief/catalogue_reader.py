@@ -24,7 +24,7 @@ from pathlib import Path
 
 import numpy as np
 
-from sizing.brief.catalogue_checks import Checked, check_rows
+from sizing.brief.catalogue_checks import check_rows
 from sizing.brief.catalogue_heads import (
     Column,
     Heads,
@@ -34,6 +34,7 @@ from sizing.brief.catalogue_heads import (
 )
 from sizing.brief.catalogue_names import PLAIN_HEADS
 from sizing.brief.catalogue_rows import (
+    Checked,
     Entry,
     Findings,
     key_of,

@@ -57,6 +57,9 @@ PLAUSIBLE_LENGTH = (1e-4, 10.0, "a dimension between 0.1 mm and 10 m")
 PLAUSIBLE_DENSITY = (100.0, 20000.0)
 """kg/m³, from balsa to tungsten alloys."""
 
+COARSEST_ROUNDING = 0.02
+"""Relative rounding that is granted at most: an area printed as 7 may be 6.5, which is no use."""
+
 MOST_PROBLEMS_OF_ONE_KIND = 10
 """After this many the rest of one kind is told in one line that lists their line numbers."""
 
@@ -77,9 +80,24 @@ class Entry:
         return None if number is None else number.value
 
     def rounding(self, key: str) -> float:
-        """Return the relative rounding of the printed number: half its last place."""
+        """Return the relative rounding of the printed number: half its last place.
+
+        It is capped where the number is computed with; a radius beside its second moment is not.
+        """
         number = self.numbers[key]
-        return number.half / abs(number.value)
+        rounding = number.half / abs(number.value)
+        return rounding if key.startswith("i") else min(rounding, COARSEST_ROUNDING)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Checked:
+    """A row with its second moments settled (m⁴) and the density its mass was held against."""
+
+    entry: Entry
+    area: float
+    i_major: float
+    i_minor: float
+    i_least: float
 
 
 @dataclass(kw_only=True, slots=True)

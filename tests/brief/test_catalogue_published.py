@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import csv
+import math
 from collections import defaultdict
 from functools import cache
 from pathlib import Path
@@ -70,7 +71,7 @@ def test_metric_steel_rows_agree_with_published_tables(capsys: pytest.CaptureFix
     with capsys.disabled():
         for name, deviations in greatest.items():
             print(f"\n  {name}: {len(deviations)} rows, {100 * max(deviations):.2f} %", end="")
-    assert sum(len(deviations) for deviations in greatest.values()) == 121
+    assert sum(len(deviations) for deviations in greatest.values()) == 159
 
 
 def test_us_steel_rows_agree_with_published_tables(capsys: pytest.CaptureFixture[str]) -> None:
@@ -125,3 +126,56 @@ def test_lumber_sizes_agree_with_the_nds_supplement() -> None:
             assert (catalogue.width[i], catalogue.depth[i]) == pytest.approx((b, h))
         assert area / INCH**2 == pytest.approx(float(row["area_in2"]), rel=tolerance)
         assert i_major / INCH**4 == pytest.approx(float(row["i_major_in4"]), rel=tolerance)
+
+
+def test_printed_tables_are_accepted_as_a_users_own_list(tmp_path: Path) -> None:
+    """Published rows with their three figures, typed into a list with dimensions, raise nothing.
+
+    The greatest deviation of a printed row from the formulas stays below what is worth a remark.
+    """
+    lines = [
+        "designation,family,product,area [cm2],mass [kg/m],I major [cm4],I minor [cm4],"
+        "I least [cm4],depth [mm],width [mm],thickness [mm],flange [mm],root radius [mm]"
+    ]
+    for row in published("metric_steel.csv"):
+        catalogue = shipped(row["catalogue"])
+        i = catalogue.designation.index(row["designation"])
+        name = f"{row['designation']} {row['catalogue'][:4]} {len(lines)}"
+        sizes = [
+            "" if math.isnan(value) else f"{value * 1e3:g}"
+            for value in (
+                float(catalogue.depth[i]), float(catalogue.width[i]),
+                float(catalogue.thickness[i]), float(catalogue.flange[i]),
+                float(catalogue.root_radius[i]),
+            )
+        ]  # fmt: skip
+        least = row["i_least_cm4"]
+        if catalogue.family[i] == "angle" and not least:
+            continue
+        cells = [
+            name, catalogue.family[i], catalogue.product[i], row["area_cm2"], row["mass_kg_m"],
+            row["i_major_cm4"], row["i_minor_cm4"], least, *sizes,
+        ]  # fmt: skip
+        lines.append(",".join(cells))
+    (tmp_path / "own.csv").write_text("\n".join(lines), encoding="utf-8")
+    own = read_catalogue("own.csv", tmp_path)
+    assert len(own) == 158
+    assert own.remarks == ()
+
+
+def test_printed_us_tables_are_accepted_as_a_users_own_list(tmp_path: Path) -> None:
+    """AISC rows as printed, pipe areas that do not follow from the wall included, are read."""
+    lines = ["designation,product,area [in2],weight [lb/ft],I [in4],r [in],r least [in]"]
+    for row in published("us_steel.csv"):
+        product = {"hss-square": "ASTM A500", "pipe": "ASTM A53"}.get(row["catalogue"], "ASTM A6")
+        least = row["r_least_in"]
+        cells = [row["designation"], product, row["area_in2"], row["weight_lb_ft"]]
+        lines.append(",".join([*cells, row["i_major_in4"], row["r_major_in"], least]))
+    text = "\n".join(lines).replace("r [in]", "radius of gyration [in]")
+    (tmp_path / "own.csv").write_text(text.replace("r least", "i least"), encoding="utf-8")
+    own = read_catalogue("own.csv", tmp_path)
+    assert len(own) == 21
+    assert [remark for remark in own.remarks if "Family" not in remark] == [
+        "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding in 1 row; greatest +1.0 % in "
+        "line 14 (Pipe 10 Std)."
+    ]
