@@ -26,7 +26,7 @@ _HOME = {
     "SolverError": "sizing.errors",
     "UnstableTrussError": "sizing.errors",
     "check_job": "sizing.job",
-    "formulate": "sizing.formulate",
+    "formulate": "sizing.formulation",
     "pick": "sizing.selection.pick",
     "pick_job": "sizing.job",
     "read_brief": "sizing.brief.toml_reader",

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from sizing.brief.model import Brief, Combination, LoadDuration, Option
 from sizing.brief.sections import Catalogue
 from sizing.errors import DisagreementError, SolverError
-from sizing.formulate import GRAVITY, limit_factors, mass_per_metre, member_conditions
+from sizing.formulation import GRAVITY, limit_factors, mass_per_metre, member_conditions
 from sizing.mechanics.analysis import Analysis, analyse
 from sizing.mechanics.brief_loads import geometry_of
 from sizing.results import DeflectionResult, Extreme, MemberResult

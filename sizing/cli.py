@@ -60,6 +60,13 @@ OptionNames = Annotated[
     list[str] | None,
     typer.Option("--option", metavar="NAME", help="Only this option of the brief (repeatable)."),
 ]
+TimeLimit = Annotated[
+    float, typer.Option("--time-limit", metavar="SECONDS", min=0.1, help="Per option.")
+]
+Gap = Annotated[
+    float,
+    typer.Option("--gap", metavar="PERCENT", min=0.0, help="Stop when the gap is this small."),
+]
 
 
 @app.command("pick")
@@ -67,13 +74,8 @@ def pick_command(
     brief: BriefPath,
     out: OutFolder = None,
     option: OptionNames = None,
-    time_limit: Annotated[
-        float, typer.Option("--time-limit", metavar="SECONDS", min=0.1, help="Per option.")
-    ] = 600.0,
-    gap: Annotated[
-        float,
-        typer.Option("--gap", metavar="PERCENT", min=0.0, help="Stop when the gap is this small."),
-    ] = 0.0,
+    time_limit: TimeLimit = 600.0,
+    gap: Gap = 0.0,
 ) -> None:
     """Pick the lightest adequate section for every group and issue the documents."""
     from sizing.brief.toml_reader import read_brief
@@ -87,6 +89,39 @@ def pick_command(
             limits=lambda name: _limits(name, time_limit, gap / 100.0, stop),
         )
     _issue(result, out)
+
+
+@app.command("compare")
+def compare_command(
+    brief: BriefPath,
+    out: OutFolder = None,
+    time_limit: TimeLimit = 600.0,
+    gap: Gap = 0.0,
+) -> None:
+    """Pick every option of the brief and set the answers side by side."""
+    from sizing.brief.toml_reader import read_brief
+    from sizing.documents.screen import print_comparison
+    from sizing.job import compare_job
+
+    asked = read_brief(brief)
+    with _stop_on_interrupt() as stop:
+        result = compare_job(
+            asked, limits=lambda name: _limits(name, time_limit, gap / 100.0, stop)
+        )
+    written = _write(result, out)
+    print_comparison(result)
+    _tell(written)
+
+
+@app.command("catalogue")
+def catalogue_command(
+    file: Annotated[str, typer.Argument(metavar="FILE", help="A CSV file or a shipped name.")],
+) -> None:
+    """Check a section catalogue and print what was understood of it."""
+    from sizing.brief.catalogue_reader import read_catalogue
+    from sizing.documents.screen import print_catalogue
+
+    print_catalogue(read_catalogue(file, Path.cwd()))
 
 
 @app.command("check")
@@ -118,12 +153,20 @@ def check_command(
 def _issue(result: JobResult, out: Path | None) -> None:
     from sizing.documents.screen import print_result
 
-    written = []
-    if out is not None:
-        from sizing.documents.issue import write_documents
-
-        written = list(write_documents(result, out))
+    written = _write(result, out)
     print_result(result)
+    _tell(written)
+
+
+def _write(result: JobResult, out: Path | None) -> tuple[Path, ...]:
+    if out is None:
+        return ()
+    from sizing.documents.issue import write_documents
+
+    return write_documents(result, out)
+
+
+def _tell(written: tuple[Path, ...]) -> None:
     for path in written:
         typer.echo(f"written: {path}")
 

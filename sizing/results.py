@@ -180,7 +180,9 @@ class OptionResult:
     """The complete, checked answer of one option.
 
     ``status`` is the pick's (``proven``, ``within gap``, ``stopped``) or ``checked`` for given
-    sections. ``objective_text`` names what was minimised. ``displacements`` are
+    sections. ``objective_text`` names what was minimised. ``cost`` (in ``currency``), ``carbon``
+    (kgCO2e, modules A1 to A3) and ``biogenic`` (kgCO2e, negative) are None where the brief gives
+    no rates; ``volume`` of all members is in m³. ``displacements`` are
     (combination, node, component) in m as nested tuples in brief order.
     """
 
@@ -213,6 +215,16 @@ class OptionResult:
     left_out: tuple[tuple[str, str], ...]
     basis: tuple[tuple[str, str], ...]
     cautions: tuple[str, ...]
+    cost: float | None = None
+    currency: str = ""
+    carbon: float | None = None
+    biogenic: float | None = None
+    volume: float = 0.0
+
+    @property
+    def surface(self) -> float:
+        """Outer surface of all members in m²; NaN when the catalogue does not tell it."""
+        return sum(line.surface for line in self.sections)
 
     @property
     def utilisation(self) -> float:
@@ -223,8 +235,12 @@ class OptionResult:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class JobResult:
-    """The brief, the version of the tool and one result per option."""
+    """The brief, the version of the tool and one result per option.
+
+    ``without_answer``: (option, reason) for options of a comparison that no section fits.
+    """
 
     brief: Brief
     version: str
     options: tuple[OptionResult, ...]
+    without_answer: tuple[tuple[str, str], ...] = ()

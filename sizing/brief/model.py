@@ -193,11 +193,42 @@ class DeflectionLimit:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class CostRates:
+    """The user's rates in ``currency``: per kg of section, per m of member, per piece.
+
+    ``catalogue_price``: the catalogue's own price per m is added. ``source`` and ``date`` say
+    where the rates come from.
+    """
+
+    currency: str
+    per_kg: float = 0.0
+    per_metre: float = 0.0
+    per_piece: float = 0.0
+    catalogue_price: bool = False
+    source: str
+    date: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class CarbonFactors:
+    """The user's embodied carbon factors in kgCO2e per kg: modules A1 to A3 of EN 15804.
+
+    ``biogenic``: carbon stored in the material (negative), never netted with ``a1_a3``.
+    """
+
+    a1_a3: float
+    biogenic: float | None = None
+    source: str
+    date: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class Option:
     """One complete answer: a standard, a grade, a catalogue, and the standard's own settings.
 
     ``catalogue`` is a shipped name or a path relative to the brief. ``settings`` holds the
     remaining keys of the option's table, not yet interpreted; the standard validates them.
+    ``cost`` and ``carbon`` are None where the brief gives no rates: the answer is then unpriced.
     """
 
     name: str
@@ -206,6 +237,8 @@ class Option:
     catalogue: str
     slenderness: SlendernessLimits = SlendernessLimits()
     connection_allowance: float = 0.0
+    cost: CostRates | None = None
+    carbon: CarbonFactors | None = None
     settings: Mapping[str, Any] = field(default_factory=dict)
 
 

@@ -7,7 +7,8 @@ from typing import Any
 
 from sizing.brief.findings import Findings, KeyPath, Quantities, quoted
 from sizing.brief.limits import read_slenderness
-from sizing.brief.model import Option, SlendernessLimits
+from sizing.brief.model import Objective, Option, SlendernessLimits
+from sizing.brief.rates import read_carbon, read_cost
 from sizing.brief.raw_tables import RawBrief, RawOption, read_entry
 
 GREATEST_ALLOWANCE = 0.5
@@ -79,8 +80,27 @@ def _read(
         catalogue=entry.catalogue.strip(),
         slenderness=slenderness,
         connection_allowance=allowance or 0.0,
+        cost=read_cost((*path, "cost"), entry.cost, findings, quantities),
+        carbon=read_carbon((*path, "carbon"), entry.carbon, findings, quantities),
         settings=settings,
     )
+
+
+def require_rates(options: tuple[Option, ...], minimise: Objective, findings: Findings) -> None:
+    """Record every option that lacks the rates for what the brief minimises."""
+    wanted = {
+        "cost": '[options.NAME.cost] with currency, source, date and per_kg, or minimise = "mass"',
+        "carbon": '[options.NAME.carbon] with a1_a3, source and date, or minimise = "mass"',
+    }
+    if minimise == "mass":
+        return
+    for option in options:
+        if getattr(option, minimise) is None:
+            findings.add(
+                ("options", option.name),
+                found=f"no {minimise} rates while {minimise} is minimised",
+                expected=wanted[minimise].replace("NAME", option.name),
+            )
 
 
 def _check_settings(path: KeyPath, settings: dict[str, Any], findings: Findings) -> None:

@@ -167,12 +167,44 @@ class RawOption(RawTable):
         None, description="{ compression = 180, tension = 300 }"
     )
     connection_allowance: Any = 0.0
+    cost: dict[str, Any] | None = Field(
+        None, description='{ currency = "EUR", per_kg = 2.1, source = "...", date = "2026-10" }'
+    )
+    carbon: dict[str, Any] | None = Field(
+        None, description='{ a1_a3 = 1.13, source = "...", date = "2026-10" }'
+    )
+
+
+class RawCost(RawTable):
+    """``cost`` of an option."""
+
+    REQUIRED = ("currency", "source", "date")
+    currency: str = Field("", description='a currency, such as "EUR"')
+    per_kg: Any = None
+    per_lb: Any = None
+    per_metre: Any = None
+    per_foot: Any = None
+    per_piece: Any = None
+    catalogue_price: bool = Field(False, description="true or false")
+    source: str = Field("", description="where the rates come from, as text")
+    date: str = Field("", description='the date of the rates as text, such as "2026-10"')
+
+
+class RawCarbon(RawTable):
+    """``carbon`` of an option."""
+
+    REQUIRED = ("a1_a3", "source", "date")
+    a1_a3: Any = None
+    biogenic: Any = None
+    source: str = Field("", description="where the factors come from, as text")
+    date: str = Field("", description='the date of the factors as text, such as "2026-10"')
 
 
 Table = TypeVar("Table", bound=RawTable)
 
 DESCRIBED_HERE: dict[str, str] = {
     "nodes": 'a list of nodes, such as ["A4"], or "all"',
+    "a1_a3": "embodied carbon of modules A1 to A3 in kgCO2e per kg, such as 1.13",
     "limit": 'a length, such as "25 mm", or a part of the span, such as "span/250"',
 }
 """What belongs in keys that may hold more than one type, for the message when they are missing."""

@@ -13,7 +13,7 @@ from sizing.brief.groups_and_members import read_groups
 from sizing.brief.load_cases import read_cases
 from sizing.brief.model import Brief, SourceFile, Units
 from sizing.brief.nodes_and_supports import read_nodes, read_supports
-from sizing.brief.options import read_options
+from sizing.brief.options import read_options, require_rates
 from sizing.brief.raw_tables import RawBrief, RawUnits, read_entry
 from sizing.brief.toml_file import load_toml
 from sizing.brief.truss_checks import check_truss
@@ -56,6 +56,7 @@ def brief_from_tables(
     check_truss(nodes, groups, findings)
     cases = read_cases(raw.cases, nodes, findings, quantities, present=present("cases"))
     options = read_options(raw.options, findings, quantities, present=present("options"))
+    require_rates(options, raw.minimise, findings)
     standards = [option.standard for option in options]
     combinations = read_combinations(
         raw, cases, standards, findings, quantities, present=present("combinations")
