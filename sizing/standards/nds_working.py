@@ -37,10 +37,14 @@ def compression_steps(
     area, grade = float(one.area[0]), values.grade
     adjusted = values.adjusted(one, duration)
     strength = _strength_steps(values, one, duration, "Fc")
+    stiffness = "E_min C_M C_t C_i"
+    if values.settings.method == "LRFD":
+        stiffness += f" K_F φ_s, K_F = {K_F['Emin']:g}, φ_s = {PHI['Emin']:g}"
     steps = [
         step("A", "catalogue", area, "m²", "section"),
         *strength,
-        step("E_min'", "E_min, adjusted", adjusted.Emin, "Pa", TABLE, grade.name),
+        step("E_min", grade.source, grade.Emin, "Pa", "Supplement", grade.name),
+        step("E_min'", stiffness, adjusted.Emin, "Pa", TABLE),
         step("c", grade.product, C_COLUMN[grade.product], "-", "3.7.1.5"),
     ]
     apart = slenderness_in_and_out(one, members)
