@@ -240,9 +240,7 @@ def _check_shape(
                 kind=f"inertia {axis}",
             )
         elif abs(deviation) > REFUSED:
-            name = (
-                f"I {axis} differs from the formula of the shape by more than 3 % beyond rounding"
-            )
+            name = f"I {axis} differs from the formula by more than 3 % beyond rounding"
             deviations.setdefault(name, []).append((deviation, entry))
     return good
 
@@ -303,6 +301,6 @@ def _check_area(
         )
         return False
     if abs(deviation) > 2.0 * QUIET:
-        name = "Area differs from the formula of the shape by more than 2 % beyond rounding"
+        name = "Area differs from the formula by more than 2 % beyond rounding"
         deviations.setdefault(name, []).append((deviation, entry))
     return True

@@ -44,7 +44,8 @@ def check_masses(
         greatest, entry = max(small, key=lambda item: abs(item[0]))
         findings.remarks.append(
             f"Mass differs from area × density by more than 1 % beyond rounding in "
-            f"{rows_text(len(small))}; greatest {100 * greatest:+.1f} % in {place_of(entry.line, entry.designation)}."
+            f"{rows_text(len(small))}; greatest {100 * greatest:+.1f} % in "
+            f"{place_of(entry.line, entry.designation)}."
         )
     ratios = [ratio for _, ratio, _ in refused]
     common = judged > 1 and len(refused) == judged and max(ratios) / min(ratios) < 1.0 + REFUSED

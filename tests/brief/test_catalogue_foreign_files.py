@@ -164,10 +164,10 @@ def test_small_deviations_are_remarks_and_name_the_row(tmp_path: Path) -> None:
         "SHS 100x100x5,SHS,18.73,15.00,279.4,3.950\nSHS 80x80x5,SHS,14.73,11.56,136.6,3.045\n"
     )
     assert read(tmp_path, text).remarks == (
-        "Mass differs from area × density by more than 1 % beyond rounding in 1 row; greatest +2.0 % in line 2 "
-        "(SHS 100x100x5).",
-        "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding in 1 row; greatest +2.2 % in "
-        "line 2 (SHS 100x100x5).",
+        "Mass differs from area × density by more than 1 % beyond rounding in 1 row; greatest "
+        "+2.0 % in line 2 (SHS 100x100x5).",
+        "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding in 1 row; "
+        "greatest +2.2 % in line 2 (SHS 100x100x5).",
     )
 
 

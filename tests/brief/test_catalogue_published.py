@@ -176,6 +176,6 @@ def test_printed_us_tables_are_accepted_as_a_users_own_list(tmp_path: Path) -> N
     own = read_catalogue("own.csv", tmp_path)
     assert len(own) == 21
     assert [remark for remark in own.remarks if "Family" not in remark] == [
-        "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding in 1 row; greatest +1.0 % in "
-        "line 14 (Pipe 10 Std)."
+        "Radius of gyration differs from sqrt(I/A) by more than 1 % beyond rounding in 1 row; "
+        "greatest +1.0 % in line 14 (Pipe 10 Std)."
     ]
