@@ -41,8 +41,9 @@ class Marks:
     """How the numbers of a file are written.
 
     ``decimal`` is the decimal mark; ``settled``: it is beyond doubt, being declared, forced by
-    the delimiter or shown by some number. ``thousands``: the other mark may group thousands,
-    because the decimal mark is declared or some number shows it beyond doubt.
+    the delimiter or shown by some number. ``thousands``: the other mark can only group
+    thousands, because the decimal mark is declared or shown. A comma in a file separated by
+    commas needs a number that shows it, ``1,234.5``.
     """
 
     decimal: Decimal
@@ -84,7 +85,9 @@ def marks_of(cells: Iterable[str], *, delimiter: str, declared: Decimal | None) 
     return Marks(
         decimal=decimal,
         settled=bool(shown) or declared is not None or delimiter == ",",
-        thousands=declared is not None or any(other in text for text in shown),
+        thousands=declared is not None
+        or (bool(shown) and delimiter != ",")
+        or any(other in text for text in shown),
     )
 
 

@@ -66,6 +66,9 @@ SHORT_FORMS = {
 """What somebody may write for a shipped catalogue, for the hint only."""
 
 
+_SAME_SIGNS = str.maketrans({" ": None, "×": "x", "*": "x", ",": "."})
+
+
 def shipped_folder() -> Path:
     """Return the folder of the shipped catalogues, in a source tree and in an installed package."""
     package = Path(__file__).resolve().parents[1]
@@ -224,7 +227,7 @@ def _require_columns(
 def _refuse_twice(entries: Sequence[Entry], findings: Findings) -> None:
     seen: dict[str, Entry] = {}
     for entry in entries:
-        key = entry.designation.casefold().replace(" ", "")
+        key = entry.designation.casefold().translate(_SAME_SIGNS)
         first = seen.setdefault(key, entry)
         if first is not entry:
             findings.problem(

@@ -151,6 +151,12 @@ BROKEN: dict[str, tuple[str, str]] = {
         "designation once. It stands in line 2 already; remove one or tell them apart by their "
         "designation.",
     ),
+    "a designation twice in other letters": (
+        GOOD + SHS100.replace("SHS 100x100x5", "shs 100 × 100 × 5"),
+        "list.csv: line 4, column 'designation': found 'shs 100 × 100 × 5' again; expected each "
+        "designation once. It stands in line 2 already; remove one or tell them apart by their "
+        "designation.",
+    ),
     "a negative area with a typographic minus": (
         GOOD.replace(",18.7,", ",−18.7,"),
         PLACE + "'area [cm2]': found '−18.7'; expected a number above zero.",

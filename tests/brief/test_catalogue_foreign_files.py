@@ -97,6 +97,14 @@ def test_table_with_title_and_unit_row_reads(tmp_path: Path) -> None:
     )
 
 
+def test_thousands_points_beside_decimal_commas_read(tmp_path: Path) -> None:
+    """Beside 28,5 a point cannot be the decimal mark, so 1.943 is 1943; the reader hears it."""
+    text = "Profil;A [cm²];G [kg/m];Iy [cm⁴];Iz [cm⁴]\nIPE 200;28,5;22,4;1.943;142\n"
+    catalogue = read(tmp_path, text)
+    assert catalogue.i_major[0] == pytest.approx(1943e-8)
+    assert "Thousands are grouped by a mark, as in 1.943." in catalogue.remarks
+
+
 def test_us_angle_table_reads_x_y_z(tmp_path: Path) -> None:
     """x-x major, y-y minor, z-z least; inch units (AISC Manual Table 1-7, from memory)."""
     text = (

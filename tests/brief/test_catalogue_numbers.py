@@ -53,11 +53,13 @@ def test_what_is_not_one_certain_point_number(cell: str) -> None:
 def test_evidence_settles_the_decimal_mark() -> None:
     """One number that can be read in one way only decides for the file."""
     assert marks_of(["1,234", "12"], delimiter=";", declared=None).settled is False
-    assert marks_of(["1,234", "0,5"], delimiter=";", declared=None) == COMMA
+    shown = Marks(decimal="comma", settled=True, thousands=True)
+    assert marks_of(["1,234", "0,5"], delimiter=";", declared=None) == shown
+    assert read_number("1.943", shown).value == 1943
     assert marks_of(["1,234", "1,234.5"], delimiter=";", declared=None) == Marks(
         decimal="point", settled=True, thousands=True
     )
-    assert marks_of(["1.234"], delimiter=",", declared=None) == POINT
+    assert marks_of(["1.234", "0.5"], delimiter=",", declared=None) == POINT
     assert marks_of([], delimiter=";", declared="comma") == Marks(
         decimal="comma", settled=True, thousands=True
     )
