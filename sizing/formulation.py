@@ -70,6 +70,7 @@ def formulate(brief: Brief, option: Option) -> Formulation:
     require_stable(geometry, [node.name for node in brief.nodes])
     catalogue = read_catalogue(option.catalogue, brief.source.path.parent)
     standard = standard_of(brief, option)
+    _require_one_method(brief, option, standard)
     mass = mass_per_metre(catalogue, standard)
     conditions = member_conditions(brief, option)
     strength = brief.combinations_of("strength")
@@ -138,6 +139,31 @@ def standard_of(brief: Brief, option: Option) -> Standard:
         ) from error
 
 
+def _require_one_method(brief: Brief, option: Option, standard: Standard) -> None:
+    """Refuse factored (LRFD) combinations with allowable (ASD) resistances and the reverse."""
+    method = dict(standard.basis()).get("Method")
+    other = {"LRFD": "ASD", "ASD": "LRFD"}.get(method or "")
+    if other is None:
+        return
+    mixed = [
+        combination.name
+        for combination in brief.combinations
+        if combination.state == "strength" and other in combination.origin.split()
+    ]
+    if mixed:
+        raise InputError(
+            [
+                Problem(
+                    file=brief.source.name,
+                    place=f"options.{option.name}.method",
+                    found=f"{method} resistances with {other} combinations ({mixed[0]} and others)",
+                    expected="resistances and combinations of one method",
+                    fix=f'Write method = "{other}", or take the {method} combination rule.',
+                )
+            ]
+        )
+
+
 def mass_per_metre(catalogue: Catalogue, standard: Standard) -> FloatArray:
     """Return kg per m (s,): the catalogue's, or area × density of the grade where it has none."""
     return np.where(
@@ -169,7 +195,8 @@ def member_conditions(brief: Brief, option: Option) -> MemberConditions:
         in_plane=buckling[:, 0],
         out_of_plane=buckling[:, 1],
         depth_in_plane=np.array([group.depth_in_plane for group in groups]),
-        net_factor=np.array([group.net_section_factor for group in groups]),
+        net_factor=np.array([group.net_section_factor for group in groups])
+        * option.net_section_factor,
         max_slenderness_compression=_limits([s.compression for s in limits]),
         max_slenderness_tension=_limits([s.tension for s in limits]),
         role=tuple(group.name for group in groups),

@@ -228,7 +228,9 @@ class Option:
 
     ``catalogue`` is a shipped name or a path relative to the brief. ``settings`` holds the
     remaining keys of the option's table, not yet interpreted; the standard validates them.
-    ``cost`` and ``carbon`` are None where the brief gives no rates: the answer is then unpriced.
+    ``net_section_factor`` multiplies that of every group (what the joints of this material leave
+    of a member in tension). ``cost`` and ``carbon`` are None where the brief gives no rates: the
+    answer is then unpriced.
     """
 
     name: str
@@ -237,6 +239,7 @@ class Option:
     catalogue: str
     slenderness: SlendernessLimits = SlendernessLimits()
     connection_allowance: float = 0.0
+    net_section_factor: float = 1.0
     cost: CostRates | None = None
     carbon: CarbonFactors | None = None
     settings: Mapping[str, Any] = field(default_factory=dict)

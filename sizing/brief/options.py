@@ -6,7 +6,7 @@ import re
 from typing import Any
 
 from sizing.brief.findings import Findings, KeyPath, Quantities, quoted
-from sizing.brief.limits import read_slenderness
+from sizing.brief.limits import read_fraction, read_slenderness
 from sizing.brief.model import Objective, Option, SlendernessLimits
 from sizing.brief.rates import read_carbon, read_cost
 from sizing.brief.raw_tables import RawBrief, RawOption, read_entry
@@ -80,6 +80,9 @@ def _read(
         catalogue=entry.catalogue.strip(),
         slenderness=slenderness,
         connection_allowance=allowance or 0.0,
+        net_section_factor=read_fraction(
+            (*path, "net_section_factor"), entry.net_section_factor, findings, quantities
+        ),
         cost=read_cost((*path, "cost"), entry.cost, findings, quantities),
         carbon=read_carbon((*path, "carbon"), entry.carbon, findings, quantities),
         settings=settings,

@@ -167,6 +167,7 @@ class RawOption(RawTable):
         None, description="{ compression = 180, tension = 300 }"
     )
     connection_allowance: Any = 0.0
+    net_section_factor: Any = 1.0
     cost: dict[str, Any] | None = Field(
         None, description='{ currency = "EUR", per_kg = 2.1, source = "...", date = "2026-10" }'
     )
