@@ -168,7 +168,11 @@ def _legend(
         f"Centre lines, true to scale; dimensions in {units.length.unit}; nodes are system "
         "points. Supports: triangle on hatching is held in both directions, triangle on a line "
         "slides along it; letters name the axes held."
-        + (" Members behind one another share a line in a view." if space else ""),
+        + (
+            " Members behind one another share a line in a view: the general view names all."
+            if space
+            else ""
+        ),
         CLOSING_CAUTION,
         f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256[:12]}; "
         f"sizing {job.version}",

@@ -204,11 +204,26 @@ def basis_table(job: JobResult, option: OptionResult, units: ShownUnits) -> Tabl
             "not in the masses listed",
         ),
     ]
+    stated = tuple(_plain_item(what) for what, _ in option.basis)
+    rows = [row for row in rows if not any(s.startswith(_plain_item(str(row[0]))) for s in stated)]
     rows += [(visible(what), visible(value)) for what, value in option.basis]
-    rows += [
-        ("Section left out", f"{visible(name)}: {visible(why)}") for name, why in option.left_out
-    ]
+    rows += _left_out(option)
     return Table(name="Basis", title="Basis of design", columns=ITEM_COLUMNS, rows=tuple(rows))
+
+
+def _plain_item(item: str) -> str:
+    return item.replace(",", "").casefold()
+
+
+def _left_out(option: OptionResult) -> list[tuple[Cell, ...]]:
+    """Return the sections that the standard could not use, one row per reason."""
+    by_reason: dict[str, list[str]] = {}
+    for name, why in option.left_out:
+        by_reason.setdefault(why, []).append(visible(name))
+    return [
+        ("Sections left out", f"{', '.join(dict.fromkeys(names))}: {visible(why)}")
+        for why, names in by_reason.items()
+    ]
 
 
 def cautions_table(option: OptionResult) -> Table:

@@ -200,7 +200,7 @@ def groups_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Table
         Column(head="It fails in", style="prose"),
         Column(head="at"),
         Column(head="in combination"),
-        Column(head="with utilisation", style="ratio"),
+        Column(head="with utilisation", style="number", places=2),
     )  # fmt: skip
     rows = tuple(
         (
@@ -248,7 +248,7 @@ def _why_not(entry: LighterResult | None, scale: float) -> tuple[Cell, ...]:
         "nothing: it passes" if entry.fails == "nothing" else visible(entry.fails),
         visible(entry.where),
         visible(entry.combination),
-        ratio(entry.utilisation),
+        entry.utilisation if math.isfinite(entry.utilisation) else "not usable",
     )
 
 

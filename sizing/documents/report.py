@@ -103,8 +103,10 @@ def _cell_class(cell: Cell, column: Column) -> str:
     alarm = cell in ALARMS or (
         column.style == "ratio" and isinstance(cell, float) and not met(cell)
     )
-    short = isinstance(cell, str) and len(cell) <= SHORT_TEXT and not column.numeric
-    return f"{'n' if column.numeric else 't'}{' s' if short else ''}{' alarm' if alarm else ''}"
+    kind = "n" if column.numeric else "t"
+    if kind == "t" and isinstance(cell, str):
+        kind = "t s" if len(cell) <= SHORT_TEXT else "t p"
+    return f"{kind} alarm" if alarm else kind
 
 
 def _css_text(words: str) -> str:

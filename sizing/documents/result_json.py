@@ -9,12 +9,9 @@ square metre; ratios have no unit; tension positive)::
     nodes            node name -> {position_m, held}
     options          option name -> one answer, see below
 
-One answer: ``status``, ``adequate``, ``mass_kg``, ``objective``, ``bound``, ``bound_kg``, ``gap``,
-``analyses``, ``seconds``, ``method``, ``standard``, ``grade``, ``catalogue``, ``sections`` (group
--> designation), ``groups``, ``members``, ``take_off``, ``lighter``, ``combinations``,
-``deflections``, ``reactions``, ``displacements_m``, ``worked``, ``left_out``, ``basis``,
-``cautions``. :func:`field_descriptions` describes each key. A number that does not exist (no
-bound, no limit, a utilisation on no resistance) is ``null``; ``adequate`` then tells.
+:func:`field_descriptions` describes each key of the file and of one answer. A number that does
+not exist (no bound, no limit, a utilisation on no resistance) is ``null``; ``adequate`` then
+tells.
 """
 
 from __future__ import annotations
@@ -47,11 +44,20 @@ _FIELDS = (
     ("options.*.adequate", "true when every check of members and deflections is met"),
     ("options.*.mass_kg", "mass of all members, bare sections over system lengths"),
     ("options.*.objective", "total of what was minimised (kg, currency, or kg CO2e)"),
+    ("options.*.minimised", "what objective and bound measure: mass, cost or carbon"),
     ("options.*.bound", "valid lower bound on objective, null where none"),
     ("options.*.bound_kg", "the same where mass was minimised, else null"),
     ("options.*.gap", "(objective - bound) / objective, 0 when proven, null where unknown"),
     ("options.*.analyses", "exact structural analyses that the search took"),
     ("options.*.seconds", "time that the search took; the only entry that varies between runs"),
+    ("options.*.method", "what found and bounded the answer, in words"),
+    ("options.*.standard", "name and edition of the standard"),
+    ("options.*.grade", "grade or strength class"),
+    ("options.*.catalogue", "name, file and SHA-256 of the section catalogue"),
+    (
+        "options.*.connection_allowance",
+        "share added to member weight in the loads; not in the masses of this file",
+    ),
     ("options.*.utilisation", "greatest utilisation over members and deflection limits"),
     ("options.*.sections", "by group name: designation of the chosen section"),
     (

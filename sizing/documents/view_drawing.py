@@ -19,7 +19,8 @@ COMPRESSION = ("#c2500a", "8 3.5")
 NONE = ("#7a8690", "1.5 3")
 """Ink and dash per governing sense; blue and vermilion stay apart for colour-blind readers."""
 
-MARGIN_LEFT, MARGIN_RIGHT, MARGIN_TOP, MARGIN_BOTTOM = 84.0, 54.0, 52.0, 74.0
+MARGIN_TOP, MARGIN_BOTTOM, DIMENSION_ROOM, LEAST_ROOM = 52.0, 74.0, 34.0, 44.0
+TYPE, SMALL_TYPE, MANY_MEMBERS = 10.0, 9.0, 60
 SIGN = 13.0
 """Height of a support triangle, px."""
 
@@ -51,21 +52,31 @@ def draw_view(
 ) -> DrawnView:
     """Draw ``view`` with ``scale`` px per m."""
     left, bottom, right, top = view.box
-    width = (right - left) * scale + MARGIN_LEFT + MARGIN_RIGHT
+    size = TYPE if len(brief.members) <= MANY_MEMBERS else SMALL_TYPE
+    side = _room_for_names(brief, view, size)
+    width = (right - left) * scale + DIMENSION_ROOM + 2 * side
     height = (top - bottom) * scale + MARGIN_TOP + MARGIN_BOTTOM
+    origin = (DIMENSION_ROOM + side, MARGIN_TOP)
     points = [
-        (MARGIN_LEFT + (x - left) * scale, MARGIN_TOP + (top - y) * scale) for x, y in view.points
+        (origin[0] + (x - left) * scale, origin[1] + (top - y) * scale) for x, y in view.points
     ]
-    size = 10.0 if len(brief.members) <= 60 else 9.0
+    crowded = brief.dimensions == 3 and view.axes == PLAN
     paper, layout = Paper(), Layout()
-    paper.text(view.title, (MARGIN_LEFT, 16.0), size=12.0, bold=True)
+    paper.text(view.title, (origin[0], 16.0), size=12.0, bold=True)
     _members(paper, layout, brief, option, points)
     _supports(paper, layout, brief, view, points)
-    _nodes(paper, layout, brief, points, size)
-    _labels(paper, layout, brief, option, points, size, with_sections=view.main)
+    _nodes(paper, layout, brief, points, size, all_names=not crowded)
+    _labels(paper, layout, brief, option, points, size, with_sections=view.main, must=not crowded)
     if view.axes is not None:
-        _dimensions(paper, view, scale, units)
-    return DrawnView(paper, max(width, MARGIN_LEFT + text_width(view.title, 12.0) + 8), height)
+        _dimensions(paper, view, origin, scale, units)
+    return DrawnView(paper, max(width, origin[0] + text_width(view.title, 12.0) + 8), height)
+
+
+def _room_for_names(brief: Brief, view: View, size: float) -> float:
+    """Return the px that the names of the nodes may take at either side."""
+    together = _at_points(view.points, places=6).values()
+    names = (_joined([brief.nodes[i].name for i in nodes])[0] for nodes in together)
+    return max(LEAST_ROOM, max(text_width(name, size) for name in names) + 10.0)
 
 
 def _members(
@@ -80,11 +91,11 @@ def _members(
         layout.add(segment_box(a, b, 2.5), "line")
 
 
-def _at_points(points: Sequence[Point]) -> dict[tuple[float, float], list[int]]:
+def _at_points(points: Sequence[Point], places: int = 1) -> dict[Point, list[int]]:
     """Return node indices by where they fall on the paper (several may share a point)."""
-    together: dict[tuple[float, float], list[int]] = {}
+    together: dict[Point, list[int]] = {}
     for i, (x, y) in enumerate(points):
-        together.setdefault((round(x, 1), round(y, 1)), []).append(i)
+        together.setdefault((round(x, places), round(y, places)), []).append(i)
     return together
 
 
@@ -152,7 +163,13 @@ def _triangle(paper: Paper, at: Point, *, upright: bool, slides: bool) -> None:
 
 
 def _nodes(
-    paper: Paper, layout: Layout, brief: Brief, points: Sequence[Point], size: float
+    paper: Paper,
+    layout: Layout,
+    brief: Brief,
+    points: Sequence[Point],
+    size: float,
+    *,
+    all_names: bool,
 ) -> None:
     neighbours: dict[int, list[int]] = {}
     for member in brief.members:
@@ -169,6 +186,8 @@ def _nodes(
         ends = [points[k] for i in nodes for k in neighbours.get(i, ())]
         boxes = _around((x, y), ends, text_width(words, size), size)
         best = min(boxes, key=lambda box: (layout.clashes(box), boxes.index(box)))
+        if not all_names and layout.clashes(best):
+            continue  # another view names it
         layout.add(best, "text")
         paper.text_in(words, best, size=size, halo=True, ink=QUIET, full=full)
 
@@ -208,6 +227,7 @@ def _labels(
     size: float,
     *,
     with_sections: bool,
+    must: bool,
 ) -> None:
     lines: dict[tuple[Point, Point], list[MemberResult]] = {}
     for member, result in zip(brief.members, option.members, strict=True):
@@ -221,7 +241,7 @@ def _labels(
         section = shortened(visible(members[0].designation), LONGEST_LABEL)
         variants = [section] if with_sections and len(members) == 1 else []
         whole = f"{full}: {visible(members[0].designation)}"
-        _place(paper, layout, (a, b), mark, [*variants, ""], size, whole)
+        _place(paper, layout, (a, b), mark, [*variants, ""], size, whole, must=must)
 
 
 def _place(
@@ -232,8 +252,13 @@ def _place(
     sections: Sequence[str],
     size: float,
     full: str,
+    *,
+    must: bool,
 ) -> None:
-    """Put the mark, with its section where there is room, beside the member or upon it."""
+    """Put the mark, with its section where there is room, beside the member or upon it.
+
+    Where there is no room either way, the mark is written all the same if it ``must``.
+    """
     for section in sections:
         width = text_width(mark, size) * BOLD + (text_width(f"  {section}", size) if section else 0)
         boxes = _beside(ends, width, size)
@@ -242,9 +267,11 @@ def _place(
             layout.add(boxes[free], "text")
             paper.text_in(mark, boxes[free], size=size, full=full, bold=True, after=section)
             return
+    if not must:
+        return
     boxes = _upon(ends, text_width(mark, size) * BOLD, size)
     free = layout.first_free(boxes, ("text", "sign"))
-    box = boxes[free if free is not None else 0]
+    box = boxes[free or 0]
     layout.add(box, "text")
     paper.text_in(mark, box, size=size, halo=True, full=full, bold=True)
 
@@ -276,11 +303,11 @@ def _upon(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:
     ]
 
 
-def _dimensions(paper: Paper, view: View, scale: float, units: ShownUnits) -> None:
+def _dimensions(paper: Paper, view: View, origin: Point, scale: float, units: ShownUnits) -> None:
     left, bottom, right, top = view.box
     across, up = right - left, top - bottom
-    x0, x1 = MARGIN_LEFT, MARGIN_LEFT + across * scale
-    y0, y1 = MARGIN_TOP, MARGIN_TOP + up * scale
+    x0, x1 = origin[0], origin[0] + across * scale
+    y0, y1 = origin[1], origin[1] + up * scale
     if across > 0.0:
         y = y1 + MARGIN_BOTTOM - 22
         _measure(paper, (x0, y), (x1, y))
