@@ -141,8 +141,8 @@ def standard_of(brief: Brief, option: Option) -> Standard:
 
 def _require_one_method(brief: Brief, option: Option, standard: Standard) -> None:
     """Refuse factored (LRFD) combinations with allowable (ASD) resistances and the reverse."""
-    method = dict(standard.basis()).get("Method")
-    other = {"LRFD": "ASD", "ASD": "LRFD"}.get(method or "")
+    method = dict(standard.basis()).get("Method", "").split(",")[0]
+    other = {"LRFD": "ASD", "ASD": "LRFD"}.get(method)
     if other is None:
         return
     mixed = [
