@@ -21,7 +21,7 @@ from sizing.brief.catalogue_causes import (
 from sizing.brief.catalogue_deviations import QUIET, REFUSED, beyond, outside, rows_text
 from sizing.brief.catalogue_masses import check_masses
 from sizing.brief.catalogue_rows import Checked, Entry, Findings, place_of
-from sizing.brief.catalogue_shapes import formed_by, has_dimensions, other_make
+from sizing.brief.catalogue_shapes import formed_by, has_dimensions, other_make, walls_fit
 
 SHAPE_REFUSED = 0.06
 """Relative deviation of the area from the shape's own formula that is an error.
@@ -247,14 +247,9 @@ def _check_shape(
 
 def _fits(entry: Entry, findings: Findings) -> bool:
     """Walls must fit into the section before a formula means anything."""
-    t = entry.value("thickness")
-    if t is None:
+    if walls_fit(entry):
         return True
-    depth, width = entry.numbers["depth"].value, entry.numbers["width"].value
-    room = min(depth, width) / (2.0 if entry.family in {"SHS", "RHS", "CHS"} else 1.0)
-    flange = entry.value("flange") if entry.family == "I" else None
-    if t < room and (flange is None or 2.0 * flange < depth):
-        return True
+    t, depth, width = (entry.numbers[key].value for key in ("thickness", "depth", "width"))
     findings.in_row(
         entry,
         "thickness",

@@ -8,7 +8,7 @@ from sizing.brief import section_geometry as geometry
 from sizing.brief.catalogue_causes import AREA_CAUSES, MASS_CAUSES, likely_cause
 from sizing.brief.catalogue_deviations import QUIET, REFUSED, beyond, outside, rows_text
 from sizing.brief.catalogue_rows import Checked, Entry, Findings, place_of
-from sizing.brief.catalogue_shapes import has_thin_us_wall
+from sizing.brief.catalogue_shapes import formed_by, has_dimensions, has_thin_us_wall, walls_fit
 
 TIMBER_DENSITIES = (250.0, 1300.0)
 """kg/m³, lightest softwood to heaviest hardwood class with a margin (EN 338: 290 to 1080)."""
@@ -89,12 +89,33 @@ def _refuse_common_mass(refused: list[tuple[Checked, float, float]], findings: F
 
 
 def _refuse_mass(row: Checked, ratio: float, expected: float, findings: Findings) -> None:
-    mass = row.entry.value("mass") or 0.0
+    """Report the mass or the area, whichever the dimensions speak against."""
+    entry, mass = row.entry, row.entry.numbers["mass"].value
+    formed = None
+    if has_dimensions(entry) and walls_fit(entry):
+        formed = formed_by(entry)[0].area
+    if formed is not None and abs(mass / (formed * expected) - 1.0) <= REFUSED:
+        cause = likely_cause(row.area / formed, AREA_CAUSES)
+        findings.in_row(
+            entry,
+            "area",
+            found=f"{row.area * 1e4:.4g} cm2",
+            expected=f"about {formed * 1e4:.4g} cm2 for these dimensions and this mass",
+            fix=f"This looks like {cause}."
+            if cause
+            else "Compare the area with the printed table.",
+            kind="area against mass",
+        )
+        return
+    agrees = formed is not None and abs(row.area / formed - 1.0) <= REFUSED
+    advice = "The area agrees with the dimensions; compare the mass with the printed table."
+    if not agrees:
+        advice = "Compare area and mass with the printed table."
     findings.in_row(
-        row.entry,
+        entry,
         "mass",
         found=f"{mass:.4g} kg/m with an area of {row.area * 1e4:.4g} cm2 ({ratio:.4g} kg/m3)",
         expected=f"about {row.area * expected:.4g} kg/m (area × {expected:.0f} kg/m3)",
-        fix=_mass_cause(ratio / expected) or "Compare area and mass with the printed table.",
+        fix=_mass_cause(ratio / expected) or advice,
         kind="mass against area",
     )

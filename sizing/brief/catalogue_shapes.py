@@ -99,6 +99,17 @@ def has_dimensions(entry: Entry) -> bool:
     return bool(needed) and all(key in entry.numbers for key in needed)
 
 
+def walls_fit(entry: Entry) -> bool:
+    """Say whether the stated walls leave room inside, so that a formula means anything."""
+    t = entry.value("thickness")
+    if t is None:
+        return True
+    depth, width = entry.numbers["depth"].value, entry.numbers["width"].value
+    room = min(depth, width) / (2.0 if entry.family in {"SHS", "RHS", "CHS"} else 1.0)
+    flange = entry.value("flange") if entry.family == "I" else None
+    return t < room and (flange is None or 2.0 * flange < depth)
+
+
 def formed_by(entry: Entry) -> list[geometry.SectionProperties]:
     """Return the properties by each formula that the row may follow, the likeliest first."""
     return SHAPES[entry.family][1](entry)

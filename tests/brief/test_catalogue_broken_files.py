@@ -103,8 +103,20 @@ BROKEN: dict[str, tuple[str, str]] = {
     ),
     "one area in mm2 under cm2": (
         GOOD.replace(",18.7,", ",1870,"),
+        PLACE + "'area [cm2]': found 1870 cm2; expected about 18.73 cm2 for these dimensions and "
+        "this mass. This looks like mm2 given as cm2.",
+    ),
+    "one area in mm2 under cm2 without dimensions": (
+        "designation,family,area [cm2],mass [kg/m],I [cm4]\n"
+        "SHS 100x100x5,SHS,1870,14.7,279\nSHS 80x80x5,SHS,14.7,11.6,137\n",
         PLACE + "'mass [kg/m]': found 14.7 kg/m with an area of 1870 cm2 (78.61 kg/m3); expected "
         "about 1468 kg/m (area × 7850 kg/m3). The area looks like mm2 given as cm2.",
+    ),
+    "one mass of another section": (
+        GOOD.replace("18.7,14.7", "18.7,17.4"),
+        PLACE + "'mass [kg/m]': found 17.4 kg/m with an area of 18.7 cm2 (9305 kg/m3); expected "
+        "about 14.68 kg/m (area × 7850 kg/m3). The area agrees with the dimensions; compare the "
+        "mass with the printed table.",
     ),
     "second moments in mm4 under cm4": (
         GOOD.replace("279,279", "2790000,279"),
