@@ -66,13 +66,16 @@ def analyse(
     ``axial_stiffness`` EA (m,) N; ``loads`` (j, d, q) N; ``free_elongation`` (m, q) m;
     ``settlement`` (j, d, q) m, movements imposed by supports, 0 where the node is not held.
     ``stiffness`` may bring a factorisation of the same EA/L already made.
-    Raises ``UnstableTrussError`` naming the nodes that move, ``SolverError`` when the solution
-    does not balance, ``ValueError`` for shapes that do not fit.
+    Raises ``UnstableTrussError`` for a mechanism (``stability.require_stable`` names the nodes
+    that move), ``SolverError`` when the solution does not balance, ``ValueError`` for shapes
+    that do not fit and for numbers that are not finite.
     """
     j, d, m = geometry.nodes, geometry.dimensions, geometry.members
     load = np.array(loads, dtype=np.float64)
     if load.ndim != 3 or load.shape[:2] != (j, d):
         raise ValueError(f"loads must be ({j}, {d}, cases), not {load.shape}")
+    if not np.isfinite(load).all():
+        raise ValueError("loads hold a number that is not finite")
     q = load.shape[2]
     free_e = _given(free_elongation, (m, q), "free_elongation")
     moved = _given(settlement, (j, d, q), "settlement")
@@ -129,4 +132,6 @@ def _given(array: FloatArray | None, shape: tuple[int, ...], name: str) -> Float
     given = np.asarray(array, dtype=np.float64)
     if given.shape != shape:
         raise ValueError(f"{name} must be {shape}, not {given.shape}")
+    if not np.isfinite(given).all():
+        raise ValueError(f"{name} holds a number that is not finite")
     return given

@@ -22,12 +22,21 @@ def linkages(geometry: Geometry, movements: FloatArray) -> list[Mechanism]:
     full = np.zeros((geometry.nodes * geometry.dimensions, p))
     full[geometry.free] = movements
     u = full.reshape(geometry.nodes, geometry.dimensions, p)
-    pairs, opened = _thought_members(geometry)
+    pairs, shared = _thought_members(geometry)
     way = geometry.position[pairs[:, 1]] - geometry.position[pairs[:, 0]]
     length = np.linalg.norm(way, axis=1, keepdims=True)
-    apart = length[:, 0] > 0
-    pairs, opened, way = pairs[apart], opened[apart], way[apart] / length[apart]
+    way = np.divide(way, length, out=np.zeros_like(way), where=length > 0)
     stretch = np.einsum("pd,pdq->pq", way, u[pairs[:, 1]] - u[pairs[:, 0]])
+    size = np.linalg.norm(stretch, axis=1)
+    useful = size > STOPS * size.max(initial=0.0)
+    pairs, stretch = pairs[useful], stretch[useful]
+    opened = np.array(
+        [
+            n >= 2 and _panel_around(geometry, int(a), int(c)) is not None
+            for (a, c), n in zip(pairs, shared[useful], strict=True)
+        ],
+        dtype=np.bool_,
+    )
     chosen = _independent_rows(stretch, opened)
     basis = _one_each(movements, stretch[chosen])
     found = []
@@ -61,18 +70,14 @@ def _adjacency(geometry: Geometry) -> sparse.csr_array:
     return graph
 
 
-def _thought_members(geometry: Geometry) -> tuple[IntArray, BoolArray]:
-    """Return pairs of unjoined nodes with a common neighbour; true where across an open panel."""
+def _thought_members(geometry: Geometry) -> tuple[IntArray, IntArray]:
+    """Return pairs (·, 2) of unjoined nodes with common neighbours, and how many they share."""
     graph = _adjacency(geometry)
-    shared = sparse.coo_array(sparse.triu(graph @ graph, k=1))
-    a, c = shared.coords
-    joined = np.asarray(graph[a, c]).ravel() > 0
-    pairs = np.column_stack([a, c])[~joined].astype(np.intp)
-    many = shared.data[~joined] >= 2
-    opened = np.zeros(len(pairs), dtype=np.bool_)
-    for i in np.flatnonzero(many):
-        opened[i] = _panel_around(geometry, int(pairs[i, 0]), int(pairs[i, 1])) is not None
-    return pairs, opened
+    common = sparse.coo_array(sparse.triu(graph @ graph, k=1))
+    a, c = common.coords
+    apart = np.asarray(graph[a, c]).ravel() == 0
+    pairs = np.column_stack([a, c])[apart].astype(np.intp)
+    return pairs, common.data[apart].astype(np.intp)
 
 
 def _neighbours(geometry: Geometry, node: int) -> set[int]:

@@ -106,7 +106,7 @@ def test_missing_diagonal_is_named():
     )
 
 
-@pytest.mark.parametrize("panels", [6, 200])
+@pytest.mark.parametrize("panels", [6, 500])
 def test_two_open_panels_are_told_apart(panels):
     """Two missing diagonals give two movements, each blamed on its own panel."""
     g = lattice_girder(panels)
@@ -221,7 +221,7 @@ def test_count():
     assert not determinacy(g).determinate
 
 
-@pytest.mark.parametrize("g", [lattice_girder(250), double_layer_grid(14)], ids=["girder", "grid"])
+@pytest.mark.parametrize("g", [lattice_girder(120), double_layer_grid(9)], ids=["girder", "grid"])
 def test_search_in_large_trusses_agrees_with_the_full_decomposition(g, monkeypatch):
     """The block search finds the same rank and condition as the full decomposition."""
     found = find_mechanisms(g)
@@ -231,14 +231,15 @@ def test_search_in_large_trusses_agrees_with_the_full_decomposition(g, monkeypat
     assert found.condition == pytest.approx(full.condition, rel=0.02)
 
 
-def test_hundreds_of_open_panels_are_refused_or_counted():
+def test_very_many_open_panels_are_counted_up_to_a_limit(monkeypatch):
     """Very many movements at once are counted up to the limit and refused beyond it."""
-    g = lattice_girder(300)
-    bare = without(g, np.concatenate([diagonals(g, p) for p in range(300)]))
-    assert len(find_mechanisms(bare).found) == 300
-    g = lattice_girder(600)
-    bare = without(g, np.concatenate([diagonals(g, p) for p in range(600)]))
-    with pytest.raises(SolverError, match="is not a truss"):
+    monkeypatch.setattr("sizing.mechanics.null_space.MOST", 128)
+    g = lattice_girder(100)
+    bare = without(g, np.concatenate([diagonals(g, p) for p in range(100)]))
+    assert len(find_mechanisms(bare).found) == 100
+    g = lattice_girder(140)
+    bare = without(g, np.concatenate([diagonals(g, p) for p in range(140)]))
+    with pytest.raises(SolverError, match="More than 128 independent movements"):
         find_mechanisms(bare)
 
 

@@ -217,6 +217,8 @@ def test_singular_stiffness_is_refused(panels):
         ({"EA": np.array([1.0, np.nan, 1.0])}, "positive finite"),
         ({"EA": np.ones(2)}, r"EA must be \(3,\)"),
         ({"loads": np.zeros((3, 2))}, "loads must be"),
+        ({"loads": np.full((3, 2, 1), np.nan)}, "loads hold a number that is not finite"),
+        ({"free": np.full((3, 1), np.inf)}, "free_elongation holds a number"),
         ({"moved": np.ones((3, 2, 1))}, "no support holds"),
         ({"free": np.ones(3)}, "free_elongation must be"),
     ],
