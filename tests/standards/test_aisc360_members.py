@@ -243,6 +243,47 @@ def test_wall_limits(catalogue_of, members_of, Fy, hss_limit, round_limit, leg_l
         assert table.reasons[table.notes[0, 1]].startswith("slender ")
 
 
+@pytest.mark.parametrize(
+    ("web", "flange", "slender"),
+    [(35.8, 13.4, ""), (35.95, 13.4, "h/tw"), (35.8, 13.6, "bf/(2 tf)")],
+)
+def test_i_shape_limits(catalogue_of, members_of, web, flange, slender):
+    """50 ksi: h/tw 1.49 √(E/Fy) = 35.88, bf/(2 tf) 0.56 √(E/Fy) = 13.49 (B4.1a, from memory)."""
+    t = 0.25 * INCH
+    row = W | {
+        "thickness": t,
+        "flange": t,
+        "width": 2.0 * flange * t,
+        "depth": web * t + 2.0 * t,
+        "area": (web + 4.0 * flange) * t**2,
+    }
+    strict = make_aisc360("A992", {"slender_elements": "leave out"})
+    table = strict.resistances(catalogue_of(row), members_of(length=0.5), SHORT)
+    assert (table.compression[0, 0, 0] > 0.0) is not bool(slender)
+    assert slender in table.reasons[table.notes[0, 0]]
+
+
+def test_i_shapes_by_e7(catalogue_of, members_of):
+    """E7-3 by hand: web c1 0.18, c2 1.31; half flanges c1 0.22, c2 1.49 (Table E7.1)."""
+    t = 0.25
+    row = W | {
+        "thickness": t * INCH,
+        "flange": t * INCH,
+        "width": 40 * t * INCH,
+        "depth": 82 * t * INCH,
+        "area": 160 * t**2 * INCH**2,
+    }
+    table = make_aisc360("A992", {}).resistances(catalogue_of(row), members_of(length=0.0), SHORT)
+
+    def lost(ratio, limit, c1, c2):
+        root = c2 * limit * math.sqrt(29000.0 / 50.0) / ratio
+        return ratio * t**2 * (1.0 - (1.0 - c1 * root) * root)
+
+    area = 160 * t**2 - lost(80.0, 1.49, 0.18, 1.31) - 4.0 * lost(20.0, 0.56, 0.22, 1.49)
+    expected = 0.9 * 50.0 * area * KSI * INCH**2
+    assert table.compression[0, 0, 0] == pytest.approx(expected, rel=1e-9)
+
+
 def test_effective_width_by_hand():
     """E7-3 for an HSS wall, λ = 60, 46 ksi, Fcr = 40 ksi: worked with c1 0.20, c2 1.38."""
     limit = 1.40 * math.sqrt(29000.0 / 46.0)
