@@ -12,6 +12,7 @@ from sizing.brief.combinations import CombinationTable, named_place, read_factor
 from sizing.brief.findings import Findings, KeyPath, Quantities, listed, quoted, shown
 from sizing.brief.load_cases import CaseTable
 from sizing.brief.model import Combination, DeflectionLimit, Support
+from sizing.brief.name_ranges import all_nodes_named
 from sizing.brief.nodes_and_supports import FARTHEST, NodeTable
 from sizing.brief.raw_tables import DESCRIBED_HERE, RawLimit, read_entry
 from sizing.brief.spans import deflection_span, height_above_supports
@@ -153,7 +154,7 @@ def _nodes(path: KeyPath, value: Any, origin: int | None, known: _Known) -> list
         return []
     if not value:
         known.findings.add(path, found="an empty list", expected=DESCRIBED_HERE["nodes"])
-    nodes = known.nodes.names.resolve_all(path, value)
+    nodes, _ = all_nodes_named(path, value, known.nodes.names, known.findings)
     if origin is not None and origin in nodes:
         known.findings.add(
             path,

@@ -7,16 +7,17 @@ from dataclasses import dataclass, replace
 from typing import Any
 
 from sizing.brief.buckling import read_buckling_length
+from sizing.brief.chains import members_named
 from sizing.brief.findings import Findings, KeyPath, Names, Quantities, quoted
 from sizing.brief.limits import read_fraction, read_slenderness
 from sizing.brief.marks import member_marks
 from sizing.brief.model import BucklingLength, Group, Member
+from sizing.brief.name_ranges import all_nodes_named
 from sizing.brief.nodes_and_supports import NodeTable
 from sizing.brief.raw_tables import RawGroup, read_entry
 from sizing.brief.restraint import restrained_lengths
 
 MOST_MEMBERS = 5_000
-_OTHER_HYPHENS = str.maketrans({"\u2010": "-", "\u2011": "-", "\u2013": "-", "\u2212": "-"})
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -36,7 +37,8 @@ class GroupTable:
 class _Draft:
     """A group on its way: the raw entry, its faulty keys, its members' end nodes.
 
-    ``sound``: all members are good; ``restrained``: the restrained nodes that are known.
+    ``sound``: all members and restrained nodes are good, so that the chain of members and its
+    restraints may be judged without follow-on noise.
     """
 
     name: str
@@ -45,11 +47,6 @@ class _Draft:
     ends: list[tuple[int, int]]
     sound: bool
     restrained: list[int]
-
-    @property
-    def chain_is_known(self) -> bool:
-        """Whether the chain of members and its restraints may be judged without follow-on noise."""
-        return self.sound and len(self.restrained) == len(self.entry.restrained_nodes)
 
 
 def read_groups(
@@ -78,8 +75,8 @@ def read_groups(
         ends, all_good = _read_members(name, entry, faulty, nodes, findings, seen)
         whole = whole and all_good
         names.index[name] = len(drafts)
-        restrained = nodes.names.resolve_all(
-            ("groups", name, "restrained_nodes"), entry.restrained_nodes
+        restrained, known = all_nodes_named(
+            ("groups", name, "restrained_nodes"), entry.restrained_nodes, nodes.names, findings
         )
         drafts.append(
             _Draft(
@@ -87,7 +84,7 @@ def read_groups(
                 entry=entry,
                 faulty=faulty,
                 ends=ends,
-                sound=all_good and "restrained_nodes" not in faulty,
+                sound=all_good and known and "restrained_nodes" not in faulty,
                 restrained=restrained,
             )
         )
@@ -115,43 +112,28 @@ def _read_members(
         )
     ends: list[tuple[int, int]] = []
     for place, text in enumerate(entry.members, start=1):
-        names = None if text is None else _end_names((*path, place), text, findings)
-        if names is None:
+        here = (*path, place)
+        pairs = None if text is None else members_named(here, text, nodes.names, findings)
+        if text is None or pairs is None:
             all_good = False
             continue
-        key = frozenset(names)
-        if key in seen:
+        for start, end in pairs:
+            key = frozenset((start, end))
+            if key not in seen:
+                seen[key] = findings.place(here)
+                if start in nodes.names.index and end in nodes.names.index:
+                    ends.append((nodes.names.index[start], nodes.names.index[end]))
+                else:
+                    all_good = False
+                continue
+            which = f"{start}-{end} of {quoted(text)}" if len(pairs) > 1 else quoted(text)
             findings.add(
-                (*path, place),
-                found=f"member {quoted(str(text))}, which stands already in {seen[key]}",
+                here,
+                found=f"member {which}, which stands already in {seen[key]}",
                 expected="each member once, in one group",
-                fix="Delete one of the two.",
+                fix="Delete one of the two." if len(pairs) == 1 else "Shorten one of the two.",
             )
-            continue
-        seen[key] = findings.place((*path, place))
-        start, end = (nodes.names.resolve((*path, place), name) for name in names)
-        if start is None or end is None:
-            all_good = False
-        else:
-            ends.append((start, end))
     return ends, all_good
-
-
-def _end_names(path: KeyPath, text: str, findings: Findings) -> tuple[str, str] | None:
-    parts = [part.strip() for part in text.translate(_OTHER_HYPHENS).split("-")]
-    if len(parts) != 2 or not all(parts):
-        findings.add(
-            path, found=quoted(text), expected='two node names joined by a hyphen, such as "A0-A1"'
-        )
-        return None
-    if parts[0] == parts[1]:
-        findings.add(
-            path,
-            found=f"member {quoted(text)} from a node to itself",
-            expected="a member between two nodes",
-        )
-        return None
-    return parts[0], parts[1]
 
 
 def _make_members(drafts: list[_Draft], nodes: NodeTable) -> list[Member]:
@@ -187,7 +169,7 @@ def _make_groups(
         others = names.resolve_all((*path, "continues_in"), draft.entry.continues_in)
         if not draft.entry.restrained_nodes:
             _must_be_alone(path, draft, findings)
-        elif all(drafts[k].chain_is_known for k in (g, *others)):
+        elif all(drafts[k].sound for k in (g, *others)):
             chain = list(dict.fromkeys(i for k in (g, *others) for i in own[k]))
             held = list(dict.fromkeys(n for k in (g, *others) for n in drafts[k].restrained))
             ends = {n: factor for k in (*others, g) for n, factor in free[k].items()}

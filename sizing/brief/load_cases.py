@@ -6,8 +6,18 @@ import math
 from dataclasses import dataclass
 from typing import Any
 
-from sizing.brief.findings import Findings, KeyPath, Names, Quantities, counted, quoted, shown
+from sizing.brief.findings import (
+    Findings,
+    KeyPath,
+    Names,
+    Quantities,
+    counted,
+    listed,
+    quoted,
+    shown,
+)
 from sizing.brief.model import LoadCase
+from sizing.brief.name_ranges import nodes_named
 from sizing.brief.nodes_and_supports import NodeTable
 from sizing.brief.raw_tables import RawCase, read_entry
 
@@ -48,8 +58,8 @@ def read_cases(
         )
         if entry is None:
             continue
-        nodal = _read_nodal(entry, (*path, "nodal"), nodes, findings, quantities)
-        loads_known = loads_known and len(nodal) == len(entry.nodal)
+        nodal, good = _read_nodal(entry, (*path, "nodal"), nodes, findings, quantities)
+        loads_known = loads_known and good
         if not entry.nodal and not entry.self_weight and not faulty & {"nodal", "self_weight"}:
             findings.add(
                 path,
@@ -84,17 +94,20 @@ def read_cases(
 
 def _read_nodal(
     entry: RawCase, path: KeyPath, nodes: NodeTable, findings: Findings, quantities: Quantities
-) -> dict[int, tuple[float, ...]]:
+) -> tuple[dict[int, tuple[float, ...]], bool]:
+    """Return the forces by node, and whether all are good."""
     nodal: dict[int, tuple[float, ...]] = {}
+    good = True
     for name, value in entry.nodal.items():
         place = (*path, name)
-        node = nodes.names.resolve(place, name)
+        found = nodes_named(place, name, nodes.names, findings)
         wanted = nodes.dimensions
         if not isinstance(value, list) or (wanted and len(value) != wanted):
             what = f"{wanted or 2} force components"
             example = [0.0, 0.0, -9.6][-(wanted or 2) :]
-            found = counted(len(value), "component") if isinstance(value, list) else shown(value)
-            findings.add(place, found=found, expected=f"{what}, such as {example}")
+            given = counted(len(value), "component") if isinstance(value, list) else shown(value)
+            findings.add(place, found=given, expected=f"{what}, such as {example}")
+            good = False
             continue
         force = quantities.vector(place, value, "force")
         for component, f in enumerate(force, start=1):
@@ -105,9 +118,21 @@ def _read_nodal(
                     expected="at most 1000 MN",
                     fix="Check the unit of force.",
                 )
-        if node is not None and all(math.isfinite(f) for f in force):
-            nodal[node] = force
-    return nodal
+        if found is None or not all(math.isfinite(f) for f in force):
+            good = False
+            continue
+        loaded = [nodes.names.index[node] for node in found if node in nodes.names.index]
+        good = good and len(loaded) == len(found)
+        twice = [nodes.nodes[node].name for node in loaded if node in nodal]
+        if twice:
+            findings.add(
+                place,
+                found=f"a second load on {listed(twice)}",
+                expected="each node once, named itself or through a range",
+                fix="Shorten the range, or add the loads.",
+            )
+        nodal |= dict.fromkeys(loaded, force)
+    return nodal, good
 
 
 def _check_cases(cases: list[LoadCase], findings: Findings) -> None:

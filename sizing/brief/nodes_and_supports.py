@@ -19,6 +19,7 @@ from sizing.brief.findings import (
     shown,
 )
 from sizing.brief.model import Node, Support
+from sizing.brief.name_ranges import nodes_named
 from sizing.brief.raw_tables import RawBrief, RawSupport, read_entry
 
 AXES = ("x", "y", "z")
@@ -130,7 +131,7 @@ def _must_have_size(nodes: list[Node], findings: Findings) -> None:
 def read_supports(
     raw: dict[str, Any], nodes: NodeTable, findings: Findings, *, present: bool
 ) -> tuple[Support, ...]:
-    """Return the supports in the order of the brief."""
+    """Return the supports in the order of the brief; a range or pattern names many nodes."""
     if present and not raw:
         findings.add(
             ("supports",),
@@ -148,16 +149,32 @@ def read_supports(
                 fix=f"A key of the whole brief stands before the first table: move {name} there.",
             )
             continue
-        node = nodes.names.resolve(path, name)
+        found = nodes_named(path, name, nodes.names, findings) or []
         entry, faulty = read_entry(
             RawSupport, value, path, findings, 'a table such as { held = ["x", "y"] }'
         )
         if entry is None:
             continue
         held = _directions(entry, faulty, (*path, "held"), nodes, findings)
-        if node is not None and any(held):
-            supports.append(Support(node=node, held=held))
+        if any(held):
+            supports += [
+                Support(node=nodes.names.index[node], held=held)
+                for node in found
+                if node in nodes.names.index
+            ]
+    _must_be_held_once(supports, nodes, findings)
     return tuple(supports)
+
+
+def _must_be_held_once(supports: list[Support], nodes: NodeTable, findings: Findings) -> None:
+    times = Counter(support.node for support in supports)
+    twice = [nodes.nodes[node].name for node, count in times.items() if count > 1]
+    if twice:
+        findings.add(
+            ("supports",),
+            found=f"{counted(len(twice), 'node')} held by two entries: {listed(twice)}",
+            expected="each node once, named itself or through a range",
+        )
 
 
 def _directions(

@@ -27,8 +27,11 @@ def check_truss(nodes: NodeTable, groups: GroupTable, findings: Findings) -> Non
     twins = _coincident(nodes.nodes, position, findings)
     if groups.whole and nodes.whole:
         _loose(nodes.nodes, groups.members, twins, findings)
-    for member, passed in _passing(position, groups.members, twins).items():
+    passing = _passing(position, groups.members, twins)
+    for member, passed in passing.items():
         _add_passing(nodes.nodes, groups, member, passed, findings)
+    if nodes.dimensions == 2 and not passing and not twins:
+        _caution_crossing(position, groups.members, findings)
 
 
 def _coincident(nodes: Sequence[Node], position: FloatArray, findings: Findings) -> set[int]:
@@ -100,3 +103,36 @@ def _add_passing(
         expected="members that end at every node on their line",
         fix=f"Delete {this.name}." if covered else f"Split it into {split}.",
     )
+
+
+def _caution_crossing(position: FloatArray, members: Sequence[Member], findings: Findings) -> None:
+    """Say which members of a plane truss cross away from a node."""
+    crossing = [f"{members[i].name} and {members[k].name}" for i, k in _crossing(position, members)]
+    if crossing:
+        pairs = listed(crossing, most=6)
+        findings.caution(
+            f"{counted(len(crossing), 'pair')} of members cross without a node ({pairs}): they "
+            "are taken to pass each other freely, each over its whole length; put a node where "
+            "they are joined."
+        )
+
+
+def _crossing(position: FloatArray, members: Sequence[Member]) -> list[tuple[int, int]]:
+    """Return the pairs of members whose lines cross between their ends."""
+    start = position[[m.start for m in members]]
+    axis = position[[m.end for m in members]] - start
+    margin = SAME_PLACE / np.maximum(np.array([m.length for m in members]), SAME_PLACE)
+    found = []
+    for i in range(len(members) - 1):
+        gap, other = start[i + 1 :] - start[i], axis[i + 1 :]
+        turn = _cross(axis[i], other)
+        with np.errstate(divide="ignore", invalid="ignore"):  # parallel ones give no number
+            here, there = _cross(gap, other) / turn, _cross(gap, axis[i]) / turn
+        inside = (here > margin[i]) & (here < 1.0 - margin[i])
+        inside &= (there > margin[i + 1 :]) & (there < 1.0 - margin[i + 1 :])
+        found += [(i, k + i + 1) for k in np.flatnonzero(inside).tolist()]
+    return found
+
+
+def _cross(a: FloatArray, b: FloatArray) -> FloatArray:
+    return np.asarray(a[..., 0] * b[..., 1] - a[..., 1] * b[..., 0])
