@@ -1,0 +1,138 @@
+"""Writing plain tables as a TOML brief that a person can read on with.
+
+The inverse of ``tomllib.loads``: ``tomllib.loads(toml_text(tables)) == tables`` for every
+table of texts, numbers, booleans, dates, lists and tables.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator, Mapping
+from datetime import date, datetime, time
+from typing import Any
+
+LINE = 100
+"""Characters: a list or an inline table that is longer goes over several lines."""
+
+HEADED = frozenset({"groups", "cases", "options"})
+"""Tables whose entries have a head ``[groups.NAME]`` each, however short they are."""
+
+INLINE = frozenset({"units"})
+"""Tables that stand on one line among the first keys of the file."""
+
+_BARE_KEY = re.compile(r"[A-Za-z0-9_-]+")
+_ESCAPES = {
+    "\b": "\\b", "\t": "\\t", "\n": "\\n", "\f": "\\f", "\r": "\\r", '"': '\\"', "\\": "\\\\",
+}  # fmt: skip
+
+
+def toml_text(tables: Mapping[str, Any]) -> str:
+    """Return the tables as TOML: single values first, then one section for each table.
+
+    Raises :class:`TypeError` for a value that TOML has no form for (``None``).
+    """
+    return "\n\n".join("\n".join(block) for block in _blocks(tables)) + "\n"
+
+
+def toml_key(name: str) -> str:
+    """Return a key, in quotation marks where TOML needs them."""
+    return name if _BARE_KEY.fullmatch(name) else toml_string(name)
+
+
+def toml_value(value: Any) -> str:
+    """Return a value on one line; raise :class:`TypeError` when TOML has no form for it."""
+    if isinstance(value, bool):
+        return "true" if value else "false"
+    if isinstance(value, (int, float)):
+        return repr(value)
+    if isinstance(value, str):
+        return toml_string(value)
+    if isinstance(value, (datetime, date, time)):
+        return value.isoformat()
+    if isinstance(value, (list, tuple)):
+        return "[" + ", ".join(toml_value(item) for item in value) + "]"
+    if isinstance(value, Mapping):
+        return "{ " + toml_pairs(value) + " }" if value else "{}"
+    raise TypeError(f"TOML has no form for {value!r}")
+
+
+def toml_pairs(table: Mapping[str, Any]) -> str:
+    """Return ``key = value, key = value``, the inside of an inline table."""
+    return ", ".join(f"{toml_key(str(k))} = {toml_value(v)}" for k, v in table.items())
+
+
+def toml_string(text: str) -> str:
+    """Return a text in quotation marks, with everything escaped that may not stand in it."""
+    return '"' + "".join(_escaped(c) for c in text) + '"'
+
+
+def _escaped(character: str) -> str:
+    if character in _ESCAPES:
+        return _ESCAPES[character]
+    if character.isprintable():
+        return character
+    code = ord(character)
+    return f"\\u{code:04X}" if code <= 0xFFFF else f"\\U{code:08X}"
+
+
+def _blocks(tables: Mapping[str, Any]) -> Iterator[list[str]]:
+    plain = {k: v for k, v in tables.items() if k in INLINE or not _is_section(v)}
+    if plain:
+        yield [line for k, v in plain.items() for line in _lines(k, v)]
+    for key, value in tables.items():
+        if key in plain:
+            continue
+        if isinstance(value, list):
+            for entry in value:
+                yield [f"[[{toml_key(key)}]]", *_entry_lines(entry)]
+        else:
+            yield from _section((key,), value)
+
+
+def _is_section(value: Any) -> bool:
+    """Say whether a value of the top level is a table, or a list of tables only."""
+    if isinstance(value, list):
+        return bool(value) and all(isinstance(item, Mapping) for item in value)
+    return isinstance(value, Mapping)
+
+
+def _section(path: tuple[str, ...], table: Mapping[str, Any]) -> Iterator[list[str]]:
+    """Yield the blocks of a table; what is too long for a line gets a head of its own."""
+    headed = len(path) == 1 and path[0] in HEADED
+    below = {
+        k: v
+        for k, v in table.items()
+        if isinstance(v, Mapping) and (headed or len(f"{toml_key(k)} = {toml_value(v)}") > LINE)
+    }
+    own = {k: v for k, v in table.items() if k not in below}
+    if own or not below:
+        yield [f"[{'.'.join(toml_key(p) for p in path)}]", *_entry_lines(own)]
+    for key, value in below.items():
+        yield from _section((*path, key), value)
+
+
+def _entry_lines(table: Mapping[str, Any]) -> list[str]:
+    return [line for key, value in table.items() for line in _lines(key, value)]
+
+
+def _lines(key: str, value: Any) -> Iterator[str]:
+    """Yield ``key = value``; long lists are wrapped, texts of several lines keep them."""
+    start = f"{toml_key(key)} = "
+    if isinstance(value, str) and "\n" in value:
+        body = "\n".join("".join(_escaped(c) for c in line) for line in value.split("\n"))
+        yield from f'{start}"""\n{body}"""'.split("\n")
+        return
+    line = start + toml_value(value)
+    if len(line) <= LINE or not isinstance(value, list):
+        yield line
+        return
+    yield start + "["
+    row = "   "
+    for item in value:
+        text = f" {toml_value(item)},"
+        if len(row) + len(text) > LINE and row.strip():
+            yield row
+            row = "   "
+        row += text
+    yield row
+    yield "]"
