@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import signal
 import sys
 from collections.abc import Iterator
@@ -37,6 +38,9 @@ EXIT_CODES: dict[type[SizingError], int] = {
     OutputError: 7,
 }
 """Exit codes: 0 adequate and issued; 1 the given sections are not adequate (documents written)."""
+
+ONE_THREAD = ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS")
+"""Matrices here are small: several threads only get in each other's way and round differently."""
 
 NOT_ADEQUATE = 1
 INTERRUPTED = 130
@@ -221,6 +225,8 @@ def _stop_on_interrupt() -> Iterator[Callable[[], bool]]:
 
 def main() -> None:
     """Run the command line; a mistake in a file ends in a message and an exit code."""
+    for variable in ONE_THREAD:
+        os.environ.setdefault(variable, "1")
     try:
         app()
     except SizingError as error:

@@ -74,8 +74,7 @@ def formulate(brief: Brief, option: Option) -> Formulation:
     mass = mass_per_metre(catalogue, standard)
     conditions = member_conditions(brief, option)
     strength = brief.combinations_of("strength")
-    durations = durations_of(brief, strength)
-    table = standard.resistances(catalogue, conditions, durations)
+    table = _resistances(brief, option, standard, catalogue, conditions)
     cost = objective_values(brief, option, catalogue, mass)
     allowed = allowed_sections(brief, option, catalogue, table) & ~np.isnan(cost)
     _require_priced(brief, option, allowed)
@@ -98,7 +97,7 @@ def formulate(brief: Brief, option: Option) -> Formulation:
         self_weight_share=sparse.csr_array(self_weight_share(geometry))[free],
         strength_factors=factor_matrix(brief, strength),
         duration=np.array(
-            [durations.index(brief.combinations[c].duration) for c in strength], dtype=np.intp
+            [table.durations.index(brief.combinations[c].duration) for c in strength], dtype=np.intp
         ),
         tension=table.tension * capped,
         compression=table.compression * capped,
@@ -126,17 +125,35 @@ def standard_of(brief: Brief, option: Option) -> Standard:
     try:
         return make_standard(option.standard, option.grade, option.settings)
     except SettingsError as error:
-        raise InputError(
-            [
-                Problem(
-                    file=brief.source.name,
-                    place=f"options.{option.name}.{error.key}",
-                    found=error.found,
-                    expected=error.expected,
-                    fix=error.fix,
-                )
-            ]
-        ) from error
+        raise _setting_refused(brief, option, error) from error
+
+
+def _resistances(
+    brief: Brief,
+    option: Option,
+    standard: Standard,
+    catalogue: Catalogue,
+    conditions: MemberConditions,
+) -> ResistanceTable:
+    durations = durations_of(brief, brief.combinations_of("strength"))
+    try:
+        return standard.resistances(catalogue, conditions, durations)
+    except SettingsError as error:
+        raise _setting_refused(brief, option, error) from error
+
+
+def _setting_refused(brief: Brief, option: Option, error: SettingsError) -> InputError:
+    return InputError(
+        [
+            Problem(
+                file=brief.source.name,
+                place=f"options.{option.name}.{error.key}",
+                found=error.found,
+                expected=error.expected,
+                fix=error.fix,
+            )
+        ]
+    )
 
 
 def _require_one_method(brief: Brief, option: Option, standard: Standard) -> None:
