@@ -15,7 +15,7 @@ from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.rows import job_tables
 from sizing.documents.tables import Cell, Column, essential_part, printed
 from sizing.documents.wording import ALARMS, CLOSING_CAUTION, met, outcome_sentence
-from sizing.results import JobResult, WorkedCheck
+from sizing.results import JobResult, OptionResult, WorkedCheck
 from sizing.standards.contract import Step
 
 FIGURES = 4
@@ -65,7 +65,10 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
                 "outcome": outcome_sentence(option),
                 "adequate": option.adequate,
                 "drawing": svg_text(drawing),
-                "worked": [_worked(check, tables.units) for check in option.worked],
+                "worked": [
+                    _worked(check, tables.units, _caps(job, option).get(check.mark, 1.0))
+                    for check in option.worked
+                ],
                 "tables": {table.name: essential_part(table) for table in own},
             }
             for (option, own), drawing in zip(tables.by_option, drawings, strict=True)
@@ -116,16 +119,23 @@ def _css_text(words: str) -> str:
     )
 
 
-def _worked(check: WorkedCheck, units: ShownUnits) -> _Worked:
+def _caps(job: JobResult, option: OptionResult) -> dict[str, float]:
+    """Return the utilisation cap that applies to each mark."""
+    of_group = {group.name: group.utilisation_cap for group in job.brief.groups}
+    return {member.mark: of_group.get(member.group, 1.0) for member in option.members}
+
+
+def _worked(check: WorkedCheck, units: ShownUnits, cap: float) -> _Worked:
     passes = met(check.utilisation)
     force = units.force.fitted([check.force])
+    of = "" if cap == 1.0 else f" of the group's cap, {cap:.2f} of the resistance"
     share = f"{check.utilisation:.3f}" if math.isfinite(check.utilisation) else "no resistance"
     return _Worked(
         heading=f"Member {visible(check.mark)}, {visible(check.designation)}: {check.sense}",
         lines=tuple(_line(step, units) for step in check.steps),
         closing=(
             f"Force in {visible(check.combination)}: {force.text(check.force)} ({check.sense}); "
-            f"utilisation {share}"
+            f"utilisation {share}{of}"
         ),
         met=passes,
     )

@@ -8,6 +8,7 @@ factor (for documents any consistent number will do). Everything here is invente
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass, field
 from pathlib import Path
 
@@ -537,3 +538,9 @@ def hostile_job() -> JobResult:
 def hostile_names() -> tuple[str, ...]:
     """The names used in ``hostile_job``."""
     return HOSTILE
+
+
+@pytest.fixture(scope="session")
+def make_job() -> Callable[[int], JobResult]:
+    """Build the job of a girder with a number of panels."""
+    return lambda panels: job_of(girder(panels))
