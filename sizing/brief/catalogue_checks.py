@@ -217,6 +217,8 @@ def _check_shape(
     if not _fits(entry, findings):
         return False
     formed = formed_by(entry)
+    if not formed:
+        return True
     if not _check_area(row, formed, findings, deviations):
         return False
     good = True

@@ -91,9 +91,8 @@ def _refuse_common_mass(refused: list[tuple[Checked, float, float]], findings: F
 def _refuse_mass(row: Checked, ratio: float, expected: float, findings: Findings) -> None:
     """Report the mass or the area, whichever the dimensions speak against."""
     entry, mass = row.entry, row.entry.numbers["mass"].value
-    formed = None
-    if has_dimensions(entry) and walls_fit(entry):
-        formed = formed_by(entry)[0].area
+    shapes = formed_by(entry) if has_dimensions(entry) and walls_fit(entry) else []
+    formed = shapes[0].area if shapes else None
     if formed is not None and abs(mass / (formed * expected) - 1.0) <= REFUSED:
         cause = likely_cause(row.area / formed, AREA_CAUSES)
         findings.in_row(

@@ -111,8 +111,13 @@ def walls_fit(entry: Entry) -> bool:
 
 
 def formed_by(entry: Entry) -> list[geometry.SectionProperties]:
-    """Return the properties by each formula that the row may follow, the likeliest first."""
-    return SHAPES[entry.family][1](entry)
+    """Return the properties by each formula that the row may follow, the likeliest first.
+
+    A formula whose corner radii do not fit into so thick a section is left out; the list is
+    empty when none fits.
+    """
+    found = SHAPES[entry.family][1](entry)
+    return [each for each in found if min(each.area, each.i_least) > 0.0]
 
 
 def other_make(entry: Entry, area: float) -> str:

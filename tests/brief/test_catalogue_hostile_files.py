@@ -79,6 +79,23 @@ def test_cut_and_pasted_files_never_crash(edits: list[tuple[float, int, str]]) -
         assert np.all(np.isfinite(catalogue.i_major))
 
 
+@settings(max_examples=300, deadline=None)
+@given(
+    st.sampled_from(["SHS", "RHS", "CHS", "angle", "I", "rectangle"]),
+    st.sampled_from(["EN 10210-2", "EN 10219-2", "ASTM A500", ""]),
+    st.lists(st.floats(-4, 5), min_size=10, max_size=10),
+)
+@example("SHS", "EN 10219-2", [0.0, 0, 0, 0, 0, 1.342, 1.342, 1.037, 1, 1])
+def test_wild_numbers_never_crash(family: str, product: str, powers: list[float]) -> None:
+    """Numbers over nine orders of magnitude, thick walls and huge radii among them."""
+    heads = (
+        "designation,family,product,area [cm2],mass [kg/m],I major [cm4],I minor [cm4],"
+        "I least [cm4],depth [mm],width [mm],thickness [mm],flange [mm],root radius [mm]\n"
+    )
+    numbers = ",".join(f"{10.0**power:.4g}" for power in powers)
+    read(f"{heads}S1,{family},{product},{numbers}\n".encode())
+
+
 @settings(max_examples=200, deadline=None)
 @given(st.binary(max_size=300))
 @example(b"\xa0")
