@@ -18,6 +18,7 @@ from __future__ import annotations
 
 import difflib
 import hashlib
+import os
 from collections.abc import Sequence
 from dataclasses import replace
 from pathlib import Path
@@ -43,9 +44,10 @@ from sizing.brief.catalogue_rows import (
     read_density,
     read_entries,
 )
-from sizing.brief.catalogue_text import TextProblemsError, decode, refuse_large, split
+from sizing.brief.catalogue_text import LARGEST_FILE, TextProblemsError, decode, split
 from sizing.brief.catalogue_workbook import MAGIC, workbook_table
 from sizing.brief.model import SourceFile
+from sizing.brief.plain_files import PlainFileError, read_plain_file
 from sizing.brief.sections import Catalogue, FloatArray
 from sizing.errors import InputError, Problem
 
@@ -89,13 +91,11 @@ def read_catalogue(name_or_path: str, base: Path) -> Catalogue:
     """
     path = _find(name_or_path, base)
     try:
-        refuse_large(path.stat().st_size, name_or_path)
-        data = path.read_bytes()
-    except OSError as error:
+        data = read_plain_file(path, LARGEST_FILE, base=base)
+    except PlainFileError as error:
         raise InputError([_unreadable(name_or_path, error)]) from error
-    except TextProblemsError as error:
-        raise InputError(error.problems) from error
-    source = SourceFile(name=name_or_path, path=path, sha256=hashlib.sha256(data).hexdigest())
+    sha256 = hashlib.sha256(data).hexdigest()
+    source = SourceFile(name=name_or_path, path=path.resolve(), sha256=sha256)
     return catalogue_from_bytes(data, name=name_or_path, source=source)
 
 
@@ -148,24 +148,13 @@ def _find(name: str, base: Path) -> Path:
     shipped = shipped_folder() / f"{name}{SUFFIX}"
     if name in shipped_catalogues():
         return shipped
-    path = base / Path(name).expanduser()
     try:
-        if path.is_file():
-            return path.resolve()
-        if not path.exists():
-            raise InputError([_not_found(name, base)])
-    except OSError as error:
-        raise InputError([_unreadable(name, error)]) from error
-    raise InputError(
-        [
-            Problem(
-                file=name,
-                place="file",
-                found="something that is not a file",
-                expected="a text table (CSV)",
-            )
-        ]
-    )
+        path = base / Path(name).expanduser()
+        if os.path.lexists(path):
+            return path
+    except (OSError, RuntimeError) as error:  # a name too long, a home folder nobody has
+        raise InputError([_not_found(name, base)]) from error
+    raise InputError([_not_found(name, base)])
 
 
 def _not_found(name: str, base: Path) -> Problem:
@@ -183,12 +172,14 @@ def _not_found(name: str, base: Path) -> Problem:
     )
 
 
-def _unreadable(name: str, error: OSError) -> Problem:
+def _unreadable(name: str, error: PlainFileError) -> Problem:
+    expected = error.expected
     return Problem(
         file=name,
         place="file",
-        found=f"a file that cannot be read ({error.strerror or error})",
-        expected="a readable text table (CSV)",
+        found=error.found,
+        expected="a text table (CSV)" if expected == "a file" else expected,
+        fix=error.fix,
     )
 
 

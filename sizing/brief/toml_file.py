@@ -10,6 +10,7 @@ from pathlib import Path
 from typing import Any
 
 from sizing.brief.model import SourceFile
+from sizing.brief.plain_files import PlainFileError, read_plain_file
 from sizing.errors import InputError, Problem
 
 LARGEST_BRIEF = 5 * 1024 * 1024
@@ -49,20 +50,9 @@ def read_text(path: Path, largest: int) -> tuple[SourceFile, str]:
     """Return identity and text of a UTF-8 file (a byte-order mark is dropped)."""
     name = str(path)
     try:
-        with path.open("rb") as stream:
-            content = stream.read(largest + 1)
-    except IsADirectoryError as error:
-        raise _refused(name, "a folder", "a file") from error
-    except FileNotFoundError as error:
-        raise _refused(
-            name, "no such file", "an existing file", "Check the path and the folder you are in."
-        ) from error
-    except (OSError, ValueError) as error:
-        reason = getattr(error, "strerror", None) or str(error)
-        raise _refused(name, f"a file that cannot be opened ({reason})", "a file") from error
-    if len(content) > largest:
-        limit = f"at most {largest // 1024**2} MiB"
-        raise _refused(name, f"more than {largest // 1024**2} MiB", limit)
+        content = read_plain_file(path, largest)
+    except PlainFileError as error:
+        raise _refused(name, error.found, error.expected, error.fix) from error
     try:
         text = content.decode("utf-8-sig")
     except UnicodeDecodeError as error:
