@@ -159,6 +159,11 @@ class Quantities:
         self._findings = findings
         self._units = units
 
+    @property
+    def units(self) -> UnitPair:
+        """The brief's units."""
+        return self._units
+
     def read(self, path: KeyPath, value: object, kind: Kind) -> float | None:
         """Return the quantity in SI units; None, with the mistake recorded, when it is none."""
         try:

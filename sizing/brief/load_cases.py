@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -16,13 +17,18 @@ from sizing.brief.findings import (
     quoted,
     shown,
 )
-from sizing.brief.model import LoadCase
+from sizing.brief.model import LoadCase, Member
 from sizing.brief.name_ranges import nodes_named
 from sizing.brief.nodes_and_supports import NodeTable
+from sizing.brief.point_loads import read_point_loads
 from sizing.brief.raw_tables import RawCase, read_entry
+from sizing.brief.spread_loads import SpreadLoads, read_spread_loads
 
 GREATEST_FORCE = 1e9
 """N. No truss node carries 1 GN: such a force is in another unit than the brief says."""
+
+LOADS = frozenset({"nodal", "area_loads", "line_loads", "point_loads", "self_weight"})
+"""Keys of a load case of which one at least must be given."""
 
 GRAVITY_KINDS = ("permanent", "imposed", "imposed roof", "snow")
 
@@ -39,12 +45,17 @@ class CaseTable:
 def read_cases(
     raw: dict[str, Any],
     nodes: NodeTable,
+    members: Sequence[Member],
     findings: Findings,
     quantities: Quantities,
     *,
     present: bool,
+    lump: bool = False,
 ) -> CaseTable:
-    """Return the load cases in the order of the brief."""
+    """Return the load cases in the order of the brief.
+
+    ``lump``: loads on a member between its nodes are shared between the two, else refused.
+    """
     names = Names(findings, "load case", raw, complete=present)
     before, loads_known = len(findings), True
     if present and not raw:
@@ -59,12 +70,19 @@ def read_cases(
         if entry is None:
             continue
         nodal, good = _read_nodal(entry, (*path, "nodal"), nodes, findings, quantities)
-        loads_known = loads_known and good
-        if not entry.nodal and not entry.self_weight and not faulty & {"nodal", "self_weight"}:
+        loads = read_spread_loads(
+            path, entry.area_loads, entry.line_loads, nodes, findings, quantities
+        )
+        read_point_loads(
+            path, entry.point_loads, nodes, members, findings, quantities, loads, lump=lump
+        )
+        loads_known = loads_known and good and loads.good
+        if not any(getattr(entry, key) for key in LOADS) and not faulty & LOADS:
             findings.add(
                 path,
                 found="a load case without loads",
-                expected="nodal = { ... } or self_weight = true",
+                expected="nodal = { ... }, area_loads, line_loads, point_loads or "
+                "self_weight = true",
             )
         if entry.may_be_absent and entry.kind != "permanent" and "kind" not in faulty:
             findings.add(
@@ -78,18 +96,30 @@ def read_cases(
             LoadCase(
                 name=name,
                 kind=entry.kind,
-                nodal=nodal,
+                nodal=_joined(nodal, loads),
                 self_weight=entry.self_weight,
                 duration=entry.duration,
                 action=entry.action,
                 alternative_set=entry.alternative_set,
                 may_be_absent=entry.may_be_absent,
+                stated=tuple(loads.stated),
             )
         )
     whole = present and loads_known and len(findings) == before
     if whole:
         _check_cases(cases, findings)
     return CaseTable(cases=tuple(cases), names=names, whole=whole)
+
+
+def _joined(
+    nodal: Mapping[int, tuple[float, ...]], loads: SpreadLoads
+) -> dict[int, tuple[float, ...]]:
+    """Return the forces given at nodes together with the shares of the other loads."""
+    joined = dict(nodal)
+    for node, force in loads.nodal.items():
+        before = joined.get(node, (0.0,) * len(force))
+        joined[node] = tuple(a + b for a, b in zip(before, force.tolist(), strict=True))
+    return joined
 
 
 def _read_nodal(
@@ -100,6 +130,15 @@ def _read_nodal(
     good = True
     for name, value in entry.nodal.items():
         place = (*path, name)
+        if name not in nodes.names.declared and "-" in name:
+            findings.add(
+                place,
+                found=f"a load on {quoted(name)}",
+                expected="a node",
+                fix="Loads on a member stand in point_loads or line_loads.",
+            )
+            good = False
+            continue
         found = nodes_named(place, name, nodes.names, findings)
         wanted = nodes.dimensions
         if not isinstance(value, list) or (wanted and len(value) != wanted):
@@ -141,7 +180,7 @@ def _check_cases(cases: list[LoadCase], findings: Findings) -> None:
         findings.add(
             ("cases",),
             found="no load other than self-weight",
-            expected="at least one nodal force that is not zero",
+            expected="at least one load that is not zero",
         )
         return
     for case in cases:

@@ -126,8 +126,25 @@ class Member:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class StatedLoad:
+    """A load as the brief states it, beside what reaches the nodes.
+
+    ``text`` prints both, e.g. ``area load 1 on B0..B12: 1.00 kN/m² on plan × 28.800 m × 6.000 m
+    = 172.80 kN down; at the nodes 172.80 kN down``. ``given`` is the resultant from the whole
+    extent and ``applied`` the sum of the nodal forces, d components in N.
+    """
+
+    text: str
+    given: tuple[float, ...]
+    applied: tuple[float, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class LoadCase:
     """One action. ``nodal`` maps node index to force components in N (d of them).
+
+    ``nodal`` holds everything that acts at the nodes, the shares of area, line and point loads
+    included; ``stated`` has a row for each of those.
 
     ``self_weight`` adds the weight of the picked sections, downwards. ``duration`` overrides
     the usual load duration of the kind.
@@ -147,6 +164,7 @@ class LoadCase:
     action: str | None = None
     alternative_set: str | None = None
     may_be_absent: bool = False
+    stated: tuple[StatedLoad, ...] = ()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

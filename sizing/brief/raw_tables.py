@@ -16,6 +16,9 @@ from sizing.brief.findings import Findings, KeyPath, listed, quoted, shown
 from sizing.brief.model import ActionKind, DeflectionComponent, LoadDuration, Objective, State
 
 Held = Literal["x", "y", "z", "X", "Y", "Z"]
+MeasuredOn = Literal["plan", "slope", "normal to slope"]
+MeasuredAlong = Literal["plan", "chord", "height"]
+BetweenNodes = Literal["refuse", "lump"]
 
 
 class RawTable(BaseModel):
@@ -39,6 +42,9 @@ class RawBrief(RawTable):
     )
     groups: dict[str, Any] = Field({}, description="tables [groups.NAME], one for each group")
     cases: dict[str, Any] = Field({}, description="tables [cases.NAME], one for each load case")
+    between_nodes: BetweenNodes = Field(
+        "refuse", description='"refuse", or "lump" to share loads between the nodes next to them'
+    )
     combination_rule: Any = None
     combinations: list[Any] = Field([], description="tables [[combinations]]")
     deflection_limits: list[Any] = Field([], description="tables [[deflection_limits]]")
@@ -108,6 +114,9 @@ class RawCase(RawTable):
     REQUIRED = ("kind",)
     kind: ActionKind = Field("other", description=f"one of {', '.join(get_args(ActionKind))}")
     nodal: dict[str, Any] = Field({}, description="forces at nodes, such as { B1 = [0, -9.6] }")
+    area_loads: list[Any] = Field([], description="tables [[cases.NAME.area_loads]]")
+    line_loads: list[Any] = Field([], description="tables [[cases.NAME.line_loads]]")
+    point_loads: list[Any] = Field([], description="tables [[cases.NAME.point_loads]]")
     self_weight: bool = Field(False, description="true or false")
     duration: LoadDuration | None = Field(
         None, description=f"one of {', '.join(get_args(LoadDuration))}"
@@ -117,6 +126,41 @@ class RawCase(RawTable):
         None, description="a name shared by cases of which only one acts at a time"
     )
     may_be_absent: bool = Field(False, description="true or false")
+
+
+class RawAreaLoad(RawTable):
+    """One entry of ``area_loads``."""
+
+    REQUIRED = ("pressure", "on", "chord", "spacing")
+    pressure: Any = Field(None, description='a pressure, such as "0.8 kN/m2"')
+    on: MeasuredOn = Field("plan", description='"plan", "slope" or "normal to slope"')
+    chord: str = Field("", description='a chain of nodes, such as "B0..B12"')
+    spacing: Any = Field(None, description='the width that the truss carries, such as "6.0 m"')
+    coefficient: Any = Field(None, description="a factor on the pressure, such as 0.8")
+    coefficients: dict[str, Any] = Field(
+        {}, description='factors by part of the chord, such as { "B0..B6" = 0.8, "B6..B12" = 0.4 }'
+    )
+    ridge: str | None = Field(None, description="the node between left and right")
+
+
+class RawLineLoad(RawTable):
+    """One entry of ``line_loads``."""
+
+    REQUIRED = ("load", "along", "chord")
+    load: Any = Field(None, description='a load per length, such as "1.5 kN/m"')
+    along: MeasuredAlong = Field("plan", description='"plan", "chord" or "height"')
+    chord: str = Field("", description='a chain of nodes, such as "B0..B12"')
+    direction: Any = Field("down", description='"down", "up", an axis such as "-x", or a vector')
+
+
+class RawPointLoad(RawTable):
+    """One entry of ``point_loads``: on a member at a distance, or at a position."""
+
+    REQUIRED = ("force",)
+    force: Any = Field(None, description="force components, such as [0.0, -9.6]")
+    member: str | None = Field(None, description='a member, such as "B3-B4"')
+    distance: Any = Field(None, description="the distance from the member's first node")
+    position: Any = Field(None, description="coordinates, such as [3.5, 2.0]")
 
 
 class RawCombination(RawTable):
@@ -200,6 +244,9 @@ class RawCarbon(RawTable):
     source: str = Field("", description="where the factors come from, as text")
     date: str = Field("", description='the date of the factors as text, such as "2026-10"')
 
+
+MOST_KEYS = 20
+"""Keys of one table named in a message: all of them."""
 
 Table = TypeVar("Table", bound=RawTable)
 
@@ -329,6 +376,9 @@ def _add_unknown_key(
     if key in RawBrief.model_fields and model is not RawBrief:
         fix = f"A key of the whole brief stands before the first table: move {key} there."
     findings.add(
-        place, found=f"the unknown key {quoted(key)}", expected=f"one of {listed(known)}", fix=fix
+        place,
+        found=f"the unknown key {quoted(key)}",
+        expected=f"one of {listed(known, most=MOST_KEYS)}",
+        fix=fix,
     )
     return near or key

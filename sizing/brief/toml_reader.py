@@ -54,7 +54,15 @@ def brief_from_tables(
     supports_known = nodes.whole and bool(supports) and len(findings) == before
     groups = read_groups(raw.groups, nodes, findings, quantities, present=present("groups"))
     check_truss(nodes, groups, findings)
-    cases = read_cases(raw.cases, nodes, findings, quantities, present=present("cases"))
+    cases = read_cases(
+        raw.cases,
+        nodes,
+        groups.members,
+        findings,
+        quantities,
+        present=present("cases"),
+        lump=raw.between_nodes == "lump",
+    )
     options = read_options(raw.options, findings, quantities, present=present("options"))
     require_rates(options, raw.minimise, findings)
     standards = [option.standard for option in options]
