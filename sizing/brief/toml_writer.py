@@ -9,6 +9,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Mapping
 from datetime import date, datetime, time
+from textwrap import wrap
 from typing import Any
 
 LINE = 100
@@ -26,12 +27,27 @@ _ESCAPES = {
 }  # fmt: skip
 
 
-def toml_text(tables: Mapping[str, Any]) -> str:
+Comments = Mapping[tuple[str, ...], str]
+"""Remarks by the path of a table, ``("cases", "snow")``; ``()`` is the head of the file."""
+
+
+def toml_text(tables: Mapping[str, Any], comments: Comments | None = None) -> str:
     """Return the tables as TOML: single values first, then one section for each table.
 
-    Raises :class:`TypeError` for a value that TOML has no form for (``None``).
+    ``comments`` stand above the head of their table. Raises :class:`TypeError` for a value that
+    TOML has no form for (``None``).
     """
-    return "\n\n".join("\n".join(block) for block in _blocks(tables)) + "\n"
+    remarks = comments or {}
+    blocks = [_comment_lines(remarks[()])] if () in remarks else []
+    for path, block in _blocks(tables):
+        blocks.append([*(_comment_lines(remarks[path]) if path in remarks else ()), *block])
+    return "\n\n".join("\n".join(block) for block in blocks) + "\n"
+
+
+def _comment_lines(text: str) -> list[str]:
+    return [
+        f"# {line}".rstrip() for part in text.split("\n") for line in wrap(part, LINE - 2) or [""]
+    ]
 
 
 def toml_key(name: str) -> str:
@@ -75,16 +91,22 @@ def _escaped(character: str) -> str:
     return f"\\u{code:04X}" if code <= 0xFFFF else f"\\U{code:08X}"
 
 
-def _blocks(tables: Mapping[str, Any]) -> Iterator[list[str]]:
+Block = tuple[tuple[str, ...], list[str]]
+"""The path of a table and its lines; the single values of the top level have the path ``(".",)``,
+which is that of no table."""
+
+
+def _blocks(tables: Mapping[str, Any]) -> Iterator[Block]:
     plain = {k: v for k, v in tables.items() if k in INLINE or not _is_section(v)}
     if plain:
-        yield [line for k, v in plain.items() for line in _lines(k, v)]
+        yield (".",), [line for k, v in plain.items() for line in _lines(k, v)]
     for key, value in tables.items():
         if key in plain:
             continue
         if isinstance(value, list):
-            for entry in value:
-                yield [f"[[{toml_key(key)}]]", *_entry_lines(entry)]
+            for place, entry in enumerate(value):
+                path = (key,) if place == 0 else (key, str(place))
+                yield path, [f"[[{toml_key(key)}]]", *_entry_lines(entry)]
         else:
             yield from _section((key,), value)
 
@@ -96,7 +118,7 @@ def _is_section(value: Any) -> bool:
     return isinstance(value, Mapping)
 
 
-def _section(path: tuple[str, ...], table: Mapping[str, Any]) -> Iterator[list[str]]:
+def _section(path: tuple[str, ...], table: Mapping[str, Any]) -> Iterator[Block]:
     """Yield the blocks of a table; what is too long for a line gets a head of its own."""
     headed = len(path) == 1 and path[0] in HEADED
     below = {
@@ -106,7 +128,7 @@ def _section(path: tuple[str, ...], table: Mapping[str, Any]) -> Iterator[list[s
     }
     own = {k: v for k, v in table.items() if k not in below}
     if own or not below:
-        yield [f"[{'.'.join(toml_key(p) for p in path)}]", *_entry_lines(own)]
+        yield path, [f"[{'.'.join(toml_key(p) for p in path)}]", *_entry_lines(own)]
     for key, value in below.items():
         yield from _section((*path, key), value)
 
