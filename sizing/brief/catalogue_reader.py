@@ -25,6 +25,7 @@ from pathlib import Path
 
 import numpy as np
 
+from sizing.brief.archives import MAGIC
 from sizing.brief.catalogue_checks import check_rows
 from sizing.brief.catalogue_heads import (
     Column,
@@ -45,7 +46,7 @@ from sizing.brief.catalogue_rows import (
     read_entries,
 )
 from sizing.brief.catalogue_text import LARGEST_FILE, TextProblemsError, decode, split
-from sizing.brief.catalogue_workbook import MAGIC, workbook_table
+from sizing.brief.catalogue_workbook import workbook_table
 from sizing.brief.model import SourceFile
 from sizing.brief.plain_files import PlainFileError, read_plain_file
 from sizing.brief.sections import Catalogue, FloatArray

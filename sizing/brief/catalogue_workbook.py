@@ -7,11 +7,11 @@ from __future__ import annotations
 
 import io
 import warnings
-import zipfile
 from collections.abc import Callable, Iterator
 from datetime import date, datetime, time
 from typing import Any
 
+from sizing.brief.archives import ArchiveError, open_archive
 from sizing.brief.catalogue_text import (
     MOST_TITLE_LINES,
     Row,
@@ -22,8 +22,7 @@ from sizing.brief.catalogue_text import (
 )
 from sizing.errors import Problem
 
-MAGIC = b"PK\x03\x04"
-LARGEST_UNPACKED = 60 * 1024 * 1024
+LARGEST_UNPACKED = 20 * 1024 * 1024
 """Bytes. Sheets pack about ten to one; more than this is no section table but a trap."""
 MOST_ROWS = 20_000
 MOST_COLUMNS = 200
@@ -74,17 +73,10 @@ def _head_place(rows: list[Row], looks_like_heads: Callable[[list[str]], bool]) 
 def _sheets(data: bytes, file: str) -> list[tuple[str, list[Row]]]:
     """Return the filled rows of every sheet."""
     try:
-        with zipfile.ZipFile(io.BytesIO(data)) as archive:
-            unpacked = sum(item.file_size for item in archive.infolist())
-        if unpacked > LARGEST_UNPACKED:
-            raise _refused(
-                file,
-                f"a workbook of {unpacked / 1024 / 1024:.0f} MiB unpacked",
-                f"at most {LARGEST_UNPACKED // 1024 // 1024} MiB",
-            )
+        open_archive(data, LARGEST_UNPACKED).close()
         return list(_loaded(data))
-    except TextProblemsError:
-        raise
+    except ArchiveError as error:
+        raise _refused(file, error.found, error.expected) from error
     except Exception as error:  # a damaged workbook fails in a dozen ways inside
         raise _refused(
             file, f"a damaged or foreign workbook ({type(error).__name__})", "an .xlsx workbook"
@@ -96,7 +88,9 @@ def _loaded(data: bytes) -> Iterator[tuple[str, list[Row]]]:
 
     with warnings.catch_warnings():
         warnings.simplefilter("ignore")  # features of the sheet that carry no numbers
-        book = openpyxl.load_workbook(io.BytesIO(data), read_only=True, data_only=True)
+        book = openpyxl.load_workbook(
+            io.BytesIO(data), read_only=True, data_only=True, keep_links=False
+        )
         for sheet in book.worksheets:
             filled = []
             rows = sheet.iter_rows(max_row=MOST_ROWS, max_col=MOST_COLUMNS, values_only=True)

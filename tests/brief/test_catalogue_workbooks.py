@@ -97,8 +97,8 @@ def test_empty_and_damaged_workbooks_are_refused(tmp_path: Path) -> None:
     )
     packed = io.BytesIO()
     with zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as archive:
-        archive.writestr("xl/workbook.xml", b"0" * (61 * 1024 * 1024))
+        archive.writestr("xl/workbook.xml", b"0" * (21 * 1024 * 1024))
     path.write_bytes(packed.getvalue())
     assert refused(tmp_path) == (
-        f"stock.xlsx: file: found a workbook of 61 MiB unpacked; expected at most 60 MiB. {advice}"
+        f"stock.xlsx: file: found a workbook of 21 MiB unpacked; expected at most 20 MiB. {advice}"
     )
