@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from sizing.brief.model import Brief
+from sizing.brief.model import Brief, DeflectionLimit
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.tables import Cell, Column, Table
@@ -65,13 +65,15 @@ def combinations_table(brief: Brief, option: OptionResult, units: ShownUnits) ->
     )
 
 
-def deflections_table(option: OptionResult, units: ShownUnits) -> Table:
+def deflections_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Table:
     """Return every deflection check."""
     movement = units.movement
+    kinds = {limit.name: _kind_of_movement(brief, limit) for limit in brief.deflection_limits}
     columns = (
         Column(head="Limit"),
         Column(head="Node"),
         Column(head="Direction"),
+        Column(head="Movement"),
         Column(head="Combination"),
         Column(head="Deflection", unit=movement.unit, style="number", places=movement.places),
         Column(head="Allowed", unit=movement.unit, style="number", places=movement.places),
@@ -84,6 +86,7 @@ def deflections_table(option: OptionResult, units: ShownUnits) -> Table:
             visible(d.limit_name),
             visible(d.node),
             visible(d.direction),
+            kinds.get(d.limit_name, ""),
             visible(d.combination),
             movement.of(d.value),
             movement.of(d.limit),
@@ -100,10 +103,19 @@ def deflections_table(option: OptionResult, units: ShownUnits) -> Table:
         columns=columns,
         rows=rows,
         notes=(
-            "Sign along the direction named. Elastic, pin-jointed; slip in joints is left out.",
+            "Sign along the direction named. Pin-jointed truss; slip in joints is left out.",
             *none,
         ),
     )
+
+
+def _kind_of_movement(brief: Brief, limit: DeflectionLimit) -> str:
+    """Return which movement is limited: elastic or final, less precamber, relative to a node."""
+    words = {"instantaneous": "elastic", "final": "final, with creep"}
+    kind = words.get(limit.component, "final, less precamber")
+    if limit.relative_to is None:
+        return kind
+    return f"{kind}; relative to {visible(brief.nodes[limit.relative_to].name)}"
 
 
 def reactions_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Table:

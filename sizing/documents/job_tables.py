@@ -1,4 +1,4 @@
-"""Tables of the whole job: cover, summary of options, nodes, loads, basis and cautions."""
+"""Tables of the whole job: cover, nodes, loads, basis and cautions."""
 
 from __future__ import annotations
 
@@ -7,9 +7,10 @@ from datetime import date
 from sizing.brief.model import Brief
 from sizing.documents.force_tables import axes
 from sizing.documents.plain_text import paragraphs, visible
-from sizing.documents.quantities import Quantity, ShownUnits
+from sizing.documents.quantities import ShownUnits
+from sizing.documents.summary_table import objective_text
 from sizing.documents.tables import Cell, Column, Table
-from sizing.documents.wording import CLOSING_CAUTION, listed, ratio, status_text, verdict
+from sizing.documents.wording import CLOSING_CAUTION, listed, status_text, verdict
 from sizing.results import JobResult, OptionResult
 
 ITEM_COLUMNS = (Column(head="Item"), Column(head="Entry", style="prose"))
@@ -32,6 +33,10 @@ def cover_table(job: JobResult, issued: date) -> Table:
     rows += [("Note", line) for line in paragraphs(brief.notes)]
     rows += [
         (f"Result, {visible(o.option)}", f"{verdict(o)}; {status_text(o)}") for o in job.options
+    ]
+    rows += [
+        (f"Result, {visible(name)}", f"no answer: {visible(why)}")
+        for name, why in job.without_answer
     ]
     rows += [
         ("Read first", CLOSING_CAUTION),
@@ -62,62 +67,6 @@ def _load_count(brief: Brief) -> str:
         f"{len(brief.cases)} load cases; {strength} strength and {service} serviceability "
         "combinations"
     )
-
-
-def summary_table(job: JobResult, units: ShownUnits) -> Table:
-    """Return one row per option: what it is, what it weighs, how sure that is."""
-    mass, total = units.mass, objective_quantity(job, units)
-    rows = tuple(
-        (
-            visible(o.option),
-            visible(o.standard),
-            visible(o.grade),
-            visible(o.catalogue),
-            mass.of(o.mass),
-            visible(o.objective_text),
-            total.of(o.objective),
-            total.of(o.bound) if o.bound is not None else "none",
-            100.0 * o.gap if o.gap is not None else "unknown",
-            ratio(o.utilisation),
-            len({s.designation for s in o.sections}),
-            "yes" if o.adequate else "NO",
-            f"{status_text(o)} ({visible(o.method)})",
-        )
-        for o in job.options
-    )
-    return Table(
-        name="Summary",
-        title="Summary of options",
-        columns=(
-            Column(head="Option"),
-            Column(head="Standard"),
-            Column(head="Grade"),
-            Column(head="Catalogue"),
-            Column(head="Mass of members", unit=mass.unit, style="number", places=mass.places),
-            Column(head="Minimised"),
-            Column(head="Total minimised", unit=total.unit, style="number", places=total.places),
-            Column(head="Lower bound", unit=total.unit, style="number", places=total.places),
-            Column(head="Gap", unit="%", style="number", places=2),
-            Column(head="Greatest utilisation", style="ratio"),
-            Column(head="Different sections", style="whole"),
-            Column(head="All checks met"),
-            Column(head="Lightest?", style="prose"),
-        ),
-        rows=rows,
-        notes=(
-            "Lower bound: no choice of sections from the catalogue that passes can total less.",
-            "Options are comparable only if loads, limits and restraint are the same for each.",
-        ),
-    )
-
-
-def objective_quantity(job: JobResult, units: ShownUnits) -> Quantity:
-    """Return the unit of what was minimised."""
-    if job.brief.minimise == "mass":
-        return units.mass
-    if job.brief.minimise == "carbon":
-        return Quantity(unit="kg CO2e", scale=1.0, places=1)
-    return Quantity(unit="currency of the catalogue", scale=1.0, places=2)
 
 
 def nodes_table(brief: Brief, units: ShownUnits) -> Table:
@@ -181,8 +130,7 @@ def loads_table(brief: Brief, units: ShownUnits) -> Table:
 
 def basis_table(job: JobResult, option: OptionResult, units: ShownUnits) -> Table:
     """Return the basis of design of one option."""
-    total = objective_quantity(job, units)
-    bound = "none" if option.bound is None else total.text(option.bound)
+    bound = "none" if option.bound is None else objective_text(job, units, option.bound)
     gap = "unknown" if option.gap is None else f"{100.0 * option.gap:.2f} %"
     rows: list[tuple[Cell, ...]] = [
         ("Standard", visible(f"{option.standard} {option.edition}".strip())),

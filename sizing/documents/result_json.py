@@ -8,6 +8,7 @@ square metre; ratios have no unit; tension positive)::
     brief            title, file, sha256, minimise, dimensions
     nodes            node name -> {position_m, held}
     options          option name -> one answer, see below
+    without_answer   option name -> reason
 
 :func:`field_descriptions` describes each key of the file and of one answer. A number that does
 not exist (no bound, no limit, a utilisation on no resistance) is ``null``; ``adequate`` then
@@ -40,6 +41,7 @@ _FIELDS = (
     ("brief", "title, file name, SHA-256, what was minimised, dimensions, and its print units"),
     ("nodes", "by node name: position_m (coordinates), held (axes along which it is supported)"),
     ("options", "by option name: one answer each, with the keys below"),
+    ("without_answer", "by option name: why no choice of sections passes"),
     ("options.*.status", "proven, within gap, stopped, or checked (given sections)"),
     ("options.*.adequate", "true when every check of members and deflections is met"),
     ("options.*.mass_kg", "mass of all members, bare sections over system lengths"),
@@ -50,6 +52,12 @@ _FIELDS = (
     ("options.*.gap", "(objective - bound) / objective, 0 when proven, null where unknown"),
     ("options.*.analyses", "exact structural analyses that the search took"),
     ("options.*.seconds", "time that the search took; the only entry that varies between runs"),
+    ("options.*.cost", "cost of the members by the rates of the brief, null without rates"),
+    ("options.*.currency", "currency of the cost, empty without rates"),
+    ("options.*.carbon_a1_a3_kgCO2e", "embodied carbon, modules A1 to A3 of EN 15804, or null"),
+    ("options.*.biogenic_kgCO2e", "carbon stored in the material (negative), apart, or null"),
+    ("options.*.volume_m3", "volume of all members"),
+    ("options.*.outer_surface_m2", "outer surface of all members, null where not known"),
     ("options.*.method", "what found and bounded the answer, in words"),
     ("options.*.standard", "name and edition of the standard"),
     ("options.*.grade", "grade or strength class"),
@@ -118,6 +126,7 @@ def result_document(job: JobResult) -> dict[str, Any]:
             for i, node in enumerate(brief.nodes)
         },
         "options": {option.option: _option(job, option) for option in job.options},
+        "without_answer": dict(job.without_answer),
     }
 
 
@@ -133,7 +142,7 @@ def _option(job: JobResult, option: OptionResult) -> dict[str, Any]:
     names = [c.name for c in option.combinations]
     return {
         "status": option.status,
-        "adequate": option.adequate,
+        "adequate": bool(option.adequate),
         "mass_kg": _number(option.mass),
         "objective": _number(option.objective),
         "minimised": option.objective_text,
@@ -142,6 +151,12 @@ def _option(job: JobResult, option: OptionResult) -> dict[str, Any]:
         "gap": _number(option.gap),
         "analyses": int(option.analyses),
         "seconds": _number(option.seconds),
+        "cost": _number(option.cost),
+        "currency": option.currency,
+        "carbon_a1_a3_kgCO2e": _number(option.carbon),
+        "biogenic_kgCO2e": _number(option.biogenic),
+        "volume_m3": _number(option.volume),
+        "outer_surface_m2": _number(option.surface),
         "method": option.method,
         "utilisation": _number(option.utilisation),
         "standard": {"name": option.standard, "edition": option.edition},

@@ -17,7 +17,6 @@ from sizing.documents.job_tables import (
     cover_table,
     loads_table,
     nodes_table,
-    summary_table,
 )
 from sizing.documents.option_tables import (
     groups_table,
@@ -26,6 +25,7 @@ from sizing.documents.option_tables import (
     sections_table,
 )
 from sizing.documents.quantities import ShownUnits, shown_units
+from sizing.documents.summary_table import summary_table
 from sizing.documents.tables import Table
 from sizing.results import JobResult, OptionResult
 
@@ -62,7 +62,7 @@ def option_tables(job: JobResult, option: OptionResult, units: ShownUnits) -> tu
         sections_table(option, units),
         groups_table(brief, option, units),
         combinations_table(brief, option, units),
-        deflections_table(option, units),
+        deflections_table(brief, option, units),
         reactions_table(brief, option, units),
         joint_forces_table(brief, option, units),
         restraint_table(brief, option, units),

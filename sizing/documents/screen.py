@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 from sizing.documents.plain_text import shortened, visible
 from sizing.documents.quantities import shown_units
+from sizing.documents.summary_table import objective_text
 from sizing.documents.wording import met, outcome_sentence
 from sizing.results import JobResult, OptionResult
 
@@ -33,6 +34,10 @@ def print_result(result: JobResult, console: Console | None = None) -> None:
         screen.print(_group_table(option, write))
         for line in _closing(option):
             screen.print(write.text(line))
+    for name, reason in result.without_answer:
+        words = f"Option {visible(name)}: no answer. {visible(reason)}"
+        screen.print()
+        screen.print(write.text(shortened(words, 6 * LONGEST_NAME)))
 
 
 class _Writer:
@@ -53,9 +58,11 @@ class _Writer:
 def _headline(result: JobResult, option: OptionResult) -> list[str]:
     units = shown_units(result.brief.units)
     facts = [f"Members {units.mass.text(option.mass)}"]
+    if result.brief.minimise != "mass":
+        total = objective_text(result, units, option.objective)
+        facts.append(f"{result.brief.minimise} {total}")
     if option.bound is not None:
-        is_mass = result.brief.minimise == "mass"
-        least = units.mass.text(option.bound) if is_mass else f"{option.bound:.1f}"
+        least = objective_text(result, units, option.bound)
         facts.append(f"lower bound {least} ({result.brief.minimise})")
     if option.gap is not None:
         facts.append(f"gap {100.0 * option.gap:.2f} %")

@@ -43,7 +43,7 @@ def status_text(option: OptionResult) -> str:
 
 def met(utilisation: float) -> bool:
     """Return whether a check is met: utilisation at most 1, rounding apart."""
-    return utilisation <= 1.0 + FEASIBILITY_TOLERANCE
+    return bool(utilisation <= 1.0 + FEASIBILITY_TOLERANCE)
 
 
 def verdict(option: OptionResult) -> str:
