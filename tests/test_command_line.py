@@ -86,7 +86,7 @@ def test_sections_that_fail_are_reported_with_exit_code_1(market_hall, tmp_path)
     _, folder = market_hall
     data = json.loads((folder / "result.json").read_text(encoding="utf-8"))
     groups = dict(data["options"]["steel"]["sections"])
-    weak = {name: "SHS 60x60x3" for name in groups}
+    weak = dict.fromkeys(groups, "SHS 60x60x3")
     lines = ["[sections.steel]", *(f'{name} = "{s}"' for name, s in weak.items())]
     (tmp_path / "weak.toml").write_text("\n".join(lines), encoding="utf-8")
     done = sizing(

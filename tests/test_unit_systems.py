@@ -16,12 +16,13 @@ def in_us_units(text):
     rows = []
     for line in text.splitlines():
         node = re.fullmatch(r"(\w+) = \[([-\d.]+), ([-\d.]+)\]", line)
+        new = line
         if node:
             force = node[2] == "0"
             unit = KIP if force else FOOT
             x, y = (float(node[k]) / unit for k in (2, 3))
-            line = f"{node[1]} = [{x!r}, {y!r}]"
-        rows.append(line)
+            new = f"{node[1]} = [{x!r}, {y!r}]"
+        rows.append(new)
     return "\n".join(rows)
 
 
