@@ -21,6 +21,7 @@ from sizing.documents.view_drawing import (
     COMPRESSION,
     NONE,
     TENSION,
+    TYPE,
     DrawnView,
     draw_view,
     line_width,
@@ -30,6 +31,9 @@ from sizing.results import JobResult, OptionResult
 
 SHORTEST, MANY = 130.0, 60
 """Wanted px of a short member, for room beside it; halved from ``MANY`` members on."""
+
+NODE_ROOM = 34.0
+"""Px along a member that the names of its nodes take beside its own label."""
 
 SMALLEST_SIDE, GREATEST_SIDE = 460.0, 4600.0
 """Extent in px of the truss itself, between which the scale may move."""
@@ -89,7 +93,7 @@ def _drawing(job: JobResult, option: OptionResult) -> Xml.Element:
 def _sheet(job: JobResult, option: OptionResult) -> Sheet:
     units = shown_units(job.brief.units)
     views = views_of(job.brief)
-    scale = _scale(job, views[0])
+    scale = _scale(job, option, views[0])
     drawn = [draw_view(job.brief, option, view, scale, units) for view in views]
     places, width, height = _arrange(drawn)
     width = max(width, NARROWEST_SHEET - 2 * BORDER)
@@ -101,11 +105,13 @@ def _sheet(job: JobResult, option: OptionResult) -> Sheet:
     return Sheet(paper, width + 2 * BORDER, bottom)
 
 
-def _scale(job: JobResult, view: View) -> float:
+def _scale(job: JobResult, option: OptionResult, view: View) -> float:
     """Return px per m: a short member gets room for its mark, the whole stays bounded."""
     lengths = sorted(math.dist(view.points[m.start], view.points[m.end]) for m in job.brief.members)
     short = lengths[len(lengths) // 4] or lengths[-1] or 1.0
-    wanted = SHORTEST if len(lengths) <= MANY else SHORTEST / 2
+    labels = (text_width(f"{m.mark} {m.designation}", TYPE) for m in option.members)
+    room = min(max(SHORTEST, max(labels, default=0.0) + NODE_ROOM), 2 * SHORTEST)
+    wanted = room if len(lengths) <= MANY else SHORTEST / 2
     left, bottom, right, top = view.box
     extent = max(right - left, top - bottom) or 1.0
     return min(max(wanted / short, SMALLEST_SIDE / extent), GREATEST_SIDE / extent)

@@ -106,7 +106,18 @@ def deflections_table(brief: Brief, option: OptionResult, units: ShownUnits) -> 
             "Sign along the direction named. Pin-jointed truss; slip in joints is left out.",
             *none,
         ),
+        deciding=_worst_deflections(option),
     )
+
+
+def _worst_deflections(option: OptionResult) -> tuple[int, ...]:
+    """Return the rows with the greatest utilisation of each limit at each node."""
+    worst: dict[tuple[str, str], int] = {}
+    for i, d in enumerate(option.deflections):
+        best = worst.setdefault((d.limit_name, d.node), i)
+        if d.utilisation > option.deflections[best].utilisation:
+            worst[d.limit_name, d.node] = i
+    return tuple(sorted(worst.values()))
 
 
 def _kind_of_movement(brief: Brief, limit: DeflectionLimit) -> str:
@@ -122,7 +133,7 @@ def reactions_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Ta
     """Return the reaction of every support in every combination, uplift told by word."""
     force = units.force.fitted(r for e in option.reactions for r in e.components)
     held = {brief.nodes[s.node].name: s.held for s in brief.supports}
-    noise = NO_REACTION * max((abs(r) for e in option.reactions for r in e.components), default=0.0)
+    noise = _reaction_noise(option)
     columns = (
         Column(head="Support at node"),
         Column(head="Combination"),
@@ -153,7 +164,27 @@ def reactions_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Ta
             "up. Combinations as factored: strength values are design values.",
             "Uplift: the support must hold the truss down.",
         ),
+        deciding=_extreme_reactions(option),
     )
+
+
+def _reaction_noise(option: OptionResult) -> float:
+    return NO_REACTION * max((abs(r) for e in option.reactions for r in e.components), default=0.0)
+
+
+def _extreme_reactions(option: OptionResult) -> tuple[int, ...]:
+    """Return the rows with the greatest and least of each component per support and state."""
+    alike: dict[tuple[str, str], list[int]] = {}
+    for i, entry in enumerate(option.reactions):
+        alike.setdefault((entry.node, entry.state), []).append(i)
+    noise = _reaction_noise(option)
+    kept: set[int] = set()
+    for rows in alike.values():
+        for axis in range(len(option.reactions[rows[0]].components)):
+            values = [option.reactions[i].components[axis] for i in rows]
+            if max(map(abs, values)) > noise:
+                kept |= {rows[values.index(max(values))], rows[values.index(min(values))]}
+    return tuple(sorted(kept))
 
 
 def _components(

@@ -35,7 +35,7 @@ def summary_table(job: JobResult, units: ShownUnits) -> Table:
         Column(head="Lower bound", unit=total.unit, style="number", places=total.places),
         Column(head="Gap", unit="%", style="number", places=2),
         Column(head="Greatest utilisation", style="ratio"),
-        Column(head="of it in deflection", style="ratio"),
+        Column(head="Deflection utilisation", style="ratio"),
         Column(head="Different sections", style="whole"),
         Column(head="All checks met"),
         Column(head="Lightest?", style="prose"),

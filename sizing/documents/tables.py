@@ -42,7 +42,8 @@ class Table:
 
     ``notes`` are short lines between title and heads. ``totals`` is a last row as wide as the
     columns. The first ``keys`` columns stay in sight when the table is wider than the page;
-    ``pages_wide`` is how many pages wide it prints.
+    ``pages_wide`` is how many pages wide it prints. ``deciding`` are the rows that stand in the
+    report, where the table is too long for it (None: all of them).
     """
 
     name: str
@@ -54,15 +55,21 @@ class Table:
     keys: int = 1
     pages_wide: int = 1
     large_paper: bool = False
+    deciding: tuple[int, ...] | None = None
 
 
 def essential_part(table: Table) -> Table:
-    """Return the table without its columns that are not essential."""
+    """Return the table with its deciding rows and without columns that are not essential."""
     kept = [j for j, column in enumerate(table.columns) if column.essential]
+    rows = range(len(table.rows)) if table.deciding is None else table.deciding
+    left_out = len(table.rows) - len(rows)
+    note = f"Deciding rows only; the workbook holds {left_out} more."
     return replace(
         table,
         columns=tuple(table.columns[j] for j in kept),
-        rows=tuple(tuple(row[j] for j in kept) for row in table.rows),
+        rows=tuple(tuple(table.rows[i][j] for j in kept) for i in rows),
+        notes=(*table.notes, note) if left_out else table.notes,
+        deciding=None,
         totals=tuple(table.totals[j] for j in kept) if table.totals is not None else None,
     )
 

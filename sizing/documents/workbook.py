@@ -6,6 +6,7 @@ formulas, no macros and no merged cells. The file's bytes depend on the tables a
 
 from __future__ import annotations
 
+import math
 import re
 import zipfile
 from collections.abc import Iterable
@@ -34,6 +35,9 @@ WIDEST_TEXT, WIDEST_PROSE, NARROWEST = 46, 60, 5
 
 CHARACTER, BOLD_HEAD = 0.85, 1.1
 """Width of a character of 9 point type in column units (an 11 point digit); bold over regular."""
+
+TITLE_ROOM, EMPTY_COLUMN = 118.0, 8.43
+"""Column units that title and notes may take on a page, and those of an untouched column."""
 
 SLACK = 0.6
 """Characters by which a text may exceed its column before it is taken to wrap (rounding)."""
@@ -288,7 +292,7 @@ def _page(
     sheet.freeze_panes = sheet.cell(row=head + 1, column=keys + 1)
     if table.rows and not items:
         sheet.auto_filter.ref = f"A{head}:{right}{last}"
-    sheet.print_area = f"A1:{right}{bottom}"
+    sheet.print_area = f"A1:{get_column_letter(_columns_to_print(sheet, table))}{bottom}"
     sheet.print_title_rows = f"1:{head}"
     if table.pages_wide > 1:
         sheet.print_title_cols = f"A:{get_column_letter(keys)}"
@@ -309,6 +313,13 @@ def _page(
     for part in (sheet.oddHeader.left, sheet.oddHeader.right, sheet.oddFooter.left,
                  sheet.oddFooter.center, sheet.oddFooter.right):  # fmt: skip
         part.size = 8
+
+
+def _columns_to_print(sheet: Worksheet, table: Table) -> int:
+    """Return how many columns to print: beyond a narrow table, so that its title is not cut."""
+    width = sum(dimension.width for dimension in sheet.column_dimensions.values())
+    beyond = math.ceil((TITLE_ROOM - float(width)) / EMPTY_COLUMN)
+    return len(table.columns) + max(0, beyond)
 
 
 def _signing_boxes(sheet: Worksheet, looks: _Looks) -> None:

@@ -132,3 +132,17 @@ def test_small_trusses_keep_three_figures():
     assert force.fitted([123e3]).places == 1
     assert force.fitted([]).places == 1
     assert force.fitted([0.0, math.inf]).places == 1
+
+
+def test_report_keeps_the_deciding_rows(large_job):
+    """Of many combinations the report shows the extreme reactions and the worst deflections."""
+    tables = {t.name: t for t in job_tables(large_job, ISSUED).by_option[0][1]}
+    reactions, short = tables["Reactions"], essential_part(tables["Reactions"])
+    assert len(short.rows) < len(reactions.rows)
+    for node in {row[0] for row in reactions.rows}:
+        vertical = [row[4] for row in reactions.rows if row[0] == node and row[2] == "strength"]
+        kept = [row[4] for row in short.rows if row[0] == node and row[2] == "strength"]
+        assert (max(kept), min(kept)) == (max(vertical), min(vertical))
+    more = len(reactions.rows) - len(short.rows)
+    assert short.notes[-1] == f"Deciding rows only; the workbook holds {more} more."
+    assert essential_part(short) == short
