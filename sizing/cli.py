@@ -104,7 +104,7 @@ def compare_command(
 ) -> None:
     """Pick every option of the brief and set the answers side by side."""
     from sizing.brief.toml_reader import read_brief
-    from sizing.documents.screen import print_comparison
+    from sizing.documents.side_by_side import print_comparison
     from sizing.job import compare_job
 
     asked = read_brief(brief)
@@ -123,7 +123,7 @@ def catalogue_command(
 ) -> None:
     """Check a section catalogue and print what was understood of it."""
     from sizing.brief.catalogue_reader import read_catalogue
-    from sizing.documents.screen import print_catalogue
+    from sizing.documents.side_by_side import print_catalogue
 
     print_catalogue(read_catalogue(file, Path.cwd()))
 

@@ -25,7 +25,7 @@ def print_result(result: JobResult, console: Console | None = None) -> None:
     from rich.console import Console
 
     screen = console or Console(highlight=False)
-    write = _Writer(screen.encoding or "ascii")
+    write = ScreenWriter(screen.encoding or "ascii")
     screen.print(write.text(shortened(visible(result.brief.title), LONGEST_NAME), "bold"))
     for option in result.options:
         screen.print()
@@ -40,7 +40,7 @@ def print_result(result: JobResult, console: Console | None = None) -> None:
         screen.print(write.text(shortened(words, 6 * LONGEST_NAME)))
 
 
-class _Writer:
+class ScreenWriter:
     """Makes text for one screen: never read as markup, nothing its encoding cannot show."""
 
     def __init__(self, encoding: str) -> None:
@@ -75,7 +75,7 @@ def _headline(result: JobResult, option: OptionResult) -> list[str]:
     ]
 
 
-def _group_table(option: OptionResult, write: _Writer) -> Table:
+def _group_table(option: OptionResult, write: ScreenWriter) -> Table:
     from rich import box
     from rich.table import Table
 
