@@ -30,7 +30,8 @@ def write_documents(
     ``folder`` is made where it is missing. ``issued`` is the date on the documents; by default
     :func:`issue_date`. Everything is rendered before the first byte is written, each file is
     written beside its place and then renamed, and a failed rename undoes the earlier ones, so
-    that a failure leaves the folder as it was.
+    that a failure leaves the folder as it was. (Only a power cut between two renames can leave
+    old files aside, as hidden files that end in ``.old``.)
 
     Raises :class:`OutputError` with file and reason.
     """
@@ -117,18 +118,19 @@ def replace_all(folder: Path, contents: dict[str, bytes]) -> tuple[Path, ...]:
 
 def _make(folder: Path) -> tuple[Path, ...]:
     """Make ``folder`` and return the folders made, the deepest first."""
-    missing = [p for p in (folder, *folder.parents) if not p.exists()]
     made: list[Path] = []
     try:
-        if folder.exists() and not folder.is_dir():
+        missing = [p for p in (folder, *folder.parents) if not p.exists()]
+        if not missing and not folder.is_dir():
             raise NotADirectoryError(None, "it is a file, not a folder")
         for path in reversed(missing):
             path.mkdir(exist_ok=True)
             made.insert(0, path)
-    except OSError as failure:
+    except (OSError, ValueError) as failure:  # ValueError: a name that no file system takes
         _remove(made)
+        reason = getattr(failure, "strerror", None) or failure
         raise OutputError(
-            f"{folder}: cannot be used as folder for documents: {failure.strerror or failure}. "
+            f"{folder}: cannot be used as folder for documents: {reason}. "
             "Name a folder that can be written to"
         ) from failure
     return tuple(made)

@@ -131,6 +131,14 @@ def test_a_file_in_place_of_the_folder_is_refused(girder_job, tmp_path):
     assert file.read_text() == "mine"
 
 
+@pytest.mark.parametrize("name", ["x" * 300, "a\0b", "/proc/none/here"])
+def test_impossible_folders_are_refused_in_words(name, tmp_path):
+    """Names that no file system takes and places where nothing can be made: a plain message."""
+    with pytest.raises(OutputError, match="cannot be used as folder for documents"):
+        replace_all(tmp_path / "new" / name, {"a.txt": b"a"})
+    assert list(tmp_path.iterdir()) == []
+
+
 def test_a_folder_in_place_of_a_document_is_refused(tmp_path):
     """A folder named like a document is neither removed nor written over."""
     (tmp_path / "b.txt").mkdir()
