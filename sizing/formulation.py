@@ -157,9 +157,16 @@ def _setting_refused(brief: Brief, option: Option, error: SettingsError) -> Inpu
 
 
 def _require_one_method(brief: Brief, option: Option, standard: Standard) -> None:
-    """Refuse factored (LRFD) combinations with allowable (ASD) resistances and the reverse."""
+    """Refuse factored (LRFD) combinations with allowable (ASD) resistances and the reverse.
+
+    The resistances of an EN standard are design values: service-level (ASD) combinations would
+    leave the partial factors of actions out altogether.
+    """
     method = dict(standard.basis()).get("Method", "").split(",")[0]
-    other = {"LRFD": "ASD", "ASD": "LRFD"}.get(method)
+    fix = 'Write method = "{other}", or take the {method} combination rule.'
+    if standard.name.startswith("EN "):
+        method, fix = "design", 'Take the combination rule "EN 1990" (or one of LRFD).'
+    other = {"LRFD": "ASD", "ASD": "LRFD", "design": "ASD"}.get(method)
     if other is None:
         return
     mixed = [
@@ -175,7 +182,7 @@ def _require_one_method(brief: Brief, option: Option, standard: Standard) -> Non
                     place=f"options.{option.name}.method",
                     found=f"{method} resistances with {other} combinations ({mixed[0]} and others)",
                     expected="resistances and combinations of one method",
-                    fix=f'Write method = "{other}", or take the {method} combination rule.',
+                    fix=fix.format(other=other, method=method),
                 )
             ]
         )
