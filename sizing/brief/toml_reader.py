@@ -1,14 +1,18 @@
-"""Reading a brief: a TOML file in, a valid :class:`~sizing.brief.model.Brief` in SI units out."""
+"""Reading a brief: a file in, a valid :class:`~sizing.brief.model.Brief` in SI units out.
+
+The file is TOML, or a workbook with one sheet per table (:mod:`sizing.brief.workbook_reader`).
+"""
 
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from sizing.brief.combinations import named_place, read_combinations
 from sizing.brief.deflections import read_deflection_limits
-from sizing.brief.findings import Findings, KeyPath, Quantities, key_path_text
+from sizing.brief.findings import Findings, KeyPath, Quantities, key_path_text, quoted
 from sizing.brief.groups_and_members import read_groups
 from sizing.brief.load_cases import read_cases
 from sizing.brief.model import Brief, SourceFile, Units
@@ -17,6 +21,7 @@ from sizing.brief.options import read_options, require_rates
 from sizing.brief.raw_tables import RawBrief, RawUnits, read_entry
 from sizing.brief.toml_file import load_toml
 from sizing.brief.truss_checks import check_truss
+from sizing.errors import InputError, Problem
 
 
 def read_brief(path: Path) -> Brief:
@@ -25,8 +30,27 @@ def read_brief(path: Path) -> Brief:
     Raises :class:`~sizing.errors.InputError` with all mistakes of the file at once: each with
     its place, what was found, what belongs there and the likely fix.
     """
-    source, tables = load_toml(path)
-    return brief_from_tables(tables, source)
+    if not path.is_file() or path.suffix.casefold() == ".toml":
+        source, tables = load_toml(path)
+        return brief_from_tables(tables, source)
+    from sizing.brief.workbook_reader import load_workbook_brief  # slow: it needs openpyxl
+
+    if path.suffix.casefold() != ".xlsx":
+        raise InputError([_foreign(path)])
+    book = load_workbook_brief(path)
+    brief = brief_from_tables(book.tables, book.source, book.places)
+    return replace(brief, cautions=(*book.cautions, *brief.cautions))
+
+
+def _foreign(path: Path) -> Problem:
+    spreadsheets = (".xls", ".xlsm", ".xlsb", ".ods", ".csv")
+    return Problem(
+        file=str(path),
+        place="the file",
+        found=f"a name that ends in {quoted(path.suffix)}" if path.suffix else "a name without end",
+        expected="a brief, a file .toml or .xlsx",
+        fix="Save it as .xlsx." if path.suffix.casefold() in spreadsheets else "",
+    )
 
 
 def brief_from_tables(
