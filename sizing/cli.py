@@ -56,7 +56,9 @@ app = typer.Typer(
     ),
 )
 
-BriefPath = Annotated[Path, typer.Argument(metavar="BRIEF", help="The brief, a TOML file.")]
+BriefPath = Annotated[
+    Path, typer.Argument(metavar="BRIEF", help="The brief: a TOML file or a workbook (.xlsx).")
+]
 OutFolder = Annotated[
     Path | None, typer.Option("--out", metavar="DIR", help="Folder for the documents.")
 ]
@@ -126,6 +128,21 @@ def catalogue_command(
     from sizing.documents.side_by_side import print_catalogue
 
     print_catalogue(read_catalogue(file, Path.cwd()))
+
+
+@app.command("convert")
+def convert_command(
+    brief: BriefPath,
+    file: Annotated[
+        Path, typer.Argument(metavar="FILE", help="The new file, .xlsx or .toml; none is replaced.")
+    ],
+) -> None:
+    """Write a brief as a workbook, or a workbook as text; both hold the same."""
+    from sizing.brief.conversion import convert_brief
+
+    for remark in convert_brief(brief, file):
+        typer.echo(remark, err=True)
+    typer.echo(f"written: {file}")
 
 
 @app.command("check")

@@ -30,26 +30,39 @@ def read_brief(path: Path) -> Brief:
     Raises :class:`~sizing.errors.InputError` with all mistakes of the file at once: each with
     its place, what was found, what belongs there and the likely fix.
     """
-    if not path.is_file() or path.suffix.casefold() == ".toml":
+    if refuse_foreign(path) == ".toml":
         source, tables = load_toml(path)
         return brief_from_tables(tables, source)
     from sizing.brief.workbook_reader import load_workbook_brief  # slow: it needs openpyxl
 
-    if path.suffix.casefold() != ".xlsx":
-        raise InputError([_foreign(path)])
     book = load_workbook_brief(path)
     brief = brief_from_tables(book.tables, book.source, book.places)
     return replace(brief, cautions=(*book.cautions, *brief.cautions))
 
 
-def _foreign(path: Path) -> Problem:
+def refuse_foreign(path: Path) -> str:
+    """Return the kind of brief, ``.toml`` or ``.xlsx``, by the file's name.
+
+    Raises :class:`~sizing.errors.InputError` for a file of another name; what is no file counts
+    as TOML here and is told when it is opened.
+    """
+    suffix = path.suffix.casefold()
+    try:
+        if suffix in (".toml", ".xlsx") or not path.is_file():
+            return suffix if suffix == ".xlsx" else ".toml"
+    except (OSError, ValueError):
+        return ".toml"
     spreadsheets = (".xls", ".xlsm", ".xlsb", ".ods", ".csv")
-    return Problem(
-        file=str(path),
-        place="the file",
-        found=f"a name that ends in {quoted(path.suffix)}" if path.suffix else "a name without end",
-        expected="a brief, a file .toml or .xlsx",
-        fix="Save it as .xlsx." if path.suffix.casefold() in spreadsheets else "",
+    raise InputError(
+        [
+            Problem(
+                file=str(path),
+                place="the file",
+                found=f"a name that ends in {quoted(path.suffix)}" if suffix else "no ending",
+                expected="a brief, a file .toml or .xlsx",
+                fix="Save it as .xlsx." if suffix in spreadsheets else "",
+            )
+        ]
     )
 
 
