@@ -1,4 +1,4 @@
-"""Exact analysis of one design or of many: forces, movements, utilisations, sensitivities.
+"""Exact analysis of one design or of many: forces, movements, utilisations.
 
 Every design solved counts as one analysis, whether alone or in a batch. Small trusses are solved
 with dense matrices (a batch in one call), large ones with a sparse factorisation.
@@ -63,28 +63,27 @@ class Evaluation:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class Response:
+    """What a truss with group flexibilities y = 1/(EA) and self-weights w (g,) does.
+
+    displacements (n, q) and case_forces (m, q) per load case, forces (m, c), movements (r,).
+    """
+
+    y: FloatArray
+    w: FloatArray
+    displacements: FloatArray
+    case_forces: FloatArray
+    forces: FloatArray
+    movements: FloatArray
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class BatchEvaluation:
     """Many designs (b, g) at once: objective, worst utilisation and feasibility (b,)."""
 
     objective: FloatArray
     worst: FloatArray
     feasible: BoolArray
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Sensitivities:
-    """First derivatives at one design.
-
-    force_per_flexibility    (g, m, c)  dN/dy_g, y_g = 1/(EA)_g
-    movement_per_flexibility (g, r)
-    force_per_weight         (g, m, c)  dN/dw_g, w_g = self-weight per length of group g
-    movement_per_weight      (g, r)
-    """
-
-    force_per_flexibility: FloatArray
-    movement_per_flexibility: FloatArray
-    force_per_weight: FloatArray
-    movement_per_weight: FloatArray
 
 
 class DesignAnalysis:
@@ -145,10 +144,18 @@ class DesignAnalysis:
         """Return whether the design has been analysed before."""
         return np.ascontiguousarray(sections, dtype=np.intp).tobytes() in self._known
 
-    def _evaluate(self, sections: IntArray) -> Evaluation:
+    def respond(self, y: FloatArray, w: FloatArray) -> Response:
+        """Analyse a truss whose groups lie between sections; counts as one analysis.
+
+        Raises UnstableTrussError when the stiffness matrix cannot be solved.
+        """
+        self.count += 1
+        return self._respond(y, w)
+
+    def _respond(self, y: FloatArray, w: FloatArray) -> Response:
         problem = self.problem
-        k = self.member_stiffness(sections)
-        p = self.loads(sections)
+        k = 1.0 / (y[problem.group] * problem.length)
+        p = problem.loads + np.outer(self._group_loads @ w, problem.self_weight_factor)
         u = self.solve(k, p)
         case_forces = k[:, None] * (self._compatibility @ u)
         # One step of refinement on equilibrium: the forces then balance the loads to rounding,
@@ -158,8 +165,19 @@ class DesignAnalysis:
         u = u + du
         case_forces = case_forces + k[:, None] * (self._compatibility @ du)
         self._check_balance(case_forces, p)
-        forces = case_forces @ problem.strength_factors.T
-        movements = np.einsum("rq,rq->r", self._vectors @ u, problem.deflection_factors)
+        return Response(
+            y=y,
+            w=w,
+            displacements=u,
+            case_forces=case_forces,
+            forces=case_forces @ problem.strength_factors.T,
+            movements=np.einsum("rq,rq->r", self._vectors @ u, problem.deflection_factors),
+        )
+
+    def _evaluate(self, sections: IntArray) -> Evaluation:
+        problem = self.problem
+        found = self._respond(1.0 / problem.stiffness[sections], problem.weight[sections])
+        u, forces, movements = found.displacements, found.forces, found.movements
         strength = self._strength(sections, forces)
         deflection = self._deflection(movements, float(np.abs(u).max(initial=0.0)))
         worst = max(float(strength.max(initial=0.0)), float(deflection.max(initial=0.0)))
@@ -168,7 +186,7 @@ class DesignAnalysis:
             sections=sections,
             objective=problem.objective(sections),
             displacements=u,
-            case_forces=case_forces,
+            case_forces=found.case_forces,
             forces=forces,
             movements=movements,
             strength=strength,
@@ -262,37 +280,6 @@ class DesignAnalysis:
 
     def _deflection(self, movements: FloatArray, scale: float) -> FloatArray:
         return _ratio(np.abs(movements), self.problem.deflection_limit, NO_MOVEMENT * scale)
-
-    def sensitivities(self, evaluation: Evaluation) -> Sensitivities:
-        """First derivatives at an analysed design (no further analysis is counted).
-
-        With F = K⁻¹ Bᵀ:  dN/dy_g = -(1/y_g) [N on g's members - k B F_g N_g],
-        du/dy_g = (1/y_g) F_g N_g,  du/dw_g = K⁻¹ · (self-weight load of g per unit weight).
-        """
-        problem = self.problem
-        k = self.member_stiffness(evaluation.sections)
-        F = self.solve(k, self._dense.T)
-        own = self.solve(k, self._group_loads)
-        stiffness = problem.stiffness[evaluation.sections]
-        vector_rows = self._vectors @ F
-        combined = evaluation.case_forces @ problem.deflection_factors.T
-        shape = (problem.groups, *evaluation.forces.shape)
-        force, movement = np.empty(shape), np.empty((problem.groups, problem.deflection_limit.size))
-        for g in range(problem.groups):
-            inside = problem.group == g
-            spread = k[:, None] * (self._compatibility @ (F[:, inside] @ evaluation.forces[inside]))
-            spread[inside] -= evaluation.forces[inside]
-            force[g] = stiffness[g] * spread
-            movement[g] = stiffness[g] * np.einsum(
-                "ri,ir->r", vector_rows[:, inside], combined[inside]
-            )
-        own_forces = (k[:, None] * (self._compatibility @ own)).T
-        return Sensitivities(
-            force_per_flexibility=force,
-            movement_per_flexibility=movement,
-            force_per_weight=own_forces[:, :, None] * self._strength_self_weight,
-            movement_per_weight=(self._vectors @ own).T * self._deflection_self_weight,
-        )
 
 
 _MECHANISM = (

@@ -8,7 +8,7 @@ exact rows it breaks (or, where only rounding lets it through, by itself) and th
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -44,6 +44,25 @@ ROWS_A_ROUND = 40
 ROUNDS = 60
 """Most rounds of the linear relaxation; it only prepares, so ending early loses nothing."""
 
+LEAST_GAIN = 1e-6
+"""Relative gain in bound below which a further round of the relaxation is not worth its time."""
+
+CORE_SIZES = (3, 6, 12)
+"""Sections a group, liked best by the relaxation, among which a first design is sought."""
+
+CORE_ROUNDS = 6
+"""Programs over one core: the rows that a failing answer breaks make the next one better."""
+
+CORE_SECONDS = 5.0
+CORE_GAP = 1e-4
+"""Time and relative gap of a core program: it only has to find a good design."""
+
+WORTH_TIGHTENING = 0.8
+"""When fewer pairs than this part remain, ranges are narrowed and the relaxation is run again."""
+
+ROUNDING = 1e-9
+"""Relative difference between bound and objective that is rounding."""
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class ExactAnswer:
@@ -69,6 +88,7 @@ class RowPool:
         self.rows: list[FloatArray] = []
         self.bounds: list[float] = []
         self._in_force: set[int] = set()
+        self._cut_off: set[bytes] = set()
 
     def add(self, coefficients: FloatArray, bound: float) -> None:
         """Put coefficients · x <= bound in force."""
@@ -93,6 +113,14 @@ class RowPool:
             for r in _worst(excess, tolerance):
                 self.add(*self.deflection.row(r, math.copysign(1.0, u[r]), y))
         return len(self.rows) - before
+
+    def cut_off(self, design: IntArray) -> None:
+        """Cut off a failing design by the rows it breaks, or by itself when none does."""
+        x = self.choices.point(design)
+        again = design.tobytes() in self._cut_off
+        self._cut_off.add(design.tobytes())
+        if x is None or again or self.add_violated(x, NEAR_LIMIT) == 0:
+            self.forbid(design)
 
     def forbid(self, design: IntArray) -> None:
         """Cut off one design: not all its choices together."""
@@ -138,49 +166,127 @@ def solve_determinate(
 ) -> ExactAnswer:
     """Find the cheapest feasible design of a determinate truss and prove it."""
     mask = remove_too_weak(problem, forces, problem.allowed)
-    if not mask.any(axis=1).all():
-        return ExactAnswer(best=None, bound=math.inf, finished=True)
-    pool = RowPool(problem, forces, Choices.of(mask))
-    scale = cost_scale(problem, mask)
-    bound = _relax(pool, scale, watch)
-    if math.isinf(bound):
-        return ExactAnswer(best=None, bound=math.inf, finished=True)
-    return _integer_rounds(pool, scale, analysis, watch, bound)
-
-
-def _relax(pool: RowPool, scale: float, watch: Watch) -> float:
-    # Cutting planes on the linear relaxation; returns its bound (inf: nothing fits).
-    program = LinearProgram(pool.model(scale, integer=False))
+    best: Evaluation | None = None
     bound = -math.inf
+    while mask.any(axis=1).all() and not watch.stop():
+        pool = RowPool(problem, forces, Choices.of(mask))
+        scale = cost_scale(problem, mask)
+        relaxed = _relax(pool, scale, watch, best)
+        bound = max(bound, relaxed.bound)
+        if math.isinf(relaxed.bound) or (best and relaxed.bound >= best.objective):
+            return _closed(best)
+        if relaxed.reduced_costs is None:
+            break
+        best = _core(pool, scale, analysis, watch, relaxed, best)
+        keep = remove_too_weak(problem, forces, _worth_keeping(pool, relaxed, best))
+        if keep.sum() > WORTH_TIGHTENING * mask.sum():
+            found = _integer_rounds(pool, scale, analysis, watch, best)
+            bound = max(bound, found.bound)
+            return ExactAnswer(best=found.best, bound=bound, finished=found.finished)
+        mask = keep
+    if watch.stop() and mask.any(axis=1).all():
+        return ExactAnswer(best=best, bound=bound, finished=False)
+    return _closed(best)
+
+
+def _closed(best: Evaluation | None) -> ExactAnswer:
+    # Nothing cheaper than ``best`` is left; without one, nothing at all.
+    bound = math.inf if best is None else best.objective
+    return ExactAnswer(best=best, bound=bound, finished=True)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class _Relaxed:
+    bound: float
+    reduced_costs: FloatArray | None
+
+
+def _relax(pool: RowPool, scale: float, watch: Watch, best: Evaluation | None) -> _Relaxed:
+    # Cutting planes on the linear relaxation; bound inf: nothing fits.
+    program = LinearProgram(pool.model(scale, integer=False))
+    relaxed = _Relaxed(bound=-math.inf, reduced_costs=None)
     for _ in range(ROUNDS):
         answer = program.run(seconds=watch.left)
         if answer.status == "infeasible":
-            return math.inf
-        if answer.status != "optimal" or answer.values is None:
-            return bound
-        bound = answer.bound * scale
-        watch.report("bounding", None, bound, 0)
+            return _Relaxed(bound=math.inf, reduced_costs=None)
+        if answer.values is None or answer.reduced_costs is None:
+            break
+        gain = answer.bound * scale - relaxed.bound
+        relaxed = _Relaxed(bound=answer.bound * scale, reduced_costs=answer.reduced_costs * scale)
+        watch.report("bounding", best.objective if best else None, relaxed.bound, 0)
         first = len(pool.rows)
-        if watch.stop() or pool.add_violated(answer.values, VIOLATION) == 0:
-            return bound
+        done = watch.stop() or gain < LEAST_GAIN * abs(relaxed.bound)
+        if done or pool.add_violated(answer.values, VIOLATION) == 0:
+            break
         new = sparse.csr_array(np.array(pool.rows[first:]))
         upper = np.array(pool.bounds[first:])
         program.add_rows(new, np.full(upper.size, -np.inf), upper)
-    return bound
+    return relaxed
+
+
+def _worth_keeping(pool: RowPool, relaxed: _Relaxed, best: Evaluation | None) -> BoolArray:
+    # Reduced-cost fixing: with x_j = 1 nothing costs less than bound + reduced cost.
+    keep = pool.choices.mask.copy()
+    if best is None or relaxed.reduced_costs is None:
+        return keep
+    room = best.objective - relaxed.bound + ROUNDING * abs(best.objective)
+    out = relaxed.reduced_costs > room
+    keep[pool.choices.group[out], pool.choices.section[out]] = False
+    return keep
+
+
+def _core(
+    pool: RowPool,
+    scale: float,
+    analysis: DesignAnalysis,
+    watch: Watch,
+    relaxed: _Relaxed,
+    best: Evaluation | None,
+) -> Evaluation | None:
+    # A feasible design from the few sections of each group that the relaxation likes best.
+    assert relaxed.reduced_costs is not None
+    for size in CORE_SIZES:
+        liked = np.zeros(pool.choices.count, dtype=bool)
+        for part in pool.choices.slices:
+            order = np.argsort(relaxed.reduced_costs[part], kind="stable")[:size]
+            liked[part.start + order] = True
+        for _ in range(CORE_ROUNDS):
+            if watch.stop():
+                return best
+            answer = solve(
+                _restricted(pool.model(scale, integer=True), liked),
+                seconds=min(CORE_SECONDS, watch.left),
+                stop=watch.asked,
+                gap=CORE_GAP,
+            )
+            if answer.values is None:
+                break
+            found = analysis.evaluate(pool.choices.design(answer.values))
+            if found.feasible:
+                return found if best is None or found.objective < best.objective else best
+            pool.cut_off(found.sections)
+    return best
+
+
+def _restricted(model: LinearModel, liked: BoolArray) -> LinearModel:
+    return replace(model, upper=np.where(liked, model.upper, 0.0))
 
 
 def _integer_rounds(
-    pool: RowPool, scale: float, analysis: DesignAnalysis, watch: Watch, bound: float
+    pool: RowPool,
+    scale: float,
+    analysis: DesignAnalysis,
+    watch: Watch,
+    best: Evaluation | None,
 ) -> ExactAnswer:
-    best: Evaluation | None = None
-    seen: set[bytes] = set()
+    bound = -math.inf
     while not watch.stop():
         start = None if best is None else pool.choices.point(best.sections)
         answer = solve(
             pool.model(scale, integer=True), seconds=watch.left, start=start, stop=watch.asked
         )
         if answer.status == "infeasible":
-            return ExactAnswer(best=best, bound=math.inf, finished=True)
+            return _closed(best)
         bound = max(bound, answer.bound * scale)
         if answer.values is None:
             break
@@ -190,12 +296,9 @@ def _integer_rounds(
         watch.report("proving", best.objective if best else None, bound, analysis.count)
         if answer.status != "optimal":
             break
-        if found.feasible:
-            return ExactAnswer(best=best, bound=min(bound, found.objective), finished=True)
-        x = pool.choices.point(found.sections)
-        if x is None or pool.add_violated(x, NEAR_LIMIT) == 0 or found.sections.tobytes() in seen:
-            pool.forbid(found.sections)
-        seen.add(found.sections.tobytes())
+        if best is not None and bound >= best.objective * (1.0 - ROUNDING):
+            return _closed(best)
+        pool.cut_off(found.sections)
     return ExactAnswer(best=best, bound=bound, finished=False)
 
 

@@ -1,12 +1,13 @@
-"""The linear model of one analysed design: forces and movements in reciprocal stiffness.
+"""The local model of one analysed design: forces and movements as sums over the groups' choices.
 
-About a design with y_g = 1/(EA)_g and self-weight w_g,
+With x_gs = 1 when group g takes section s,
 
-    N(x) ≈ N + Σ_g dN/dy_g (y_g(x) - y_g) + Σ_g dN/dw_g (w_g(x) - w_g),   y_g(x) = Σ_s y_s x_gs,
+    N(x) ≈ N + Σ_gs x_gs ΔN_gs,
 
-exact in forces and movements for a determinate truss without self-weight (Schmit & Farshi 1974,
-approximation concepts with reciprocal variables). The resistance of each section stays in the
-row, so a jump in the catalogue is seen as the jump it is.
+where ΔN_gs is what changing group g alone to section s does: either linear in y = 1/(EA) (Schmit
+& Farshi 1974, approximation concepts), which suits mixtures of sections, or rational (see
+`group_changes`), which suits whole sections far apart. Both are linear in x, and the resistance
+of each section stays in the row, so a jump in the catalogue is seen as the jump it is.
 """
 
 from __future__ import annotations
@@ -16,8 +17,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from sizing.selection.analysis import DesignAnalysis, Evaluation, Sensitivities
+from sizing.selection.analysis import DesignAnalysis, Evaluation, Response
 from sizing.selection.choices import Choices
+from sizing.selection.group_changes import GroupChanges, group_changes
 from sizing.selection.problem import SizingProblem
 
 FloatArray = NDArray[np.float64]
@@ -40,46 +42,83 @@ class Prediction:
 
 @dataclass(frozen=True, kw_only=True)
 class Linearisation:
-    """Linear model about ``centre``; y and w are those of the centre (g,)."""
+    """Local model about a centre with flexibility y, self-weight w (g,), forces and movements.
+
+    ``rational`` chooses between the two ways to see a change of section.
+    """
 
     problem: SizingProblem
     analysis: DesignAnalysis
-    centre: Evaluation
-    slopes: Sensitivities
+    forces: FloatArray
+    movements: FloatArray
+    changes: GroupChanges
     y: FloatArray
     w: FloatArray
+    rational: bool
 
     @classmethod
     def at(cls, analysis: DesignAnalysis, centre: Evaluation) -> Linearisation:
-        """Linearise about an analysed design."""
+        """Model the surroundings of an analysed design, for whole sections."""
+        y = 1.0 / analysis.problem.stiffness[centre.sections]
+        w = analysis.problem.weight[centre.sections]
+        return cls._about(analysis, y, w, centre, rational=True)
+
+    @classmethod
+    def between(
+        cls, analysis: DesignAnalysis, centre: Response, *, rational: bool = False
+    ) -> Linearisation:
+        """Model the surroundings of a truss whose groups lie between sections."""
+        return cls._about(analysis, centre.y, centre.w, centre, rational=rational)
+
+    @classmethod
+    def _about(
+        cls,
+        analysis: DesignAnalysis,
+        y: FloatArray,
+        w: FloatArray,
+        centre: Evaluation | Response,
+        *,
+        rational: bool,
+    ) -> Linearisation:
         problem = analysis.problem
+        combined = centre.case_forces @ problem.deflection_factors.T
         return cls(
             problem=problem,
             analysis=analysis,
-            centre=centre,
-            slopes=analysis.sensitivities(centre),
-            y=1.0 / problem.stiffness[centre.sections],
-            w=problem.weight[centre.sections],
+            forces=centre.forces,
+            movements=centre.movements,
+            changes=group_changes(analysis, y, centre.forces, combined),
+            y=y,
+            w=w,
+            rational=rational,
         )
 
-    def predict(self, sections: IntArray) -> Prediction:
-        """Predict forces, movements and utilisations of a design (g,)."""
-        problem, slopes = self.problem, self.slopes
-        dy = 1.0 / problem.stiffness[sections] - self.y
-        dw = problem.weight[sections] - self.w
-        forces = (
-            self.centre.forces
-            + np.tensordot(dy, slopes.force_per_flexibility, 1)
-            + np.tensordot(dw, slopes.force_per_weight, 1)
+    def predict(self, choices: Choices, x: FloatArray) -> Prediction:
+        """Predict forces, movements and utilisations at a point x (v,), whole or fractional.
+
+        A fractional x has the mixed resistance Σ_s R_s x_gs, as the rows see it.
+        """
+        problem, changes = self.problem, self.changes
+        forces, movements = self.forces.copy(), self.movements.copy()
+        for v in np.flatnonzero(x > 0.0):
+            g, share = choices.group[v], x[v]
+            t, extra = self._step(choices, np.array([v]))
+            first, ratio = changes.force_first[g], changes.force_ratio[g]
+            change = self._answer(first, ratio, t)
+            change += extra * changes.force_per_weight[g]
+            change[changes.inside[g]] += self._own(
+                self.forces[changes.inside[g]], change[changes.inside[g]], t
+            )
+            forces += share * change
+            moved = self._answer(changes.movement_first[g], changes.movement_ratio[g], t)
+            movements += share * (moved + extra * changes.movement_per_weight[g])
+        resistance = np.where(
+            forces > 0.0,
+            self._mixed(problem.tension, choices, x),
+            self._mixed(problem.compression, choices, x),
         )
-        movements = (
-            self.centre.movements
-            + dy @ slopes.movement_per_flexibility
-            + dw @ slopes.movement_per_weight
-        )
-        tension, compression = self.analysis.resistances(sections)
         nothing = NO_FORCE * np.abs(forces).max(initial=0.0)
-        strength = _ratio(np.abs(forces), np.where(forces > 0.0, tension, compression), nothing)
+        strength = _ratio(np.abs(forces), resistance, nothing)
         deflection = _ratio(np.abs(movements), problem.deflection_limit, 0.0)
         worst = max(float(strength.max(initial=0.0)), float(deflection.max(initial=0.0)))
         return Prediction(
@@ -90,35 +129,56 @@ class Linearisation:
             worst=worst,
         )
 
+    def _mixed(self, table: FloatArray, choices: Choices, x: FloatArray) -> FloatArray:
+        problem = self.problem
+        mixed = np.empty((problem.length.size, table.shape[2]))
+        for g, part in enumerate(choices.slices):
+            inside = np.flatnonzero(problem.group == g)
+            chosen = part.start + np.flatnonzero(x[part] > 0.0)
+            block = table[np.ix_(inside, choices.section[chosen])]
+            mixed[inside] = np.einsum("isk,s->ik", block, x[chosen])
+        return mixed[:, problem.duration]
+
     def strength_row(
         self, i: int, c: int, sign: float, choices: Choices
     ) -> tuple[FloatArray, float]:
         """Coefficients (v,) and bound: sign · N_ic(x) <= Σ_s R_s x_gs, over the resistance."""
-        problem, slopes = self.problem, self.slopes
-        per_y, per_w = slopes.force_per_flexibility[:, i, c], slopes.force_per_weight[:, i, c]
-        fixed = self.centre.forces[i, c] - per_y @ self.y - per_w @ self.w
-        coefficients = sign * self._spread(per_y, per_w, choices)
-        table = problem.tension if sign > 0.0 else problem.compression
+        problem, changes, group = self.problem, self.changes, choices.group
+        t, extra = self._step(choices, np.arange(choices.count))
+        first, ratio = changes.force_first[group, i, c], changes.force_ratio[group, i, c]
+        change = self._answer(first, ratio, t) + extra * changes.force_per_weight[group, i, c]
         own = choices.slices[problem.group[i]]
+        change[own] += self._own(self.forces[i, c], change[own], t[own])
+        table = problem.tension if sign > 0.0 else problem.compression
         resistance = table[i, choices.section[own], problem.duration[c]]
+        coefficients = sign * change
         coefficients[own] -= resistance
-        scale = self._scale(resistance, abs(self.centre.forces[i, c]))
-        return coefficients / scale, -sign * fixed / scale
+        scale = self._scale(resistance, abs(self.forces[i, c]))
+        return coefficients / scale, -sign * self.forces[i, c] / scale
 
     def deflection_row(self, r: int, sign: float, choices: Choices) -> tuple[FloatArray, float]:
         """Coefficients (v,) and bound: sign · u_r(x) <= limit, over the limit."""
-        slopes = self.slopes
-        per_y, per_w = slopes.movement_per_flexibility[:, r], slopes.movement_per_weight[:, r]
-        fixed = self.centre.movements[r] - per_y @ self.y - per_w @ self.w
-        coefficients = sign * self._spread(per_y, per_w, choices)
+        changes, group = self.changes, choices.group
+        t, extra = self._step(choices, np.arange(choices.count))
+        change = self._answer(changes.movement_first[group, r], changes.movement_ratio[group, r], t)
+        change += extra * changes.movement_per_weight[group, r]
         limit = self.problem.deflection_limit[r]
-        scale = limit if limit > 0.0 else max(abs(self.centre.movements[r]), 1e-300)
-        return coefficients / scale, (limit - sign * fixed) / scale
+        scale = limit if limit > 0.0 else max(abs(self.movements[r]), 1e-300)
+        return sign * change / scale, (limit - sign * self.movements[r]) / scale
 
-    def _spread(self, per_y: FloatArray, per_w: FloatArray, choices: Choices) -> FloatArray:
-        flexibility = 1.0 / self.problem.stiffness[choices.section]
-        weight = self.problem.weight[choices.section]
-        return per_y[choices.group] * flexibility + per_w[choices.group] * weight
+    def _step(self, choices: Choices, v: IntArray) -> tuple[FloatArray, FloatArray]:
+        # Size of the change (θ, or y/y0 - 1 in the linear model) and extra self-weight.
+        group, section = choices.group[v], choices.section[v]
+        relative = self.y[group] * self.problem.stiffness[section]
+        t = 1.0 - relative if self.rational else 1.0 / relative - 1.0
+        return t, self.problem.weight[section] - self.w[group]
+
+    def _answer(self, first: FloatArray, ratio: FloatArray, t: FloatArray) -> FloatArray:
+        return first * t / (1.0 - ratio * t) if self.rational else first * t
+
+    def _own(self, force: FloatArray, change: FloatArray, t: FloatArray) -> FloatArray:
+        # The group's own members: their stiffness changes besides their elongation.
+        return -t * (force + change) if self.rational else -t * force
 
     def _scale(self, resistance: FloatArray, force: float) -> float:
         # The resistance that the group would need now, or the nearest to it.

@@ -9,20 +9,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 from scipy import sparse
 
 from sizing.selection.choices import Choices
-from sizing.selection.highs import LinearModel, solve
+from sizing.selection.highs import LinearAnswer, LinearModel, LinearProgram, solve
 from sizing.selection.linearisation import Linearisation, Prediction
-from sizing.selection.problem import SizingProblem
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]
-BoolArray = NDArray[np.bool_]
 
 WATCHED = 0.7
 """Checks used at least this much at the current design enter the first program of a step."""
@@ -30,10 +28,10 @@ WATCHED = 0.7
 ROW_TOLERANCE = 1e-6
 """Predicted excess over the elastic variable at which a missing row is added."""
 
-ROUNDS = 12
+ROUNDS = 5
 """Most programs of one step; the answer is analysed exactly anyway."""
 
-ROWS_A_ROUND = 60
+ROWS_A_ROUND = 200
 """Most rows added in one round."""
 
 
@@ -49,13 +47,16 @@ class Step:
 class StepRules:
     """What a step asks for.
 
-    cost_weight, excess_weight: objective = cost_weight · cost/scale + excess_weight · e.
+    cost_weight, excess_weight: objective = cost_weight · cost/cost_scale + excess_weight · e.
     margin: limits are tightened by this part. most_excess: greatest e allowed.
+    core: sections a group among which the integer program chooses.
     cost_limit: the design must cost no more. forbidden: designs (each (g,)) not wanted again.
     """
 
+    cost_scale: float
     cost_weight: float
     excess_weight: float
+    core: int = 8
     margin: float = 0.0
     least_excess: float = 0.0
     most_excess: float = math.inf
@@ -63,47 +64,79 @@ class StepRules:
     forbidden: tuple[IntArray, ...] = ()
     seconds: float = 10.0
     gap: float = 1e-6
-
-
-def stiffness_order(problem: SizingProblem) -> IntArray:
-    """Place (s,) of each section in the order of stiffness, ties by number."""
-    order = np.argsort(problem.stiffness, kind="stable")
-    place = np.empty_like(order)
-    place[order] = np.arange(order.size)
-    return place
-
-
-def window(problem: SizingProblem, base: BoolArray, centre: IntArray, reach: int) -> BoolArray:
-    """Pairs (g, s) of ``base`` within ``reach`` places of the centre's section, centre included."""
-    place = stiffness_order(problem)
-    mask = np.zeros_like(base)
-    for g in range(problem.groups):
-        usable = np.flatnonzero(base[g])
-        usable = usable[np.argsort(place[usable], kind="stable")]
-        here = int(np.searchsorted(place[usable], place[centre[g]]))
-        mask[g, usable[max(0, here - reach) : here + reach + 1]] = True
-        mask[g, centre[g]] = True
-    return mask
+    stop: Callable[[], bool] | None = None
 
 
 def propose(
-    model: Linearisation, mask: BoolArray, rules: StepRules, stop: Callable[[], bool] | None = None
+    model: Linearisation,
+    choices: Choices,
+    near: FloatArray,
+    rules: StepRules,
 ) -> Step | None:
-    """Solve one step over the pairs in ``mask``; None when the program has no answer."""
-    choices = Choices.of(mask)
+    """Solve one step over ``choices``; None when the program has no answer.
+
+    ``near`` (v,) is the point, whole or fractional, whose well used checks enter first. The
+    relaxation comes first: its reduced costs choose the ``rules.core`` sections of each group
+    that the integer program may take.
+    """
     rows = _Rows(model, choices, rules.margin)
-    rows.watch()
+    rows.watch(near)
+    relaxed = _relax(rows, rules)
+    if relaxed is None or relaxed.reduced_costs is None:
+        return None
+    upper = np.append(_core(choices, relaxed.reduced_costs[:-1], rules.core), rules.most_excess)
     answer: Step | None = None
     for _ in range(ROUNDS):
-        solved = solve(_program(rows, rules), seconds=rules.seconds, stop=stop, gap=rules.gap)
+        program = replace(rows.program(rules, integer=True), upper=upper)
+        solved = solve(program, seconds=rules.seconds, stop=rules.stop, gap=rules.gap)
         if solved.values is None:
             return answer
         sections = choices.design(solved.values[:-1])
         excess = float(solved.values[-1])
         answer = Step(sections=sections, excess=excess)
-        if rows.add_broken(model.predict(sections), excess) == 0:
+        x = choices.point(sections)
+        if x is None or rows.add_broken(model.predict(choices, x), excess) == 0:
             break
     return answer
+
+
+def relaxed_step(
+    model: Linearisation, choices: Choices, near: FloatArray, rules: StepRules
+) -> FloatArray | None:
+    """Solve the step with mixtures of sections allowed; return x (v,) or None."""
+    rows = _Rows(model, choices, rules.margin)
+    rows.watch(near)
+    relaxed = _relax(rows, rules)
+    if relaxed is None or relaxed.values is None:
+        return None
+    return np.clip(relaxed.values[:-1], 0.0, 1.0)
+
+
+def _relax(rows: _Rows, rules: StepRules) -> LinearAnswer | None:
+    program = LinearProgram(rows.program(rules, integer=False))
+    best: LinearAnswer | None = None
+    for _ in range(4 * ROUNDS):
+        solved = program.run(seconds=rules.seconds)
+        if solved.values is None or solved.reduced_costs is None:
+            break
+        best = solved
+        x = np.clip(solved.values[:-1], 0.0, 1.0)
+        first = len(rows.rows)
+        broken = rows.add_broken(rows.model.predict(rows.choices, x), float(solved.values[-1]))
+        if broken == 0:
+            break
+        new, upper = np.array(rows.rows[first:]), np.array(rows.bounds[first:])
+        program.add_rows(sparse.csr_array(new), np.full(upper.size, -np.inf), upper)
+    return best
+
+
+def _core(choices: Choices, reduced_costs: FloatArray, size: int) -> FloatArray:
+    # Upper bounds (v,) that leave the ``size`` cheapest sections of each group by reduced cost.
+    upper = np.zeros(choices.count)
+    for part in choices.slices:
+        order = np.argsort(reduced_costs[part], kind="stable")[:size]
+        upper[part.start + order] = 1.0
+    return upper
 
 
 class _Rows:
@@ -117,35 +150,26 @@ class _Rows:
         self.bounds: list[float] = []
         self._known: set[tuple[int, int, float]] = set()
 
-    def watch(self) -> None:
-        """Put the checks in force that are well used at the current design."""
-        centre = self.model.centre
-        self._add(centre.strength, centre.deflection, centre.forces, centre.movements, WATCHED)
+    def watch(self, near: FloatArray) -> Prediction:
+        """Put the checks in force that are well used at ``near`` (v,)."""
+        predicted = self.model.predict(self.choices, near)
+        self._add(predicted, WATCHED)
+        return predicted
 
     def add_broken(self, predicted: Prediction, excess: float) -> int:
         """Put the rows in force that ``predicted`` breaks by more than ``excess``."""
         before = len(self.rows)
-        limit = 1.0 - self.margin + excess + ROW_TOLERANCE
-        self._add(
-            predicted.strength, predicted.deflection, predicted.forces, predicted.movements, limit
-        )
+        self._add(predicted, 1.0 - self.margin + excess + ROW_TOLERANCE)
         return len(self.rows) - before
 
-    def _add(
-        self,
-        strength: FloatArray,
-        deflection: FloatArray,
-        forces: FloatArray,
-        movements: FloatArray,
-        above: float,
-    ) -> None:
-        for place in _greatest(strength.ravel(), above):
-            i, c = (int(n) for n in np.unravel_index(place, strength.shape))
-            sign = math.copysign(1.0, forces[i, c])
+    def _add(self, predicted: Prediction, above: float) -> None:
+        for place in _greatest(predicted.strength.ravel(), above):
+            i, c = (int(n) for n in np.unravel_index(place, predicted.strength.shape))
+            sign = math.copysign(1.0, predicted.forces[i, c])
             if self._new((i, c, sign)):
                 self._put(*self.model.strength_row(i, c, sign, self.choices))
-        for r in _greatest(deflection, above):
-            sign = math.copysign(1.0, movements[r])
+        for r in _greatest(predicted.deflection, above):
+            sign = math.copysign(1.0, predicted.movements[r])
             if self._new((r, -1, sign)):
                 self._put(*self.model.deflection_row(r, sign, self.choices))
 
@@ -158,39 +182,33 @@ class _Rows:
         self.rows.append(np.append(coefficients, -1.0))
         self.bounds.append(bound - self.margin)
 
-
-def _program(rows: _Rows, rules: StepRules) -> LinearModel:
-    choices, problem = rows.choices, rows.model.problem
-    v = choices.count
-    cost = choices.cost(problem)
-    scale = float(np.abs(rows.model.centre.objective)) or 1.0
-    extra, extra_bounds = list(rows.rows), list(rows.bounds)
-    if math.isfinite(rules.cost_limit):
-        extra.append(np.append(cost / scale, 0.0))
-        extra_bounds.append(rules.cost_limit / scale)
-    for design in rules.forbidden:
-        taken = np.asarray(choices.section == design[choices.group], dtype=np.float64)
-        if taken.sum() == design.size:
-            extra.append(np.append(taken, 0.0))
-            extra_bounds.append(float(design.size - 1))
-    matrix = sparse.hstack([choices.one_each(), sparse.csr_array((design_count(choices), 1))])
-    if extra:
-        matrix = sparse.vstack([matrix, sparse.csr_array(np.array(extra))])
-    ones = np.ones(design_count(choices))
-    return LinearModel(
-        cost=np.append(rules.cost_weight * cost / scale, rules.excess_weight),
-        lower=np.append(np.zeros(v), rules.least_excess),
-        upper=np.append(np.ones(v), rules.most_excess),
-        matrix=sparse.csr_array(matrix),
-        row_lower=np.concatenate([ones, np.full(len(extra), -np.inf)]),
-        row_upper=np.concatenate([ones, np.array(extra_bounds)]),
-        integer=np.append(np.ones(v, dtype=bool), False),
-    )
-
-
-def design_count(choices: Choices) -> int:
-    """Number of groups."""
-    return len(choices.slices)
+    def program(self, rules: StepRules, *, integer: bool) -> LinearModel:
+        """Build the model: variables x (v,) and the elastic e, rows as in force."""
+        choices = self.choices
+        v, groups = choices.count, len(choices.slices)
+        cost = choices.cost(self.model.problem) / rules.cost_scale
+        extra, bounds = list(self.rows), list(self.bounds)
+        if math.isfinite(rules.cost_limit):
+            extra.append(np.append(cost, 0.0))
+            bounds.append(rules.cost_limit / rules.cost_scale)
+        for design in rules.forbidden:
+            taken = np.asarray(choices.section == design[choices.group], dtype=np.float64)
+            if taken.sum() == groups:
+                extra.append(np.append(taken, 0.0))
+                bounds.append(groups - 1.0)
+        matrix = sparse.hstack([choices.one_each(), sparse.csr_array((groups, 1))])
+        if extra:
+            matrix = sparse.vstack([matrix, sparse.csr_array(np.array(extra))])
+        ones = np.ones(groups)
+        return LinearModel(
+            cost=np.append(rules.cost_weight * cost, rules.excess_weight),
+            lower=np.append(np.zeros(v), rules.least_excess),
+            upper=np.append(np.ones(v), rules.most_excess),
+            matrix=sparse.csr_array(matrix),
+            row_lower=np.concatenate([ones, np.full(len(extra), -np.inf)]),
+            row_upper=np.concatenate([ones, np.array(bounds)]),
+            integer=np.append(np.ones(v, dtype=bool), False) if integer else None,
+        )
 
 
 def _greatest(values: FloatArray, above: float) -> Iterable[int]:

@@ -1,0 +1,59 @@
+"""Improve a feasible design: ask the linear model for the cheaper design nearest to feasible."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from sizing.selection.choices import Choices
+from sizing.selection.linearisation import Linearisation
+from sizing.selection.record import Record
+from sizing.selection.step_program import StepRules, propose
+
+FloatArray = NDArray[np.float64]
+
+CHEAPER = 1e-7
+"""Relative saving asked of an improvement."""
+
+MOST_EXCESS = 0.05
+"""Predicted excess beyond which a cheaper design is not worth an analysis."""
+
+PATIENCE = 6
+"""Failures in a row after which the predicted excess is compared with the errors seen."""
+
+
+def improve(record: Record, choices: Choices, core: int = 5) -> None:
+    """Replace the best design by cheaper ones while the linear model finds candidates."""
+    errors: list[float] = []
+    centre = record.best
+    while centre is not None and record.best is not None and not record.watch.stop():
+        near = choices.point(centre.sections)
+        if near is None:
+            return
+        rules = StepRules(
+            cost_scale=record.best.objective,
+            cost_weight=0.0,
+            excess_weight=1.0,
+            core=core,
+            least_excess=-0.02,
+            most_excess=MOST_EXCESS,
+            cost_limit=record.best.objective * (1.0 - CHEAPER),
+            forbidden=record.designs(),
+            seconds=record.step_seconds,
+            gap=1e-3,
+            stop=record.watch.asked,
+        )
+        model = Linearisation.at(record.analysis, centre)
+        step = propose(model, choices, near, rules)
+        if step is None:
+            return
+        before = record.best
+        found = record.try_design(step.sections)
+        if record.best is not before:
+            errors, centre = [], record.best
+            continue
+        errors.append(abs(found.worst - 1.0 - step.excess))
+        if len(errors) >= PATIENCE and step.excess > 2.0 * max(errors[-2 * PATIENCE :]):
+            return
+        # The linear model of a failed neighbour sees other neighbours better.
+        centre = found if len(errors) % 2 else record.best
