@@ -26,6 +26,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable
     from types import FrameType
 
+    from sizing.brief.model import Brief
     from sizing.results import JobResult
     from sizing.selection.outcome import Limits, Progress
 
@@ -149,26 +150,73 @@ def convert_command(
 def check_command(
     brief: BriefPath,
     sections: Annotated[
-        Path,
+        Path | None,
         typer.Option(
             "--sections",
             metavar="FILE",
             help="Sections per option and group: a small TOML file or a result.json.",
         ),
-    ],
+    ] = None,
     out: OutFolder = None,
     option: OptionNames = None,
 ) -> None:
-    """Check given sections against the brief, without picking."""
+    """Check given sections against the brief, or without sections the brief itself."""
     from sizing.brief.sections_reader import read_sections
     from sizing.brief.toml_reader import read_brief
     from sizing.job import check_job
 
     asked = read_brief(brief)
+    if sections is None:
+        _outline(asked, out)
+        return
     result = check_job(asked, read_sections(sections, asked), options=option or ())
     _issue(result, out)
     if not all(answer.adequate for answer in result.options):
         raise typer.Exit(NOT_ADEQUATE)
+
+
+def _outline(brief: Brief, out: Path | None) -> None:
+    """Print loads, reactions, determinacy and buckling lengths of a brief, and draw it."""
+    from sizing.documents.issue import DRAWING, replace_all
+    from sizing.documents.outline_drawing import outline_svg
+    from sizing.documents.outline_text import print_outline
+    from sizing.outline import outline_of
+
+    outline = outline_of(brief)
+    written = replace_all(out, {DRAWING: outline_svg(brief)}) if out is not None else ()
+    print_outline(outline)
+    for path in written:
+        typer.echo(f"written: {path}")
+
+
+@app.command("start")
+def start_command(
+    file: Annotated[
+        Path | None, typer.Argument(metavar="FILE", help="The new brief, a TOML file.")
+    ] = None,
+    parameters: Annotated[
+        list[str] | None,
+        typer.Argument(metavar="NAME=VALUE", help='Parameters, such as span="24 m".'),
+    ] = None,
+    shape: Annotated[
+        str, typer.Option("--shape", metavar="NAME", help="The shape; --shapes lists them.")
+    ] = "",
+    shapes: Annotated[
+        bool, typer.Option("--shapes", help="List the shapes and their parameters.")
+    ] = False,
+) -> None:
+    """Write a brief of a usual truss, complete and ready to be changed."""
+    from sizing.start import parameters_of, shapes_text, start_brief
+
+    if shapes or file is None or not shape:
+        typer.echo(shapes_text())
+        if not shapes:
+            typer.echo("\nGive a file and one of these: sizing start FILE --shape NAME", err=True)
+            raise typer.Exit(2)
+        return
+    start_brief(file, shape, parameters_of(parameters or ()))
+    typer.echo(f"written: {file}")
+    typer.echo(f"next: sizing check {file}, then sizing pick {file} --out DIR")
 
 
 def _issue(result: JobResult, out: Path | None) -> None:

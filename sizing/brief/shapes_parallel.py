@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from itertools import accumulate
+from itertools import accumulate, pairwise
 from typing import Any
 
 from sizing.brief.shapes_actions import (
@@ -260,7 +260,7 @@ def _bottom_chord(
     names: Sequence[str],
     along: Sequence[float],
 ) -> None:
-    held = restrained(girder.name, names, along, girder.restraint)
+    held = _held_sideways(girder, names, along)
     buckling = {"in_plane": 1.0}
     _chord(sketch, girder, "bottom-chord", "A", panels, buckling=buckling, restrained_nodes=held)
     first = next(name for name in sketch.groups if name.startswith("bottom-chord"))
@@ -268,6 +268,18 @@ def _bottom_chord(
         "The restrained nodes are held sideways by bracing that must be drawn and built; uplift "
         "compresses this chord."
     )
+
+
+def _held_sideways(girder: _Girder, names: Sequence[str], along: Sequence[float]) -> list[str]:
+    """Return the restrained nodes: span by span where the chord has nodes at the supports."""
+    if len(names) != girder.total + 1:
+        return restrained(girder.name, names, along, girder.restraint)
+    held: list[str] = []
+    for first, last in pairwise(girder.supports):
+        part = slice(first, last + 1)
+        found = restrained(girder.name, names[part], along[part], girder.restraint)
+        held += [name for name in found if name not in held]
+    return held
 
 
 def _web_by_zone(

@@ -126,11 +126,25 @@ def _section(path: tuple[str, ...], table: Mapping[str, Any]) -> Iterator[Block]
         for k, v in table.items()
         if isinstance(v, Mapping) and (headed or len(f"{toml_key(k)} = {toml_value(v)}") > LINE)
     }
-    own = {k: v for k, v in table.items() if k not in below}
-    if own or not below:
+    rows = {k: v for k, v in table.items() if _is_rows(v)}
+    own = {k: v for k, v in table.items() if k not in below and k not in rows}
+    if own or not (below or rows):
         yield path, [f"[{'.'.join(toml_key(p) for p in path)}]", *_entry_lines(own)]
+    for key, value in rows.items():
+        for entry in value:
+            head = ".".join(toml_key(p) for p in (*path, key))
+            yield (*path, key), [f"[[{head}]]", *_entry_lines(entry)]
     for key, value in below.items():
         yield from _section((*path, key), value)
+
+
+def _is_rows(value: Any) -> bool:
+    """Say whether a value is a list of tables of which one is too long for a line."""
+    return (
+        isinstance(value, list)
+        and all(isinstance(item, Mapping) for item in value)
+        and any(len(toml_value(item)) > LINE - 5 for item in value)
+    )
 
 
 def _entry_lines(table: Mapping[str, Any]) -> list[str]:
