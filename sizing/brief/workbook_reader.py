@@ -85,6 +85,7 @@ def tables_of_grids(grids: Sequence[Grid], source: SourceFile) -> WorkbookBrief:
     draft.check_units()
     findings.raise_if_any()
     _caution_remarks(draft.remarks, findings)
+    _members_first(draft.tables)
     return WorkbookBrief(
         source=source,
         tables=draft.tables,
@@ -116,6 +117,14 @@ def _sheets(grids: Sequence[Grid], findings: Findings) -> dict[str, Grid]:
             if grid.hidden and grid.cells:
                 findings.caution(f"Sheet {quoted(grid.title)} is hidden; it is read all the same.")
     return found
+
+
+def _members_first(tables: dict[str, Any]) -> None:
+    """Put the members ahead of the other keys of their group, as one writes them by hand."""
+    groups: Any = tables.get("groups")
+    for name, group in groups.items() if isinstance(groups, dict) else ():
+        if isinstance(group, dict) and "members" in group:
+            groups[name] = {"members": group["members"], **group}
 
 
 def _caution_computed(grid: Grid, findings: Findings) -> None:

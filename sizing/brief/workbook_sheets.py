@@ -80,9 +80,7 @@ def _rows(
         (*sheet.columns, *sheet.keys) if sheet.keys_last else (*sheet.keys, *sheet.columns)
     )
     further_column = (Column(head=FURTHER, kind="text", note=FURTHER_NOTE),) if further_used else ()
-    factor_columns = tuple(
-        Column(head=str(encode(name, "text")), note="Factor on this load case") for name in names
-    )
+    factor_columns = tuple(Column(head=str(encode(name, "text"))) for name in names)
     own_columns = tuple(_with_unit(column, units) for column in keys_and_columns)
     return FilledSheet(
         title=sheet.title,

@@ -17,17 +17,23 @@ if TYPE_CHECKING:
     from openpyxl import Workbook
     from openpyxl.worksheet.worksheet import Worksheet
 
-TITLE_ROW, NOTE_ROW, HEAD_ROW = 1, 2, 3
-"""Rows above the entries; in a sheet of items the notes have a column of their own."""
+TITLE_ROW, PURPOSE_ROW, NOTE_ROW, HEAD_ROW = 1, 2, 3, 4
+"""Rows above the entries. In a sheet of items the notes have a column of their own."""
 
 SPARE_ROWS = 200
 """Rows below the last entry that offer the choices too."""
 
-NARROWEST, WIDEST, NOTE_WIDTH, VALUE_WIDTH = 9, 34, 60, 24
+NARROWEST, MIDDLING, WIDEST, NOTE_WIDTH, VALUE_WIDTH = 9, 18, 34, 60, 24
 """Column widths in characters."""
 
 CHARACTERS = 1.15
 """Width of a character of the notes' type in column units, with some room."""
+
+A4, A3 = 9, 8
+"""Codes of paper sizes (ISO/IEC 29500)."""
+
+WIDTH_OF_A4 = 150
+"""Characters across a sheet of A4 on its side that are legible yet."""
 
 _TEXT_KINDS = ("text", "date", "choice", "flag", "list", "list or word", "table")
 _SHORTEST_CHOICES = 255
@@ -82,16 +88,11 @@ class _Looks:
 
 def _fill(sheet: Worksheet, filled: FilledSheet, looks: _Looks) -> None:
     _put(sheet, TITLE_ROW, 1, filled.title, text=True).font = looks.title
-    notes = [filled.note] if filled.row_columns else [column.note for column in filled.columns]
-    for c, note in enumerate(notes, start=1):
-        if note:
-            cell = _put(sheet, NOTE_ROW, c, note, text=True)
-            cell.font = looks.note
-            if not filled.row_columns:
-                cell.alignment = looks.low
-    if not filled.row_columns:
-        cell = _put(sheet, TITLE_ROW, 2, filled.note, text=True)
-        cell.font = looks.note
+    _put(sheet, PURPOSE_ROW, 1, filled.note, text=True).font = looks.note
+    for c, column in enumerate(filled.columns, start=1):
+        if column.note and not filled.row_columns:
+            cell = _put(sheet, NOTE_ROW, c, column.note, text=True)
+            cell.font, cell.alignment = looks.note, looks.low
     for c, column in enumerate(filled.columns, start=1):
         cell = _put(sheet, HEAD_ROW, c, column.head, text=True)
         cell.font, cell.fill, cell.border = looks.head, looks.fill, looks.under_head
@@ -137,10 +138,12 @@ def _lay_out(sheet: Worksheet, filled: FilledSheet) -> None:
             for column, width in zip(filled.columns, widths, strict=True)
         ]
         sheet.row_dimensions[NOTE_ROW].height = 11.5 * max(lines, default=1) + 2
+    rows = [-(-len(c.head) * 1.2 // w) for c, w in zip(filled.columns, widths, strict=True)]
+    sheet.row_dimensions[HEAD_ROW].height = 12.5 * max(rows, default=1) + 2
     sheet.freeze_panes = f"{'B' if len(filled.columns) > 1 else 'A'}{HEAD_ROW + 1}"
     sheet.sheet_view.showGridLines = False
     sheet.page_setup.orientation = "landscape"
-    sheet.page_setup.paperSize = 9
+    sheet.page_setup.paperSize = A3 if sum(widths) > WIDTH_OF_A4 else A4
     sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
     sheet.sheet_properties.pageSetUpPr.fitToPage = True
     sheet.print_title_rows = f"{TITLE_ROW}:{HEAD_ROW}"
@@ -155,8 +158,8 @@ def _width(filled: FilledSheet, c: int) -> float:
     column = filled.columns[c]
     words = max((len(word) for word in column.head.split()), default=1)
     longest = max((len(str(row[c])) for row in filled.rows if row[c] is not None), default=0)
-    wanted = max(words * 1.2, longest * 1.05, len(column.note) / 4) + 2
-    return min(max(wanted, NARROWEST), WIDEST)
+    least = max(words * 1.15, min(len(column.note) / 4, MIDDLING), NARROWEST)
+    return min(max(least, longest * 1.05), WIDEST) + 1
 
 
 def _offer_choices(sheet: Worksheet, filled: FilledSheet) -> None:
