@@ -19,7 +19,15 @@ from sizing.brief.shapes_actions import (
     add_sag,
 )
 from sizing.brief.shapes_parameters import Parameter, Values
-from sizing.brief.shapes_sketch import Pair, Sketch, pairs, restrained, runs
+from sizing.brief.shapes_sketch import (
+    Pair,
+    Sketch,
+    pairs,
+    restrained,
+    restrained_places,
+    runs,
+    stepped,
+)
 
 SLIM = 12.0
 """Usual span over depth of a parallel girder (10 to 15, common practice)."""
@@ -274,12 +282,11 @@ def _held_sideways(girder: _Girder, names: Sequence[str], along: Sequence[float]
     """Return the restrained nodes: span by span where the chord has nodes at the supports."""
     if len(names) != girder.total + 1:
         return restrained(girder.name, names, along, girder.restraint)
-    held: list[str] = []
+    held: set[int] = set()
     for first, last in pairwise(girder.supports):
-        part = slice(first, last + 1)
-        found = restrained(girder.name, names[part], along[part], girder.restraint)
-        held += [name for name in found if name not in held]
-    return held
+        places = restrained_places(girder.name, along[first : last + 1], girder.restraint)
+        held |= {first + place for place in places}
+    return stepped(names, sorted(held))
 
 
 def _web_by_zone(

@@ -103,6 +103,11 @@ def _in_step(one: Pair, other: Pair) -> bool:
 def restrained(
     shape: str, names: Sequence[str], along: Sequence[float], greatest: float
 ) -> list[str]:
+    """Return nodes of a chord as words; see :func:`restrained_places`."""
+    return stepped(names, restrained_places(shape, along, greatest))
+
+
+def restrained_places(shape: str, along: Sequence[float], greatest: float) -> list[int]:
     """Return nodes of a chord, no farther apart than ``greatest``, the same from both ends.
 
     ``along`` are the nodes' places on the chord in m. Raises :class:`InputError` when a single
@@ -121,7 +126,7 @@ def restrained(
                 )
             ]
         )
-    last = len(names) - 1
+    last = len(along) - 1
     half = along[0] + (along[-1] - along[0]) / 2.0
     chosen = {0, last}
     here = 0
@@ -137,7 +142,7 @@ def restrained(
         while along[b] - along[at] > greatest * (1.0 + 1e-9):
             at = _farthest(along, at, greatest)
             chosen.add(at)
-    return stepped(names, sorted(chosen))
+    return sorted(chosen)
 
 
 def _farthest(along: Sequence[float], start: int, reach: float) -> int:

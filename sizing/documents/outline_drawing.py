@@ -8,10 +8,10 @@ from xml.etree import ElementTree as Xml
 
 from sizing.brief.model import Brief
 from sizing.documents.label_layout import Point, text_width
+from sizing.documents.outline_text import CLOSING
 from sizing.documents.plain_text import shortened, visible
 from sizing.documents.projection import View, views_of
 from sizing.documents.svg_paper import QUIET, Paper, svg_document
-from sizing.documents.outline_text import CLOSING
 
 BORDER, GAP = 40.0, 56.0
 SHORT_MEMBER = 70.0
