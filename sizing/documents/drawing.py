@@ -23,7 +23,7 @@ from sizing.documents.view_drawing import (
     TENSION,
     TYPE,
     DrawnView,
-    draw_view,
+    draw_views,
     line_width,
 )
 from sizing.documents.wording import CLOSING_CAUTION, mark_runs, outcome_sentence
@@ -94,7 +94,7 @@ def _sheet(job: JobResult, option: OptionResult) -> Sheet:
     units = shown_units(job.brief.units)
     views = views_of(job.brief)
     scale = _scale(job, option, views[0])
-    drawn = [draw_view(job.brief, option, view, scale, units) for view in views]
+    drawn = draw_views(job.brief, option, views, scale, units)
     places, width, height = _arrange(drawn)
     width = max(width, NARROWEST_SHEET - 2 * BORDER)
     paper = Paper()
@@ -169,16 +169,15 @@ def _legend(
     paper.text("Line weight by area of section.", (x, y), size=11.0, ink=QUIET)
     y += 20.0
     y = _group_lines(paper, option, units, y, width)
-    space = job.brief.dimensions == 3
+    behind = (
+        " Members behind one another share a line in a view; each is named in one view or another."
+        if job.brief.dimensions == 3
+        else ""
+    )
     notes = (
         f"Centre lines, true to scale; dimensions in {units.length.unit}; nodes are system "
         "points. Supports: triangle on hatching is held in both directions, triangle on a line "
-        "slides along it; letters name the axes held."
-        + (
-            " Members behind one another share a line in a view: the general view names all."
-            if space
-            else ""
-        ),
+        "slides along it; letters name the axes held." + behind,
         CLOSING_CAUTION,
         f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256[:12]}; "
         f"sizing {job.version}",

@@ -87,7 +87,10 @@ def nodes_table(brief: Brief, units: ShownUnits) -> Table:
         title="Nodes and supports",
         columns=(
             Column(head="Node"),
-            *(Column(head=a, unit=length.unit, style="number", places=4) for a in names),
+            *(
+                Column(head=a, unit=length.unit, style="number", places=length.places + 1)
+                for a in names
+            ),
             Column(head="Held along"),
         ),
         rows=rows,

@@ -1,4 +1,4 @@
-"""One view of the truss: lines, nodes, supports, labels and overall dimensions."""
+"""Views of the truss: lines, supports and overall dimensions."""
 
 from __future__ import annotations
 
@@ -8,11 +8,11 @@ from dataclasses import dataclass
 
 from sizing.brief.model import Brief
 from sizing.documents.label_layout import Box, Layout, Point, segment_box, text_width
-from sizing.documents.plain_text import shortened, visible
 from sizing.documents.projection import View
 from sizing.documents.quantities import ShownUnits
 from sizing.documents.svg_paper import INK, QUIET, Paper
-from sizing.results import MemberResult, OptionResult
+from sizing.documents.view_names import Names, Wanted, at_points, joined, write_marks, write_nodes
+from sizing.results import OptionResult
 
 TENSION = ("#0b5fa5", "")
 COMPRESSION = ("#c2500a", "8 3.5")
@@ -26,11 +26,6 @@ SIGN = 13.0
 
 PLAN = (0, 1)
 """The two axes in the paper of a space truss seen from above."""
-
-LONGEST_LABEL = 26
-NAMES_AT_ONE_POINT = 3
-BOLD = 1.08
-"""Width of bold over regular type."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,10 +42,34 @@ def line_width(area: float, greatest: float) -> float:
     return 1.2 + 3.6 * max(area, 0.0) / greatest if greatest > 0.0 else 2.0
 
 
-def draw_view(
-    brief: Brief, option: OptionResult, view: View, scale: float, units: ShownUnits
+def draw_views(
+    brief: Brief, option: OptionResult, views: Sequence[View], scale: float, units: ShownUnits
+) -> list[DrawnView]:
+    """Draw ``views`` with ``scale`` px per m.
+
+    The general view of a space truss comes last, when it is known which names stand clearly in
+    the flat views and may be left out where it is crowded.
+    """
+    elsewhere: set[str] = set()
+    order = sorted(range(len(views)), key=lambda i: views[i].axes is None)
+    drawn = {i: _draw_view(brief, option, views[i], scale, units, elsewhere) for i in order}
+    return [drawn[i] for i in range(len(views))]
+
+
+def _wanted(brief: Brief, view: View) -> Wanted:
+    if view.axes is None:
+        return "missing"
+    return "where free" if brief.dimensions == 3 and view.axes == PLAN else "all"
+
+
+def _draw_view(
+    brief: Brief,
+    option: OptionResult,
+    view: View,
+    scale: float,
+    units: ShownUnits,
+    elsewhere: set[str],
 ) -> DrawnView:
-    """Draw ``view`` with ``scale`` px per m."""
     left, bottom, right, top = view.box
     size = TYPE if len(brief.members) <= MANY_MEMBERS else SMALL_TYPE
     side = _room_for_names(brief, view, size)
@@ -60,13 +79,20 @@ def draw_view(
     points = [
         (origin[0] + (x - left) * scale, origin[1] + (top - y) * scale) for x, y in view.points
     ]
-    crowded = brief.dimensions == 3 and view.axes == PLAN
     paper, layout = Paper(), Layout()
     paper.text(view.title, (origin[0], 16.0), size=12.0, bold=True)
     _members(paper, layout, brief, option, points)
     _supports(paper, layout, brief, view, points)
-    _nodes(paper, layout, brief, points, size, all_names=not crowded)
-    _labels(paper, layout, brief, option, points, size, with_sections=view.main, must=not crowded)
+    names = Names(
+        paper=paper,
+        layout=layout,
+        size=size,
+        wanted=_wanted(brief, view),
+        elsewhere=elsewhere,
+        sections=view.main,
+    )
+    write_nodes(names, brief, points)
+    write_marks(names, brief, option, points)
     if view.axes is not None:
         _dimensions(paper, view, origin, scale, units)
     return DrawnView(paper, max(width, origin[0] + text_width(view.title, 12.0) + 8), height)
@@ -74,8 +100,8 @@ def draw_view(
 
 def _room_for_names(brief: Brief, view: View, size: float) -> float:
     """Return the px that the names of the nodes may take at either side."""
-    together = _at_points(view.points, places=6).values()
-    names = (_joined([brief.nodes[i].name for i in nodes])[0] for nodes in together)
+    together = at_points(view.points, places=6).values()
+    names = (joined([brief.nodes[i].name for i in nodes])[0] for nodes in together)
     return max(LEAST_ROOM, max(text_width(name, size) for name in names) + 10.0)
 
 
@@ -91,19 +117,11 @@ def _members(
         layout.add(segment_box(a, b, 2.5), "line")
 
 
-def _at_points(points: Sequence[Point], places: int = 1) -> dict[Point, list[int]]:
-    """Return node indices by where they fall on the paper (several may share a point)."""
-    together: dict[Point, list[int]] = {}
-    for i, (x, y) in enumerate(points):
-        together.setdefault((round(x, places), round(y, places)), []).append(i)
-    return together
-
-
 def _supports(
     paper: Paper, layout: Layout, brief: Brief, view: View, points: Sequence[Point]
 ) -> None:
     held = {s.node: s.held for s in brief.supports}
-    for nodes in _at_points(points).values():
+    for nodes in at_points(points).values():
         flags = [held[i] for i in nodes if i in held]
         if not flags:
             continue
@@ -160,147 +178,6 @@ def _triangle(paper: Paper, at: Point, *, upright: bool, slides: bool) -> None:
     else:
         for k in range(-2, 3):
             paper.line(turned(k * w / 2 + 1, h), turned(k * w / 2 - 3, h + 5), width=0.8)
-
-
-def _nodes(
-    paper: Paper,
-    layout: Layout,
-    brief: Brief,
-    points: Sequence[Point],
-    size: float,
-    *,
-    all_names: bool,
-) -> None:
-    neighbours: dict[int, list[int]] = {}
-    for member in brief.members:
-        neighbours.setdefault(member.start, []).append(member.end)
-        neighbours.setdefault(member.end, []).append(member.start)
-    together = list(_at_points(points).values())
-    for nodes in together:
-        x, y = points[nodes[0]]
-        paper.circle((x, y), 2.4)
-        layout.add(Box(x, y, 6.0, 6.0), "sign")
-    for nodes in together:
-        x, y = points[nodes[0]]
-        words, full = _joined([brief.nodes[i].name for i in nodes])
-        ends = [points[k] for i in nodes for k in neighbours.get(i, ())]
-        boxes = _around((x, y), ends, text_width(words, size), size)
-        best = min(boxes, key=lambda box: (layout.clashes(box), boxes.index(box)))
-        if not all_names and layout.clashes(best):
-            continue  # another view names it
-        layout.add(best, "text")
-        paper.text_in(words, best, size=size, halo=True, ink=QUIET, full=full)
-
-
-def _around(at: Point, ends: Sequence[Point], width: float, size: float) -> list[Box]:
-    """Return places for a node's name, the side without members first."""
-    away = math.atan2(-sum(_unit(at, e)[1] for e in ends), -sum(_unit(at, e)[0] for e in ends))
-    boxes = []
-    for reach in (6.0, 14.0):
-        for turn in (0, 0.25, -0.25, 0.5, -0.5, 0.75, -0.75, 1.0):
-            angle = away + turn * math.pi
-            dx, dy = math.cos(angle), math.sin(angle)
-            across = reach + abs(dx) * width / 2
-            boxes.append(Box(at[0] + dx * across, at[1] + dy * (reach + size * 0.55), width, size))
-    return boxes
-
-
-def _unit(a: Point, b: Point) -> Point:
-    length = math.dist(a, b) or 1.0
-    return (b[0] - a[0]) / length, (b[1] - a[1]) / length
-
-
-def _joined(names: Sequence[str]) -> tuple[str, str]:
-    """Return names at one point as a short label, and in full."""
-    full = ", ".join(visible(name) for name in names)
-    few = ", ".join(shortened(visible(n), LONGEST_LABEL) for n in names[:NAMES_AT_ONE_POINT])
-    more = len(names) - NAMES_AT_ONE_POINT
-    return (f"{few} +{more}" if more > 0 else few), full
-
-
-def _labels(
-    paper: Paper,
-    layout: Layout,
-    brief: Brief,
-    option: OptionResult,
-    points: Sequence[Point],
-    size: float,
-    *,
-    with_sections: bool,
-    must: bool,
-) -> None:
-    lines: dict[tuple[Point, Point], list[MemberResult]] = {}
-    for member, result in zip(brief.members, option.members, strict=True):
-        ends = (points[member.start], points[member.end])
-        a, b = sorted((round(x, 1), round(y, 1)) for x, y in ends)
-        lines.setdefault((a, b), []).append(result)
-    for (a, b), members in sorted(lines.items(), key=lambda item: -math.dist(*item[0])):
-        if math.dist(a, b) < size:
-            continue  # seen end on: it is labelled in another view
-        mark, full = _joined([m.mark for m in members])
-        section = shortened(visible(members[0].designation), LONGEST_LABEL)
-        variants = [section] if with_sections and len(members) == 1 else []
-        whole = f"{full}: {visible(members[0].designation)}"
-        _place(paper, layout, (a, b), mark, [*variants, ""], size, whole, must=must)
-
-
-def _place(
-    paper: Paper,
-    layout: Layout,
-    ends: tuple[Point, Point],
-    mark: str,
-    sections: Sequence[str],
-    size: float,
-    full: str,
-    *,
-    must: bool,
-) -> None:
-    """Put the mark, with its section where there is room, beside the member or upon it.
-
-    Where there is no room either way, the mark is written all the same if it ``must``.
-    """
-    for section in sections:
-        width = text_width(mark, size) * BOLD + (text_width(f"  {section}", size) if section else 0)
-        boxes = _beside(ends, width, size)
-        free = layout.first_free(boxes)
-        if free is not None:
-            layout.add(boxes[free], "text")
-            paper.text_in(mark, boxes[free], size=size, full=full, bold=True, after=section)
-            return
-    if not must:
-        return
-    boxes = _upon(ends, text_width(mark, size) * BOLD, size)
-    free = layout.first_free(boxes, ("text", "sign"))
-    box = boxes[free or 0]
-    layout.add(box, "text")
-    paper.text_in(mark, box, size=size, halo=True, full=full, bold=True)
-
-
-def _beside(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:
-    """Return places along a member, above its line first, near its middle first."""
-    (ax, ay), (bx, by) = ends
-    angle = math.atan2(by - ay, bx - ax)
-    if not -math.pi / 2 < angle <= math.pi / 2 - 1e-9:
-        angle += math.pi if angle <= 0 else -math.pi
-    nx, ny = math.sin(angle), -math.cos(angle)
-    off = size * 0.5 + 4.0
-    return [
-        Box(
-            ax + (bx - ax) * t + side * nx * off, ay + (by - ay) * t + side * ny * off,
-            width + 2.0, size, angle,
-        )
-        for t in (0.5, 0.4, 0.6, 0.32, 0.68, 0.25, 0.75)
-        for side in (1.0, -1.0)
-    ]  # fmt: skip
-
-
-def _upon(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:
-    """Return upright places on the line itself, for when there is no room beside it."""
-    (ax, ay), (bx, by) = ends
-    return [
-        Box(ax + (bx - ax) * t, ay + (by - ay) * t, width, size)
-        for t in (0.5, 0.4, 0.6, 0.3, 0.7, 0.22, 0.78)
-    ]
 
 
 def _dimensions(paper: Paper, view: View, origin: Point, scale: float, units: ShownUnits) -> None:
