@@ -22,7 +22,11 @@ from sizing.brief.combination_rules_actions import (
 )
 from sizing.brief.combination_rules_asce7 import asce7, read_asce7
 from sizing.brief.combination_rules_draft import finished
-from sizing.brief.combination_rules_durations import usual_durations
+from sizing.brief.combination_rules_durations import (
+    UsualDurations,
+    ask_en1995,
+    usual_durations,
+)
 from sizing.brief.combination_rules_en1990 import RULE as EN_1990
 from sizing.brief.combination_rules_en1990 import USUAL_PSI, en1990, read_en1990
 from sizing.brief.findings import Findings, KeyPath, quoted, shown
@@ -84,9 +88,12 @@ def read_rule(
     if _too_many(findings, path, cases, by_kind=by_kind) or len(findings.problems) > before:
         return ()
     actions = actions_of(cases, by_kind=by_kind)
+    standards = tuple(standards)
     usual = usual_durations(standards)
     if rule == EN_1990:
         european = read_en1990(findings, path, settings, actions)
+        if ask_en1995(standards):
+            _caution_storage(findings, settings.get("psi"), cases, usual)
         drafts = en1990(cases, actions, european)
     else:
         american = read_asce7(findings, path, settings, cases, *ASCE_7[rule])
@@ -94,6 +101,22 @@ def read_rule(
     if len(findings.problems) > before:
         return ()
     return finished(drafts, cases, usual, rule)
+
+
+def _caution_storage(
+    findings: Findings, psi: object, cases: Sequence[LoadCase], usual: UsualDurations
+) -> None:
+    """Say where timber counts a storage load as medium-term: EN 1995-1-1 Table 2.2 has it long."""
+    if not isinstance(psi, Mapping):
+        return
+    for case in cases:
+        category = psi.get(action_name(case), psi.get(case.kind))
+        storage = isinstance(category, str) and category.strip().casefold() == "storage"
+        if storage and (case.duration or usual[case.kind]) == "medium":
+            findings.caution(
+                f"Combination rule {EN_1990}: load case {case.name} is storage, which acts long "
+                '(EN 1995-1-1 Table 2.2), but counts as medium-term; set duration = "long".'
+            )
 
 
 def usual_long_term(factors: Mapping[int, float], cases: Sequence[LoadCase]) -> dict[int, float]:

@@ -133,7 +133,8 @@ class Formula:
     A slot maps kind → factor. ``leading`` must act. Of ``others`` at least ``least`` act;
     ``full``: every slot for which the brief has a load is filled (its parts are covered by
     other combinations). ``timed_by_leading``: the load duration is that of the leading load
-    (NDS Table N3 gives the time effect factor by it); else that of the shortest (NDS 2.3.2).
+    (NDS Table N3 gives the time effect factor by it), permanent where none leads; else that of
+    the shortest (NDS 2.3.2).
     """
 
     number: str
@@ -168,7 +169,7 @@ def _lrfd(snow: SnowFactors, live: float) -> tuple[Formula, ...]:
         )
 
     return (
-        Formula(number="2.3.1(1)", permanent=1.4),
+        Formula(number="2.3.1(1)", permanent=1.4, timed_by_leading=True),
         led(2, 1.2, {"imposed": 1.6}, (roof_too,)),
         led(3, 1.2, roof, ({"imposed": live, "wind": 0.5},)),
         led(4, 1.2, wind, ({"imposed": live}, roof_too)),
@@ -276,7 +277,7 @@ class _Rule:
         factors |= dict.fromkeys(strain, self.settings.self_straining)
         timed = None
         if formula.timed_by_leading and letter == "U":
-            timed = parts[0].choice
+            timed = parts[0].choice if parts else NONE
         return Draft(
             letter=letter,
             state="strength" if letter == "U" else "serviceability",

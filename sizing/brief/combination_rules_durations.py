@@ -52,14 +52,19 @@ def usual_durations(standards: Iterable[str]) -> UsualDurations:
     standards are asked for, the longer duration of each kind, which is on the safe side.
     """
     names = [name.casefold() for name in standards]
-    american = any("nds" in name for name in names)
-    european = any("1995" in name or "eurocode 5" in name or name == "ec5" for name in names)
+    american, european = any("nds" in name for name in names), ask_en1995(names)
     if american and european:
         return {
             kind: min(EN_DURATIONS[kind], US_DURATIONS[kind], key=LONGEST_FIRST.index)
             for kind in EN_DURATIONS
         }
     return US_DURATIONS if american else EN_DURATIONS
+
+
+def ask_en1995(standards: Iterable[str]) -> bool:
+    """Return whether EN 1995-1-1 is among the names of standards."""
+    names = ["".join(name.casefold().split()) for name in standards]
+    return any("1995" in name or "eurocode5" in name or name == "ec5" for name in names)
 
 
 def shortest_duration(

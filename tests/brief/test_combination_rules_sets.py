@@ -358,3 +358,34 @@ def test_the_level_of_wind_and_snow_is_said(edition, level):
         "and later); pressures from older maps do not belong here.",
         f"Combination rule ASCE {edition}: snow cases count as {level} snow of that edition.",
     ]
+
+
+def test_permanent_load_stays_permanent_beside_a_temperature_case():
+    """1.4D has the time effect factor of permanent load (NDS Table N3), temperature or not."""
+    cases = [case("D", "permanent"), case("T", "temperature")]
+    made = strength(expand("ASCE 7-16 LRFD", cases, {}, ["NDS"]))
+    alone = [c for c in made if "2.3.1(1)" in c.origin]
+    assert [dict(c.factors) for c in alone] == [{0: 1.4}, {0: 1.4, 1: 1.0}]
+    assert {c.duration for c in alone} == {"permanent"}
+
+
+@pytest.mark.parametrize(
+    ("standards", "duration", "cautioned"),
+    [
+        (["EN 1995-1-1"], None, True),
+        (["EC5"], "medium", True),
+        (["EN 1995-1-1"], "long", False),
+        (["EN 1993-1-1"], None, False),
+    ],
+)
+def test_storage_in_timber_asks_for_its_long_duration(standards, duration, cautioned):
+    """Storage acts long (EN 1995-1-1 Table 2.2, from memory), other imposed load medium."""
+    findings = Findings("brief.toml")
+    cases = [case("G", "permanent"), case("goods", "imposed", duration=duration)]
+    rule = {"rule": "EN 1990", "psi": {"imposed": "storage"}}
+    assert read_rule(findings, ("combination_rule",), rule, cases, standards)
+    expected = (
+        "Combination rule EN 1990: load case goods is storage, which acts long "
+        '(EN 1995-1-1 Table 2.2), but counts as medium-term; set duration = "long".'
+    )
+    assert (expected in findings.cautions) == cautioned
