@@ -7,6 +7,7 @@ from typing import Literal
 
 import numpy as np
 
+from sizing.standards.conditions import LIMIT_ROUNDING
 from sizing.standards.contract import FloatArray
 
 Curve = Literal["a0", "a", "b", "c", "d"]
@@ -68,10 +69,11 @@ def _curves_of_i(
         return "the catalogue gives no depth, width or flange thickness, which set the curve"
     if finish == "welded":
         return ("b", "c") if flange <= FLANGE_STEP else ("c", "d")
-    if ratio > SLENDER_I and flange <= FLANGE_STEP:
+    slender = ratio > SLENDER_I * (1.0 + LIMIT_ROUNDING)
+    if slender and flange <= FLANGE_STEP:
         return ("a0", "a0") if s460 else ("a", "b")
     if flange <= FLANGE_END:
         return ("a", "a") if s460 else ("b", "c")
-    if ratio > SLENDER_I:
+    if slender:
         return "Table 6.2 ends at flanges of 100 mm for rolled sections with h/b > 1.2"
     return ("c", "c") if s460 else ("d", "d")

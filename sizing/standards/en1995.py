@@ -48,6 +48,7 @@ from sizing.standards.settings import SettingsReader, nearest
 from sizing.standards.slenderness import slenderness_in_and_out
 from sizing.standards.timber_sections import (
     Exclusions,
+    is_sawn,
     over_durations,
     product_names,
     smaller_and_larger,
@@ -127,7 +128,7 @@ class EN1995:
     def _exclusions(self, catalogue: Catalogue, reasons: Reasons) -> Exclusions:
         excluded = Exclusions(catalogue, reasons)
         glulam = product_names(catalogue, "14080")
-        sawn = product_names(catalogue, "14081") | product_names(catalogue, "EN 336")
+        sawn = is_sawn(catalogue)
         if self.grade.product == "glulam":
             excluded.exclude(sawn & ~glulam, NOT_GLULAM)
         else:

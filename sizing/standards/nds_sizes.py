@@ -10,7 +10,12 @@ from sizing.standards.nds_strength import (
     SIZE_TOLERANCE,
     STUD_WIDEST,
 )
-from sizing.standards.timber_sections import Exclusions, smaller_and_larger
+from sizing.standards.timber_sections import (
+    Exclusions,
+    is_sawn,
+    product_names,
+    smaller_and_larger,
+)
 
 THINNEST, THICKEST = 1.5 * INCH, 4.0 * INCH
 """Dimension lumber is 2 to 4 in thick: 1.5 in dressed to 4 in rough (4.1.3.2)."""
@@ -21,6 +26,11 @@ POST_LEAST, POST_SPREAD = 4.5 * INCH, 2.0 * INCH
 def exclude_sizes(grade: NDSGrade, catalogue: Catalogue, excluded: Exclusions) -> None:
     """Leave out the sections for which the grade has no reference values."""
     smaller, larger = smaller_and_larger(catalogue)
+    glulam, sawn = product_names(catalogue, "14080"), is_sawn(catalogue)
+    if grade.product == "glulam":
+        excluded.exclude(sawn & ~glulam, "the catalogue row is sawn lumber, the grade is glulam")
+    else:
+        excluded.exclude(glulam & ~sawn, "the catalogue row is glulam, the grade is lumber")
     if grade.product in ("dimension lumber", "sized lumber"):
         thin = smaller < THINNEST - SIZE_TOLERANCE
         excluded.exclude(thin, "thinner than 2 in nominal: no dimension lumber")

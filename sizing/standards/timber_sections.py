@@ -55,6 +55,12 @@ def product_names(catalogue: Catalogue, standard: str) -> BoolArray:
     return np.array([standard in product for product in catalogue.product], dtype=bool)
 
 
+def is_sawn(catalogue: Catalogue) -> BoolArray:
+    """Return which rows (s,) name a product of sawn timber: EN 336, EN 14081 or NDS sizes."""
+    marks = ("EN 336", "14081", "NDS")
+    return np.asarray(np.logical_or.reduce([product_names(catalogue, mark) for mark in marks]))
+
+
 class Exclusions:
     """Collects why sections are not usable; the first reason of a section stands."""
 

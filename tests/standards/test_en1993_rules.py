@@ -329,3 +329,12 @@ def test_preset_groups_must_exist():
     twice = Preset(chords=("web*",), webs=("web",), web_ends="bolted")
     with pytest.raises(SettingsError, match="named by chords too"):
         twice.require_groups(["web"])
+
+
+def test_depth_of_exactly_1_2_widths_is_not_slender_in_any_unit():
+    """h/b = 1.2 takes the curves of h/b <= 1.2 (Table 6.2), whatever conversion rounds."""
+    for width in range(4, 500):
+        for unit in (1e-3, 0.0254):
+            depth = 1.2 * width * unit
+            size = {"depth": depth, "width": width * unit, "flange": 0.02}
+            assert buckling_curves("I", "rolled", **size, s460=False) == ("b", "c")

@@ -217,6 +217,25 @@ def test_sizes_that_a_grade_is_not_made_for(rectangles, members_of, grade, size,
 
 
 @pytest.mark.parametrize(
+    ("grade", "settings", "product", "reason"),
+    [
+        ("glulam", OWN, "NDS", "the catalogue row is sawn lumber, the grade is glulam"),
+        ("glulam", OWN, "EN 14080", ""),
+        ("DF-L No.2", {}, "EN 14080", "the catalogue row is glulam, the grade is lumber"),
+        ("DF-L No.2", {}, "NDS", ""),
+    ],
+)
+def test_grade_and_product_must_agree(rectangles, members_of, grade, settings, product, reason):
+    """Strengths of glulam are not for sawn boards, nor those of lumber for glulam."""
+    size = (1.5 * INCH, 5.5 * INCH)
+    table = make_nds(grade, settings).resistances(
+        rectangles(size, product=product), members_of(length=1.0), ("short",)
+    )
+    assert table.reasons[table.notes[0, 0]] == reason
+    assert table.usable[0, 0] == (not reason)
+
+
+@pytest.mark.parametrize(
     ("settings", "tension", "compression", "stiffness"),
     [
         ({"wet_service": True}, 1.0, 0.8, 0.9),
