@@ -177,7 +177,7 @@ def _legend(
     notes = (
         f"Centre lines, true to scale; dimensions in {units.length.unit}; nodes are system "
         "points. Supports: triangle on hatching is held in both directions, triangle on a line "
-        "slides along it; letters name the axes held." + behind,
+        "slides along it, square in plan; letters name the axes held." + behind,
         CLOSING_CAUTION,
         f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256[:12]}; "
         f"sizing {job.version}",
