@@ -17,6 +17,7 @@ from scipy import sparse
 from sizing.selection.analysis import DesignAnalysis, Evaluation
 from sizing.selection.choices import Choices
 from sizing.selection.determinate_forces import DeterminateForces
+from sizing.selection.determinate_hull import with_hulls
 from sizing.selection.determinate_rows import (
     DeflectionRows,
     StrengthRows,
@@ -25,6 +26,7 @@ from sizing.selection.determinate_rows import (
 )
 from sizing.selection.highs import LinearModel, LinearProgram, solve
 from sizing.selection.problem import SizingProblem
+from sizing.selection.search import first_designs
 from sizing.selection.watch import Watch
 
 FloatArray = NDArray[np.float64]
@@ -41,21 +43,14 @@ NEAR_LIMIT = 1e-8
 ROWS_A_ROUND = 40
 """Most strength rows (and as many deflection rows) added in one round."""
 
+HULLS_A_ROUND = 2
+"""Most deflection limits written out exactly after one failing design: each is a large block."""
+
 ROUNDS = 60
 """Most rounds of the linear relaxation; it only prepares, so ending early loses nothing."""
 
 LEAST_GAIN = 1e-6
 """Relative gain in bound below which a further round of the relaxation is not worth its time."""
-
-CORE_SIZES = (3, 6, 12)
-"""Sections a group, liked best by the relaxation, among which a first design is sought."""
-
-CORE_ROUNDS = 6
-"""Programs over one core: the rows that a failing answer breaks make the next one better."""
-
-CORE_SECONDS = 5.0
-CORE_GAP = 1e-4
-"""Time and relative gap of a core program: it only has to find a good design."""
 
 WORTH_TIGHTENING = 0.8
 """When fewer pairs than this part remain, ranges are narrowed and the relaxation is run again."""
@@ -88,7 +83,7 @@ class RowPool:
         self.rows: list[FloatArray] = []
         self.bounds: list[float] = []
         self._in_force: set[int] = set()
-        self._cut_off: set[bytes] = set()
+        self.hulls: list[tuple[int, float]] = []
 
     def add(self, coefficients: FloatArray, bound: float) -> None:
         """Put coefficients · x <= bound in force."""
@@ -100,11 +95,7 @@ class RowPool:
         problem, choices = self.problem, self.choices
         before = len(self.rows)
         w = choices.averages(problem.weight, x)
-        excess = self.strength.violation(choices, x, w)
-        for t in _worst(excess, tolerance):
-            if t not in self._in_force:
-                self._in_force.add(t)
-                self.add(*self.strength.row(t, choices, problem.weight))
+        self._add_strength(self.strength.violation(choices, x, w), tolerance)
         if problem.deflection_limit.size:
             y = choices.averages(1.0 / problem.stiffness, x)
             u = self.deflection.movements(y, w)
@@ -114,12 +105,27 @@ class RowPool:
                 self.add(*self.deflection.row(r, math.copysign(1.0, u[r]), y))
         return len(self.rows) - before
 
-    def cut_off(self, design: IntArray) -> None:
-        """Cut off a failing design by the rows it breaks, or by itself when none does."""
+    def _add_strength(self, excess: FloatArray, tolerance: float) -> int:
+        new = [t for t in _worst(excess, tolerance) if t not in self._in_force]
+        for t in new:
+            self._in_force.add(t)
+            self.add(*self.strength.row(t, self.choices, self.problem.weight))
+        return len(new)
+
+    def cut_off(self, found: Evaluation) -> None:
+        """Cut off a failing design by the exact limits it breaks, or by itself when none does."""
+        problem, design = self.problem, found.sections
         x = self.choices.point(design)
-        again = design.tobytes() in self._cut_off
-        self._cut_off.add(design.tobytes())
-        if x is None or again or self.add_violated(x, NEAR_LIMIT) == 0:
+        new = 0
+        if x is not None:
+            w = self.choices.averages(problem.weight, x)
+            new = self._add_strength(self.strength.violation(self.choices, x, w), NEAR_LIMIT)
+            for r in _worst(found.deflection - 1.0, NEAR_LIMIT)[:HULLS_A_ROUND]:
+                limit = (r, math.copysign(1.0, found.movements[r]))
+                if limit not in self.hulls:
+                    self.hulls.append(limit)
+                    new += 1
+        if new == 0:
             self.forbid(design)
 
     def forbid(self, design: IntArray) -> None:
@@ -129,7 +135,8 @@ class RowPool:
 
     def model(self, scale: float, *, integer: bool) -> LinearModel:
         """Build the model: cost over ``scale``, one choice for each group, all rows in force."""
-        return build_model(self.problem, self.choices, self.rows, self.bounds, scale, integer)
+        model = build_model(self.problem, self.choices, self.rows, self.bounds, scale, integer)
+        return with_hulls(model, self.deflection, self.hulls) if self.hulls else model
 
 
 def build_model(
@@ -166,7 +173,10 @@ def solve_determinate(
 ) -> ExactAnswer:
     """Find the cheapest feasible design of a determinate truss and prove it."""
     mask = remove_too_weak(problem, forces, problem.allowed)
-    best: Evaluation | None = None
+    if not mask.any(axis=1).all():
+        return _closed(None)
+    best = first_designs(analysis, mask, watch).best
+    mask = remove_too_weak(problem, forces, _affordable(problem, mask, best))
     bound = -math.inf
     while mask.any(axis=1).all() and not watch.stop():
         pool = RowPool(problem, forces, Choices.of(mask))
@@ -177,8 +187,8 @@ def solve_determinate(
             return _closed(best)
         if relaxed.reduced_costs is None:
             break
-        best = _core(pool, scale, analysis, watch, relaxed, best)
-        keep = remove_too_weak(problem, forces, _worth_keeping(pool, relaxed, best))
+        keep = _worth_keeping(pool, relaxed, best)
+        keep = remove_too_weak(problem, forces, _affordable(problem, keep, best))
         if keep.sum() > WORTH_TIGHTENING * mask.sum():
             found = _integer_rounds(pool, scale, analysis, watch, best)
             bound = max(bound, found.bound)
@@ -187,6 +197,15 @@ def solve_determinate(
     if watch.stop() and mask.any(axis=1).all():
         return ExactAnswer(best=best, bound=bound, finished=False)
     return _closed(best)
+
+
+def _affordable(problem: SizingProblem, mask: BoolArray, best: Evaluation | None) -> BoolArray:
+    # Beside the cheapest sections of all other groups, a section must not cost more than ``best``.
+    if best is None:
+        return mask
+    least = np.where(mask, problem.cost, np.inf).min(axis=1)
+    room = best.objective * (1.0 + ROUNDING) - least.sum() + least
+    return np.asarray(mask & (problem.cost <= room[:, None]))
 
 
 def _closed(best: Evaluation | None) -> ExactAnswer:
@@ -235,41 +254,16 @@ def _worth_keeping(pool: RowPool, relaxed: _Relaxed, best: Evaluation | None) ->
     return keep
 
 
-def _core(
-    pool: RowPool,
-    scale: float,
-    analysis: DesignAnalysis,
-    watch: Watch,
-    relaxed: _Relaxed,
-    best: Evaluation | None,
-) -> Evaluation | None:
-    # A feasible design from the few sections of each group that the relaxation likes best.
-    assert relaxed.reduced_costs is not None
-    for size in CORE_SIZES:
-        liked = np.zeros(pool.choices.count, dtype=bool)
-        for part in pool.choices.slices:
-            order = np.argsort(relaxed.reduced_costs[part], kind="stable")[:size]
-            liked[part.start + order] = True
-        for _ in range(CORE_ROUNDS):
-            if watch.stop():
-                return best
-            answer = solve(
-                _restricted(pool.model(scale, integer=True), liked),
-                seconds=min(CORE_SECONDS, watch.left),
-                stop=watch.asked,
-                gap=CORE_GAP,
-            )
-            if answer.values is None:
-                break
-            found = analysis.evaluate(pool.choices.design(answer.values))
-            if found.feasible:
-                return found if best is None or found.objective < best.objective else best
-            pool.cut_off(found.sections)
-    return best
-
-
-def _restricted(model: LinearModel, liked: BoolArray) -> LinearModel:
-    return replace(model, upper=np.where(liked, model.upper, 0.0))
+def _capped(model: LinearModel, limit: float) -> LinearModel:
+    # Nothing dearer than what is known is of interest.
+    if math.isinf(limit):
+        return model
+    return replace(
+        model,
+        matrix=sparse.csr_array(sparse.vstack([model.matrix, sparse.csr_array([model.cost])])),
+        row_lower=np.append(model.row_lower, -np.inf),
+        row_upper=np.append(model.row_upper, limit),
+    )
 
 
 def _integer_rounds(
@@ -281,16 +275,18 @@ def _integer_rounds(
 ) -> ExactAnswer:
     bound = -math.inf
     while not watch.stop():
-        start = None if best is None else pool.choices.point(best.sections)
+        limit = math.inf if best is None else best.objective * (1.0 + ROUNDING)
         answer = solve(
-            pool.model(scale, integer=True), seconds=watch.left, start=start, stop=watch.asked
+            _capped(pool.model(scale, integer=True), limit / scale),
+            seconds=watch.left,
+            stop=watch.asked,
         )
         if answer.status == "infeasible":
             return _closed(best)
         bound = max(bound, answer.bound * scale)
         if answer.values is None:
             break
-        found = analysis.evaluate(pool.choices.design(answer.values))
+        found = analysis.evaluate(pool.choices.design(answer.values[: pool.choices.count]))
         if found.feasible and (best is None or found.objective < best.objective):
             best = found
         watch.report("proving", best.objective if best else None, bound, analysis.count)
@@ -298,7 +294,7 @@ def _integer_rounds(
             break
         if best is not None and bound >= best.objective * (1.0 - ROUNDING):
             return _closed(best)
-        pool.cut_off(found.sections)
+        pool.cut_off(found)
     return ExactAnswer(best=best, bound=bound, finished=False)
 
 

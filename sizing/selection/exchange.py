@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from sizing.selection.choices import Choices
+from sizing.selection.linear_steps import in_reach
 from sizing.selection.linearisation import Linearisation
 from sizing.selection.record import Record
 from sizing.selection.step_program import StepRules, propose
@@ -18,6 +19,9 @@ CHEAPER = 1e-7
 MOST_EXCESS = 0.05
 """Predicted excess beyond which a cheaper design is not worth an analysis."""
 
+REACH = 0.8
+"""Greatest change of ln(EA) in an improvement."""
+
 PATIENCE = 6
 """Failures in a row after which the predicted excess is compared with the errors seen."""
 
@@ -27,7 +31,9 @@ def improve(record: Record, choices: Choices, core: int = 5) -> None:
     errors: list[float] = []
     centre = record.best
     while centre is not None and record.best is not None and not record.watch.stop():
-        near = choices.point(centre.sections)
+        model = Linearisation.at(record.analysis, centre)
+        close = Choices.of(in_reach(record.analysis.problem, choices.mask, model.y, REACH))
+        near = close.point(centre.sections)
         if near is None:
             return
         rules = StepRules(
@@ -43,8 +49,7 @@ def improve(record: Record, choices: Choices, core: int = 5) -> None:
             gap=1e-3,
             stop=record.watch.asked,
         )
-        model = Linearisation.at(record.analysis, centre)
-        step = propose(model, choices, near, rules)
+        step = propose(model, close, near, rules)
         if step is None:
             return
         before = record.best

@@ -9,8 +9,8 @@ from sizing.selection.analysis import DesignAnalysis, Evaluation
 from sizing.selection.choices import Choices
 from sizing.selection.linearisation import Linearisation
 from sizing.selection.problem import SizingProblem
-from sizing.selection.record import EXCESS_PRICE, Record
-from sizing.selection.step_program import StepRules, propose, relaxed_step
+from sizing.selection.record import Record
+from sizing.selection.step_program import EXCESS_PRICE, StepRules, propose, relaxed_step
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]

@@ -6,16 +6,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from sizing.selection.analysis import DesignAnalysis, Evaluation
+from sizing.selection.step_program import EXCESS_PRICE
 from sizing.selection.watch import Watch
 
 IntArray = NDArray[np.intp]
 
-EXCESS_PRICE = 5.0
-"""Price of predicted excess in units of the present cost: well above what any relaxation of a
-limit has been worth, so that the steps end feasible."""
-
-STEP_SECONDS = 2.0
-"""Time for one integer program of a step: the step is checked anyway, so a good answer will do."""
+STEP_SECONDS = 20.0
+"""Most time for one integer program of a step; nodes end it long before, and repeatably."""
 
 WORST_PRICED = 1e6
 """Excess at which the price stops growing; it is infinite where there is no resistance."""

@@ -10,6 +10,7 @@ from sizing.selection.choices import Choices
 from sizing.selection.exchange import improve
 from sizing.selection.linear_steps import descend, descend_mixed, round_mixture
 from sizing.selection.record import Record
+from sizing.selection.reduction import efficient_sections
 from sizing.selection.starts import STRESS_RATIO_PASSES, stiffest, strengthened, stress_ratio_design
 from sizing.selection.watch import Watch
 
@@ -19,6 +20,7 @@ BoolArray = NDArray[np.bool_]
 def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Record:
     """Search for a cheap feasible design over the pairs (g, s) in ``mask``."""
     record = Record(analysis, watch)
+    mask = efficient_sections(analysis.problem, mask)
     choices = Choices.of(mask)
     strong = record.try_design(stiffest(analysis.problem, mask))
     light = stress_ratio_design(analysis, mask, STRESS_RATIO_PASSES)
@@ -33,4 +35,17 @@ def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Recor
             descend(record, choices, found)
         if record.best is not before:
             improve(record, choices)
+    return record
+
+
+def first_designs(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Record:
+    """Find a good feasible design quickly, for a method that proves by itself."""
+    record = Record(analysis, watch)
+    mask = efficient_sections(analysis.problem, mask)
+    choices = Choices.of(mask)
+    strong = record.try_design(stiffest(analysis.problem, mask))
+    x = descend_mixed(record, choices, strong.sections)
+    found = None if x is None else round_mixture(record, choices, x)
+    if found is not None:
+        descend(record, choices, found)
     return record

@@ -28,6 +28,10 @@ WATCHED = 0.7
 ROW_TOLERANCE = 1e-6
 """Predicted excess over the elastic variable at which a missing row is added."""
 
+EXCESS_PRICE = 5.0
+"""Price of predicted excess in units of the present cost: well above what any relaxation of a
+limit has been worth, so that the steps end feasible."""
+
 ROUNDS = 5
 """Most programs of one step; the answer is analysed exactly anyway."""
 
@@ -62,7 +66,8 @@ class StepRules:
     most_excess: float = math.inf
     cost_limit: float = math.inf
     forbidden: tuple[IntArray, ...] = ()
-    seconds: float = 10.0
+    seconds: float = 20.0
+    nodes: int = 200
     gap: float = 1e-6
     stop: Callable[[], bool] | None = None
 
@@ -76,19 +81,31 @@ def propose(
     """Solve one step over ``choices``; None when the program has no answer.
 
     ``near`` (v,) is the point, whole or fractional, whose well used checks enter first. The
-    relaxation comes first: its reduced costs choose the ``rules.core`` sections of each group
-    that the integer program may take.
+    relaxation comes first, always for least cost: its reduced costs choose the ``rules.core``
+    sections of each group that the integer program may take.
     """
     rows = _Rows(model, choices, rules.margin)
     rows.watch(near)
-    relaxed = _relax(rows, rules)
+    relaxed = _relax(
+        rows,
+        replace(
+            rules,
+            cost_weight=1.0,
+            excess_weight=EXCESS_PRICE,
+            least_excess=0.0,
+            cost_limit=math.inf,
+            forbidden=(),
+        ),
+    )
     if relaxed is None or relaxed.reduced_costs is None:
         return None
     upper = np.append(_core(choices, relaxed.reduced_costs[:-1], rules.core), rules.most_excess)
     answer: Step | None = None
     for _ in range(ROUNDS):
         program = replace(rows.program(rules, integer=True), upper=upper)
-        solved = solve(program, seconds=rules.seconds, stop=rules.stop, gap=rules.gap)
+        solved = solve(
+            program, seconds=rules.seconds, stop=rules.stop, gap=rules.gap, nodes=rules.nodes
+        )
         if solved.values is None:
             return answer
         sections = choices.design(solved.values[:-1])
