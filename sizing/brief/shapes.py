@@ -55,7 +55,7 @@ SHAPES: dict[str, Shape] = {
                pitched.PANELLED, pitched.howe_roof),
         _shape("pratt-roof", "pitched, verticals, diagonals in tension",
                pitched.PANELLED, pitched.pratt_roof),
-        _shape("mono-pitch", "one slope, verticals at both ends, diagonals in tension",
+        _shape("mono-pitch", "one slope, verticals at both ends, diagonals towards the middle",
                sloped.MONO_PITCH, sloped.mono_pitch),
         _shape("bowstring", "top chord on a parabola", pitched.BOWSTRING, pitched.bowstring),
         _shape("scissors", "pitched, crossing ties under a raised ceiling",

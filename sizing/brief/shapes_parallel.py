@@ -236,13 +236,25 @@ def _alternating(girder: _Girder, panel: int) -> Pair:
     return _falling(panel) if falls else _rising(panel)
 
 
-def _zone(girder: _Girder, panel: int) -> str:
-    """Return ``outer`` in the quarters next to the supports, ``inner`` between them."""
-    return "outer" if girder.from_end(panel) < round(girder.panels / 4) else "inner"
+def _zone(girder: _Girder, panel: int, *, set_off: bool = False) -> str:
+    """Return ``outer`` in the quarters next to the supports, ``inner`` between them.
+
+    ``set_off``: the member k of the chord lies half a panel to the left of panel k.
+    """
+    k = panel % girder.panels
+    from_end = min(k, girder.panels - k) - 1 if set_off else girder.from_end(panel)
+    return "outer" if from_end < round(girder.panels / 4) else "inner"
 
 
 def _chord(
-    sketch: Sketch, girder: _Girder, name: str, letter: str, panels: Sequence[int], **more: Any
+    sketch: Sketch,
+    girder: _Girder,
+    name: str,
+    letter: str,
+    panels: Sequence[int],
+    *,
+    set_off: bool = False,
+    **more: Any,
 ) -> None:
     """Set the groups of a chord, by zone in long spans."""
     if girder.panels < ZONED:
@@ -251,7 +263,7 @@ def _chord(
     for zone in ("outer", "inner"):
         other = f"{name}-{'inner' if zone == 'outer' else 'outer'}"
         chain = {"continues_in": [other]} if "restrained_nodes" in more else {}
-        chosen = [k for k in panels if _zone(girder, k) == zone]
+        chosen = [k for k in panels if _zone(girder, k, set_off=set_off) == zone]
         sketch.group(f"{name}-{zone}", runs(letter, chosen), **more, **chain)
 
 
@@ -270,7 +282,11 @@ def _bottom_chord(
 ) -> None:
     held = _held_sideways(girder, names, along)
     buckling = {"in_plane": 1.0}
-    _chord(sketch, girder, "bottom-chord", "A", panels, buckling=buckling, restrained_nodes=held)
+    set_off = len(names) != girder.total + 1
+    _chord(
+        sketch, girder, "bottom-chord", "A", panels, set_off=set_off, buckling=buckling,
+        restrained_nodes=held,
+    )  # fmt: skip
     first = next(name for name in sketch.groups if name.startswith("bottom-chord"))
     sketch.comments[("groups", first)] = (
         "The restrained nodes are held sideways by bracing that must be drawn and built; uplift "

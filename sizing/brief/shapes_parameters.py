@@ -62,11 +62,13 @@ def read_parameters(
 
 def _value(parameter: Parameter, given: object, findings: Findings) -> Any:
     if given == "":
+        if parameter.usual:
+            findings.add((parameter.name,), found="nothing", expected=parameter.words)
         return None
     if parameter.kind == "choice":
         return _choice(parameter, given, findings)
     if parameter.kind == "lengths":
-        parts = given.split(",") if isinstance(given, str) else given
+        parts = [t.strip() for t in given.split(",")] if isinstance(given, str) else given
         parts = [parts] if isinstance(parts, (int, float)) else parts
         if not isinstance(parts, (list, tuple)) or not 1 <= len(parts) <= MOST_SPANS:
             expected = f'1 to {MOST_SPANS} lengths, such as "24 m, 30 m"'
@@ -110,8 +112,8 @@ def _count(parameter: Parameter, given: object, findings: Findings) -> int | Non
     even = parameter.kind == "even"
     if (
         not whole
+        or not parameter.least <= value <= parameter.greatest  # refuses NaN and infinity as well
         or value != int(value)
-        or not parameter.least <= value <= parameter.greatest
         or (even and value % 2)
     ):
         what = "an even number" if even else "a whole number"

@@ -62,7 +62,7 @@ CANOPY = (
 
 
 def mono_pitch(values: Values) -> Sketch:
-    """Draw a level bottom chord, a top chord that rises to the right, ties as diagonals."""
+    """Draw a level bottom chord, a rising top chord, diagonals towards the middle."""
     span, n = values["span"], values["panels"]
     slope = math.tan(math.radians(values["pitch"]))
     depth = values["depth"] or max(0.5, round(span / SLIM - slope * span / 2, 2))

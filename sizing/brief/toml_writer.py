@@ -45,9 +45,9 @@ def toml_text(tables: Mapping[str, Any], comments: Comments | None = None) -> st
 
 
 def _comment_lines(text: str) -> list[str]:
-    return [
-        f"# {line}".rstrip() for part in text.split("\n") for line in wrap(part, LINE - 2) or [""]
-    ]
+    """Return remark lines; what a comment may not hold becomes a space."""
+    parts = ["".join(c if c.isprintable() else " " for c in part) for part in text.split("\n")]
+    return [f"# {line}".rstrip() for part in parts for line in wrap(part, LINE - 2) or [""]]
 
 
 def toml_key(name: str) -> str:

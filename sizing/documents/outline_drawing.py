@@ -22,6 +22,8 @@ TYPE = 9.0
 SIGN = 11.0
 """Height of the support sign, px."""
 LONGEST_LABEL = 24
+ALONG = 0.42
+"""Place of a mark on its line, as a part of the length."""
 
 
 def outline_svg(brief: Brief) -> bytes:
@@ -84,8 +86,8 @@ def _view(brief: Brief, view: View, scale: float) -> tuple[Paper, float, float]:
 
 
 def _mark(paper: Paper, a: Point, b: Point, mark: str) -> None:
-    """Write a member's mark at the middle of its line."""
-    at = ((a[0] + b[0]) / 2, (a[1] + b[1]) / 2 + 0.35 * TYPE)
+    """Write a member's mark on its line, off the middle, where others may cross."""
+    at = (a[0] + ALONG * (b[0] - a[0]), a[1] + ALONG * (b[1] - a[1]) + 0.35 * TYPE)
     paper.text(mark, at, size=TYPE, anchor="middle", bold=True, halo=True)
 
 

@@ -76,8 +76,9 @@ def _loads(outline: Outline) -> list[str]:
     lines = ["Load cases, before factors:"]
     for one in outline.cases:
         total = force_text(np.array(one.total), brief.units)
-        own = "; with the weight of the members" if one.case.self_weight else ""
-        lines.append(f"  {visible(one.case.name)} ({one.case.kind}): {total} in all{own}")
+        parts = [f"{total} in all"] if one.case.nodal else []
+        parts += ["the weight of the members"] if one.case.self_weight else []
+        lines.append(f"  {visible(one.case.name)} ({one.case.kind}): {', and '.join(parts)}")
         lines += [f"    {visible(row.text)}" for row in one.case.stated]
         lines += _reactions(one, brief)
     if outline.reactions_from:
