@@ -14,6 +14,7 @@ from sizing.brief.marks import member_marks
 from sizing.brief.model import BucklingLength, Group, Member
 from sizing.brief.name_ranges import all_nodes_named
 from sizing.brief.nodes_and_supports import NodeTable
+from sizing.brief.order_lengths import read_end_deduction, read_order_step
 from sizing.brief.raw_tables import RawGroup, read_entry
 from sizing.brief.restraint import restrained_lengths
 
@@ -257,6 +258,12 @@ def _plain_group(
         slenderness=slenderness,
         families=_words(entry.families, (*path, "families"), findings),
         designations=_words(entry.sections, (*path, "sections"), findings),
+        end_deduction=read_end_deduction(
+            path, entry, [members[i].length for i in own], findings, quantities
+        ),
+        order_step=read_order_step(path, entry, findings, quantities),
+        continuous=entry.continuous,
+        splices=entry.splices,
     )
 
 

@@ -92,6 +92,11 @@ class Group:
     ``restrained_nodes``: nodes held out of plane, where the brief lists them; each member then
     carries its own length between restraints (see :meth:`Brief.buckling_lengths`), and
     ``out_of_plane`` is the greatest of them, as a length.
+
+    For cutting: ``end_deduction`` is what the joints take off a member at its first and second
+    node (m; None: not given), ``order_step`` the step that order lengths are rounded up to.
+    ``continuous``: members in one line run through their nodes and are spliced at nodes only.
+    ``splices``: a piece longer than the stock may be spliced between nodes.
     """
 
     name: str
@@ -105,6 +110,10 @@ class Group:
     families: tuple[str, ...] = ()
     designations: tuple[str, ...] = ()
     restrained_nodes: tuple[int, ...] = ()
+    end_deduction: tuple[float, float] | None = None
+    order_step: float | None = None
+    continuous: bool = False
+    splices: bool = False
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -264,6 +273,34 @@ class Option:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class StockBars:
+    """Bars on sale: ``lengths`` in m; ``prices`` per bar and ``numbers`` at hand, if any."""
+
+    lengths: tuple[float, ...]
+    prices: tuple[float, ...] = ()
+    numbers: tuple[int, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Stock:
+    """What bars are cut from, for a cutting list.
+
+    ``bars`` for sections that neither ``per_section`` (pairs of designation pattern and bars,
+    the first that matches counts) nor the catalogue give lengths for; None: none. ``kerf``: the
+    width of a saw cut in m; ``trim``: lost at the start of every bar, m. ``trusses`` are cut
+    together. ``longest_piece``: longest that can be carried to the site, m.
+    """
+
+    bars: StockBars | None
+    per_section: tuple[tuple[str, StockBars], ...]
+    kerf: float
+    trim: float
+    minimise: Literal["length", "bars", "cost"]
+    trusses: int = 1
+    longest_piece: float | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class Brief:
     """Everything that was asked for, valid and in SI units.
 
@@ -284,6 +321,7 @@ class Brief:
     options: tuple[Option, ...]
     notes: str = ""
     cautions: tuple[str, ...] = ()
+    stock: Stock | None = None
 
     @property
     def dimensions(self) -> int:

@@ -49,6 +49,9 @@ class RawBrief(RawTable):
     combinations: list[Any] = Field([], description="tables [[combinations]]")
     deflection_limits: list[Any] = Field([], description="tables [[deflection_limits]]")
     options: dict[str, Any] = Field({}, description="tables [options.NAME], one for each option")
+    stock: dict[str, Any] | None = Field(
+        None, description='{ lengths = ["6 m", "12 m"], kerf = "3 mm" }'
+    )
 
 
 class RawUnits(RawTable):
@@ -106,6 +109,10 @@ class RawGroup(RawTable):
     sections: list[str | None] = Field(
         [], description='designations or patterns with * and ?, such as ["SHS 100*"]'
     )
+    end_deduction: Any = None
+    order_length: Any = None
+    continuous: bool = Field(False, description="true or false")
+    splices: bool = Field(False, description="true or false")
 
 
 class RawCase(RawTable):

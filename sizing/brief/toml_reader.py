@@ -19,6 +19,7 @@ from sizing.brief.model import Brief, SourceFile, Units
 from sizing.brief.nodes_and_supports import read_nodes, read_supports
 from sizing.brief.options import read_options, require_rates
 from sizing.brief.raw_tables import RawBrief, RawUnits, read_entry
+from sizing.brief.stock import read_stock
 from sizing.brief.toml_file import load_toml
 from sizing.brief.truss_checks import check_truss
 from sizing.errors import InputError, Problem
@@ -116,6 +117,7 @@ def brief_from_tables(
         quantities,
         supports_known=supports_known,
     )
+    stock = read_stock(raw.stock, findings, quantities)
     findings.raise_if_any()
     return Brief(
         title=raw.title.strip() or source.path.stem,
@@ -132,6 +134,7 @@ def brief_from_tables(
         options=options,
         notes=raw.notes,
         cautions=tuple(findings.cautions),
+        stock=stock,
     )
 
 
