@@ -64,12 +64,13 @@ class ExactAnswer:
     """What the integer programs found: the best checked design and a valid lower bound.
 
     ``finished`` is False when time or a stop request ended the search. Without a design,
-    ``bound`` = inf says that none is feasible.
+    ``bound`` = inf says that none is feasible and ``least_bad`` is the design nearest to it.
     """
 
     best: Evaluation | None
     bound: float
     finished: bool
+    least_bad: Evaluation | None = None
 
 
 class RowPool:
@@ -175,7 +176,19 @@ def solve_determinate(
     mask = remove_too_weak(problem, forces, problem.allowed)
     if not mask.any(axis=1).all():
         return _closed(None)
-    best = first_designs(analysis, mask, watch).best
+    record = first_designs(analysis, mask, watch)
+    answer = _prove(problem, forces, analysis, watch, mask, record.best)
+    return replace(answer, least_bad=record.least_bad)
+
+
+def _prove(
+    problem: SizingProblem,
+    forces: DeterminateForces,
+    analysis: DesignAnalysis,
+    watch: Watch,
+    mask: BoolArray,
+    best: Evaluation | None,
+) -> ExactAnswer:
     mask = remove_too_weak(problem, forces, _affordable(problem, mask, best))
     bound = -math.inf
     while mask.any(axis=1).all() and not watch.stop():

@@ -6,7 +6,8 @@ import numpy as np
 
 from sizing.selection.analysis import Evaluation
 from sizing.selection.outcome import Shortfall
-from sizing.selection.problem import SizingProblem
+from sizing.selection.problem import FEASIBILITY_TOLERANCE, SizingProblem
+from sizing.selection.starts import section_utilisation
 
 
 def none_allowed(problem: SizingProblem) -> Shortfall | None:
@@ -22,6 +23,38 @@ def none_allowed(problem: SizingProblem) -> Shortfall | None:
         group=int(empty[0]),
         section=None,
         utilisation=float("inf"),
+    )
+
+
+def explain(problem: SizingProblem, found: Evaluation) -> Shortfall:
+    """Name what stands in the way at the least bad design ``found``.
+
+    First a group for which no section in play resists the forces of that design, with the section
+    that comes nearest; else the worst check of the design itself.
+    """
+    used = np.where(problem.allowed, section_utilisation(problem, found), np.inf)
+    nearest = used.argmin(axis=1)
+    least = used[np.arange(problem.groups), nearest]
+    group = int(np.argmax(least))
+    if not least[group] > 1.0 + FEASIBILITY_TOLERANCE:
+        return worst_check(problem, found)
+    section = int(nearest[group])
+    members = np.flatnonzero(problem.group == group)
+    forces = found.forces[members]
+    tension = problem.tension[members, section][:, problem.duration]
+    compression = problem.compression[members, section][:, problem.duration]
+    resistance = np.where(forces > 0.0, tension, compression)
+    ratio = np.where(np.abs(forces) > 0.0, np.inf, 0.0)
+    np.divide(np.abs(forces), resistance, out=ratio, where=resistance > 0.0)
+    place, combination = (int(n) for n in np.unravel_index(np.argmax(ratio), ratio.shape))
+    return Shortfall(
+        kind="tension" if forces[place, combination] > 0.0 else "compression",
+        member=int(members[place]),
+        combination=combination,
+        row=None,
+        group=group,
+        section=section,
+        utilisation=float(ratio[place, combination]),
     )
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import time
+from dataclasses import replace
 
 from sizing.selection.outcome import Limits, Progress
 
@@ -25,6 +26,17 @@ class Watch:
     def left(self) -> float:
         """Seconds left, never negative."""
         return max(0.0, self.limits.seconds - self.seconds)
+
+    def part(self, share: float) -> Watch:
+        """Return a watch over the same clock that ends after ``share`` of the time."""
+        limits = replace(self.limits, seconds=self.limits.seconds * share)
+        return self.with_limits(limits)
+
+    def with_limits(self, limits: Limits) -> Watch:
+        """Return a watch over the same clock with other limits."""
+        other = Watch(limits)
+        other._start = self._start
+        return other
 
     def stop(self) -> bool:
         """Return whether time is up or the user asked to stop."""
