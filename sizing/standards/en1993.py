@@ -2,6 +2,7 @@
 
 Tension      N_t,Rd = A fy / γM0, at holes also 0.9 A_net fu / γM2          (6.2.3)
 Compression  N_Rd = min(A fy / γM0, χ A fy / γM1 about every axis)          (6.2.4, 6.3.1)
+             and of single angles in torsional-flexural buckling            (6.3.1.4)
 with A_eff in place of A for class 4 sections, where they are admitted.
 """
 
@@ -47,6 +48,7 @@ from sizing.standards.en1993_clauses import (
 from sizing.standards.en1993_curves import reduction_factor
 from sizing.standards.en1993_options import NAME, Options1993, read_options
 from sizing.standards.en1993_rows import RowArrays, row_arrays
+from sizing.standards.en1993_torsion import Torsion, torsional_buckling
 from sizing.standards.en1993_wording import basis_rows, caution_lines
 from sizing.standards.en1993_working import compression_steps, tension_steps
 from sizing.standards.slenderness import is_angle
@@ -90,7 +92,8 @@ class EN1993:
         rows = row_arrays(catalogue, self.options)
         axes = buckling_axes(catalogue, members, rows, self.material.E, self.options.preset)
         tension, tension_clause = self.tension(catalogue, members, rows)
-        compression, compression_clause = self.compression(rows, axes)
+        torsion = torsional_buckling(catalogue, rows, axes[2], self.material.E)
+        compression, compression_clause = self.compression(rows, axes, torsion)
         shape = compression.shape
         unusable = np.array([bool(row.unusable) for row in rows.rows])
         barred = unusable | np.array([bool(row.left_out) for row in rows.rows])
@@ -138,11 +141,12 @@ class EN1993:
         return np.minimum(yielding, rupture), np.where(rupture < yielding, clause, YIELD)
 
     def compression(
-        self, rows: RowArrays, axes: tuple[Axis, Axis, Axis]
+        self, rows: RowArrays, axes: tuple[Axis, Axis, Axis], torsion: Torsion
     ) -> tuple[FloatArray, IntArray]:
         """Return the compression resistance in N and its clause (u, s).
 
-        N_c,Rd = A fy / γM0 (6.10, 6.11); N_b,Rd = χ A fy / γM1 (6.47, 6.48) about each axis.
+        N_c,Rd = A fy / γM0 (6.10, 6.11); N_b,Rd = χ A fy / γM1 (6.47, 6.48) about each axis, and
+        of angles in torsional-flexural buckling (6.3.1.4).
         """
         shape = axes[0].length.shape
         squash = np.broadcast_to(rows.area * rows.fy / self.options.gamma_m0, shape)
@@ -151,6 +155,9 @@ class EN1993:
             chi = reduction_factor(axis.relative, axis.alpha)
             buckling = chi * rows.area * rows.fy / self.options.gamma_m1
             found.append(np.where(axis.applies, buckling, np.inf))
+        chi = reduction_factor(np.where(torsion.applies, torsion.relative, 0.0), axes[2].alpha)
+        twisting = chi * rows.area * rows.fy / self.options.gamma_m1
+        found.append(np.where(torsion.applies, twisting, np.inf))
         stacked = np.stack(found)
         governing = np.argmin(np.where(np.isnan(stacked), np.inf, stacked), axis=0)
         return stacked.min(axis=0), np.array([SQUASH, *BUCKLING], dtype=np.intp)[governing]
@@ -175,9 +182,10 @@ class EN1993:
         if sense == "tension":
             return tension_steps(self.options, one, condition, rows, found, note)
         axes = buckling_axes(one, condition, rows, self.material.E, self.options.preset)
-        return compression_steps(
-            self.options, self.material.E, one, condition, rows, axes, found, note
-        )
+        E = self.material.E
+        torsion = torsional_buckling(one, rows, axes[2], E)
+        buckling = (*axes, torsion)
+        return compression_steps(self.options, E, one, condition, rows, buckling, found, note)
 
     def basis(self) -> tuple[tuple[str, str], ...]:
         """Return (what, value with source) rows for the basis of design."""

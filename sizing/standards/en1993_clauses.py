@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-YIELD, RUPTURE, ONE_LEG, SQUASH, IN, OUT, LEAST, NOT_CHECKABLE, LIMIT = range(9)
-BUCKLING = (IN, OUT, LEAST)
+YIELD, RUPTURE, ONE_LEG, SQUASH, IN, OUT, LEAST, TORSION, NOT_CHECKABLE, LIMIT = range(10)
+BUCKLING = (IN, OUT, LEAST, TORSION)
 CLAUSES = (
     "6.2.3(2)a yield of the gross section",
     "6.2.3(2)b rupture of the net section",
@@ -12,6 +12,7 @@ CLAUSES = (
     "6.3.1 buckling in plane",
     "6.3.1 buckling out of plane",
     "6.3.1 buckling about v-v",
+    "6.3.1.4 torsional-flexural buckling",
     "not checkable",
     "slenderness limit",
 )

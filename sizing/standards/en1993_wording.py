@@ -85,8 +85,8 @@ def caution_lines(options: Options1993) -> tuple[str, ...]:
     lines = [
         "Recommended values of EN 1993-1-1:2005 are used unless set otherwise; the National Annex"
         " of the site may ask for others.",
-        "Torsional and torsional-flexural buckling (6.3.1.4) of angles, I sections and other open"
-        " sections is not checked.",
+        "Torsional and torsional-flexural buckling (6.3.1.4) is checked for single angles only, not"
+        " for I sections and other open sections.",
         "Built-up members (two angles, battened members; 6.4) are checked as the single row of"
         " the catalogue; their battens and connectors are not.",
         "Grade tables are reproduced from memory: confirm fy and fu against the standard or the"

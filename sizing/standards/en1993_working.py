@@ -17,6 +17,7 @@ from sizing.standards.en1993_clauses import (
     OUT,
     RUPTURE,
     SQUASH,
+    TORSION,
     YIELD,
 )
 from sizing.standards.en1993_curves import (
@@ -27,6 +28,7 @@ from sizing.standards.en1993_curves import (
 from sizing.standards.en1993_lengths import AS_GIVEN
 from sizing.standards.en1993_options import Options1993
 from sizing.standards.en1993_rows import Row, RowArrays
+from sizing.standards.en1993_torsion import SHEAR_MODULUS, Torsion, twisting
 from sizing.standards.en1993_walls import epsilon
 
 
@@ -139,12 +141,12 @@ def compression_steps(
     catalogue: Catalogue,
     members: MemberConditions,
     rows: RowArrays,
-    axes: tuple[Axis, Axis, Axis],
+    buckling: tuple[Axis, Axis, Axis, Torsion],
     found: Resistances,
     note: str,
 ) -> tuple[Step, ...]:
     """Return the lines of the compression resistance, 6.2.4 and 6.3.1."""
-    row = rows.rows[0]
+    row, axes, torsion = rows.rows[0], buckling[:3], buckling[3]
     resistance = float(found.compression[0, 0])
     clause = CLAUSES[found.compression_clause[0, 0]]
     last = step("N_Rd", "0", resistance, "N", clause, note)
@@ -179,10 +181,47 @@ def compression_steps(
         if axis.applies[0, 0]:
             steps += _buckling_steps(options, rows, axis, (mark, area, source), CLAUSES[index])
             terms.append(f"N_b,{mark}")
+    if torsion.applies[0, 0]:
+        steps += _torsion_steps(options, catalogue, rows, axes[2], torsion)
+        terms.append("N_b,T")
     if not note:
         meaning = "compression resistance"
         last = step("N_Rd", f"min({', '.join(terms)})", resistance, "N", clause, meaning)
     return (*steps, last)
+
+
+def _torsion_steps(
+    options: Options1993, catalogue: Catalogue, rows: RowArrays, least: Axis, torsion: Torsion
+) -> list[Step]:
+    """Return the lines of N_b,Rd of an angle in torsional-flexural buckling, 6.3.1.4."""
+    clause = CLAUSES[TORSION]
+    section = twisting(catalogue)
+    relative, alpha = torsion.relative[0, 0], least.alpha[0, 0]
+    chi = reduction_factor(relative, alpha)
+    area = "A_eff" if rows.rows[0].class_4 else "A"
+    return [
+        step("I_T", "(h + b − t) t³ / 3", section.torsion[0], "m⁴", "section"),
+        step("i_0", "√((I_y + I_z) / A + u0² + v0²)", section.polar[0], "m", "section"),
+        step("G", "3.2.6", SHEAR_MODULUS, "Pa", "3.2.6"),
+        step("N_cr,T", "G I_T / i_0²", torsion.plain[0], "N", clause, "twisting alone"),
+        step(
+            "N_cr,TF",
+            "twisting with bowing about u-u and v-v over L_v",
+            torsion.critical[0, 0],
+            "N",
+            clause,
+        ),
+        step("λ̄_T", f"√({area} fy / N_cr,TF)", relative, "-", clause),
+        step("Φ_T", "0.5 [1 + α_v (λ̄_T − 0.2) + λ̄_T²]", buckling_phi(relative, alpha), "-", clause),
+        step("χ_T", "1 / (Φ_T + √(Φ_T² − λ̄_T²)) ≤ 1", chi, "-", "6.3.1.2", "reduction factor"),
+        step(
+            "N_b,T",
+            f"χ_T {area} fy / γM1",
+            chi * rows.area[0] * rows.fy[0] / options.gamma_m1,
+            "N",
+            clause,
+        ),
+    ]
 
 
 def _class_steps(row: Row) -> list[Step]:

@@ -224,6 +224,20 @@ def annex_bb1(row, one, welded):
     return inside * (0.9 if row["family"] == "I" else 1.0), outside
 
 
+def twisting_load(row, length):
+    """6.3.1.4: N_cr,TF in N of an equal angle, by the quadratic of a singly symmetric section."""
+    A, h, t = row["A"], row["h"], row["t"]
+    centroid = (h * h / 2.0 + (h - t) * t / 2.0) / (2.0 * h - t)
+    u0 = math.sqrt(2.0) * (centroid - t / 2.0)
+    i0_squared = 2.0 * row["major"] / A + u0**2
+    N_T = 81e3 * (2.0 * h - t) * t**3 / 3.0 / i0_squared
+    I_u = 2.0 * row["major"] - row["least"]
+    N_u = math.pi**2 * 210e3 * I_u / max(length, math.sqrt(row["least"] / A)) ** 2
+    beta = 1.0 - u0**2 / i0_squared
+    both = N_u + N_T
+    return (both - math.sqrt(both**2 - 4.0 * beta * N_u * N_T)) / (2.0 * beta)
+
+
 def steel_1993(strengths, *, gammas=(1.0, 1.0, 1.25), admitted=False, s460=False, ends="", leg=()):
     """6.2.3, 6.2.4, 6.3.1; ``ends`` puts Annex BB.1 on, ``leg``: d0, p1 of two bolts in a leg."""
     g0, g1, g2 = gammas
@@ -264,6 +278,9 @@ def steel_1993(strengths, *, gammas=(1.0, 1.0, 1.25), admitted=False, s460=False
             if ends and angle and one["role"] == "web":  # BB.1.2(2)
                 relative = start + 0.7 * relative
             smallest = min(smallest, chi(relative, curve))
+        if angle and not (ends and one["role"] == "web"):
+            twist = twisting_load(row, max(inside, outside))
+            smallest = min(smallest, chi(math.sqrt(area * fy / twist), "b"))
         return tension, min(area * fy / g0, smallest * area * fy / g1)
 
     return worked
