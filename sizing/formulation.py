@@ -243,14 +243,21 @@ def allowed_sections(
     for g, group in enumerate(brief.groups):
         chosen = _matches(group, catalogue)
         usable = table.usable[list(group.members)].all(axis=0)
-        allowed[g] = chosen & usable
+        allowed[g] = chosen & usable & on_sale(catalogue)
         if not allowed[g].any():
-            empty.append(_why_empty(group, chosen, table))
+            empty.append(_why_empty(group, chosen, catalogue, table))
     if empty:
         raise NoAdequateSectionError(
             f"option {option.name}: " + "; ".join(empty) + f" (catalogue {catalogue.name})"
         )
     return allowed
+
+
+def on_sale(catalogue: Catalogue) -> NDArray[np.bool_]:
+    """Return which sections (s,) the catalogue does not mark as not available."""
+    if not catalogue.available:
+        return np.ones(len(catalogue), dtype=bool)
+    return np.array(catalogue.available, dtype=bool)
 
 
 def _require_priced(brief: Brief, option: Option, allowed: NDArray[np.bool_]) -> None:
@@ -277,10 +284,15 @@ def _matches(group: Group, catalogue: Catalogue) -> NDArray[np.bool_]:
     return chosen
 
 
-def _why_empty(group: Group, chosen: NDArray[np.bool_], table: ResistanceTable) -> str:
+def _why_empty(
+    group: Group, chosen: NDArray[np.bool_], catalogue: Catalogue, table: ResistanceTable
+) -> str:
     if not chosen.any():
         wanted = ", ".join((*group.families, *group.designations))
         return f"group {group.name} may take only {wanted}, which the catalogue does not hold"
+    chosen = chosen & on_sale(catalogue)
+    if not chosen.any():
+        return f"group {group.name} may take only sections marked as not available"
     notes = table.notes[list(group.members)][:, chosen]
     reasons = [table.reasons[k] for k in np.unique(notes) if table.reasons[k]]
     return f"group {group.name} has no usable section: " + " / ".join(reasons[:3])

@@ -19,6 +19,8 @@ from sizing.brief.catalogue_names import (
     FILLERS,
     NUMBER_NAMES,
     PLAIN_HEADS,
+    PRICES,
+    STOCK_LENGTHS,
     STRENGTH_OF_AXIS_LETTER,
     TEXT_NAMES,
 )
@@ -126,9 +128,11 @@ def _understand(
     for name, words in (*TEXT_NAMES.items(), ("plies", NUMBER_NAMES["plies"][0])):
         if head.name in words:
             return Column(index=head.index, head=head.text, property=name)
-    if head.name in {"price", "cost", "preis"}:
-        return _price(head, file=file, line=line)
     measured = unit_factor(head.unit) if head.unit else None
+    if head.name in PRICES | STOCK_LENGTHS:
+        if head.name in PRICES:
+            return _price(head, file=file, line=line)
+        return _stock_lengths(head, measured, file=file, line=line)
     gyration = _gyration(head.name, letters)
     wanted = _wanted(head.name, gyration)
     if not wanted:
@@ -235,6 +239,27 @@ def _price(head: _Head, *, file: str, line: int) -> Column | Problem:
         found=repr(head.unit) if head.unit else "no unit",
         expected="a currency per length or per mass, such as EUR/m, USD/ft or EUR/t",
         fix="Write for instance: price [EUR/m]",
+    )
+
+
+def _stock_lengths(
+    head: _Head, measured: tuple[str, float] | None, *, file: str, line: int
+) -> Column | Problem:
+    if measured is None or measured[0] != "length":
+        return Problem(
+            file=file,
+            place=f"line {line}, column {head.text!r}",
+            found=repr(head.unit) if head.unit else "no unit",
+            expected="a unit of length in square brackets: m, mm or ft",
+            fix="Write for instance: stock lengths [m]",
+        )
+    return Column(
+        index=head.index,
+        head=head.text,
+        property="stock_lengths",
+        unit=head.unit,
+        kind=measured[0],
+        factor=measured[1],
     )
 
 

@@ -10,8 +10,17 @@ TEXT_NAMES: Mapping[str, frozenset[str]] = {
     ),
     "family": frozenset({"family", "shape", "kind", "profilart"}),
     "product": frozenset({"product", "product standard", "standard", "norm", "produktnorm"}),
+    "available": frozenset({"available", "in stock", "lieferbar"}),
+    "preferred": frozenset({"preferred", "preferred size", "vorzugsmaß"}),
+    "lead_time": frozenset({"lead time", "delivery", "delivery time", "lieferzeit"}),
 }
 """Columns of text."""
+
+PRICES = frozenset({"price", "cost", "preis"})
+"""Names of the column of prices, per length or per mass."""
+
+STOCK_LENGTHS = frozenset({"stock lengths", "stock length", "lagerlängen"})
+"""Names of the column of stock lengths, which needs a unit of length."""
 
 NUMBER_NAMES: Mapping[str, tuple[frozenset[str], tuple[str, ...]]] = {
     "area": (
@@ -77,7 +86,8 @@ STRENGTH_OF_AXIS_LETTER = {
 PLAIN_HEADS = (
     "designation, family, product, area [cm2], mass [kg/m], I major [cm4], I minor [cm4], "
     "I least [cm4], i major [cm], i minor [cm], i least [cm], depth [mm], width [mm], "
-    "thickness [mm], flange [mm], root radius [mm], surface [m2/m], price [EUR/m], plies"
+    "thickness [mm], flange [mm], root radius [mm], surface [m2/m], price [EUR/m], plies, "
+    "stock lengths [m], available, preferred, lead time"
 )
 """Every head in its plain form."""
 

@@ -240,14 +240,7 @@ def _with_equal_sides(entry: Entry, findings: Findings) -> Entry:
     )
     if not alike or "depth" not in entry.numbers or "width" in entry.numbers:
         return entry
-    numbers = {**entry.numbers, "width": entry.numbers["depth"]}
-    return Entry(
-        line=entry.line,
-        designation=entry.designation,
-        family=entry.family,
-        product=entry.product,
-        numbers=numbers,
-    )
+    return replace(entry, numbers={**entry.numbers, "width": entry.numbers["depth"]})
 
 
 def _settle(entry: Entry, density: float | str | None, findings: Findings) -> Checked | None:
@@ -395,6 +388,10 @@ def _catalogue(
         surface=column("surface"),
         price=prices,
         plies=tuple(1 if np.isnan(n) else round(float(n)) for n in plies),
+        stock_lengths=tuple(row.entry.supply.stock_lengths for row in rows),
+        available=tuple(row.entry.supply.available is not False for row in rows),
+        preferred=tuple(row.entry.supply.preferred for row in rows),
+        lead_time=tuple(row.entry.supply.lead_time for row in rows),
         columns=columns,
         remarks=tuple(findings.remarks),
     )

@@ -15,6 +15,7 @@ from sizing.brief.catalogue_numbers import (
     marks_of,
     read_number,
 )
+from sizing.brief.catalogue_stock import NOTHING_SAID, SUPPLY, Supply, read_supply
 from sizing.brief.catalogue_text import Row, TextTable
 from sizing.brief.catalogue_units import STANDARD_GRAVITY, unit_factor
 from sizing.errors import Problem
@@ -73,6 +74,7 @@ class Entry:
     family: str
     product: str
     numbers: Mapping[str, Number]
+    supply: Supply = NOTHING_SAID
 
     def value(self, key: str) -> float | None:
         """Return the number under ``key``, None where the cell is empty or missing."""
@@ -223,7 +225,7 @@ def find_marks(table: TextTable, columns: Iterable[Column], findings: Findings) 
             expected="point or comma",
             fix="Write for instance: # decimal = comma",
         )
-    numeric = [c.index for c in columns if c.property not in {"designation", "family", "product"}]
+    numeric = [c.index for c in columns if c.property not in _TEXT]
     cells = [row.cells[i] for row in table.rows for i in numeric if i < len(row.cells)]
     decimal = words.get(declared)
     marks = marks_of(
@@ -276,6 +278,7 @@ def read_entries(
                     family=entry_family,
                     product=_product(product, numbers),
                     numbers=numbers,
+                    supply=_supply(row, designation, at, findings),
                 )
             )
     for name, lines in guessed.items():
@@ -285,13 +288,28 @@ def read_entries(
     return tuple(entries)
 
 
-_TEXT = frozenset({"designation", "family", "product"})
+_TEXT = frozenset({"designation", "family", "product", *SUPPLY})
 
 
 def _text(row: Row, column: Column | None) -> str:
     if column is None or column.index >= len(row.cells):
         return ""
     return "".join(c for c in row.cells[column.index] if c.isprintable() or c == " ")
+
+
+def _supply(
+    row: Row, designation: str, columns: Mapping[str, Column], findings: Findings
+) -> Supply:
+    def complain(column: Column, cell: str, expected: str) -> None:
+        findings.problem(
+            place=f"{place_of(row.line, designation)}, column {column.head!r}",
+            found=repr(cell),
+            expected=expected,
+            kind=f"supply {column.index}",
+            line=row.line,
+        )
+
+    return read_supply(row, columns, complain)
 
 
 def _product(said: str, numbers: Mapping[str, Number]) -> str:

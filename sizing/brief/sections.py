@@ -40,6 +40,10 @@ class Catalogue:
     if the boards slipped freely on one another: what their nails or bolts add is for the
     standard to say.
 
+    Of supply: ``stock_lengths`` in m (empty where not stated), ``available`` (rows that are not
+    are never picked), ``preferred`` (None where not stated) and ``lead_time`` as text; an empty
+    tuple says nothing of any row.
+
     ``columns`` pairs every column head of the file with what it was taken for. ``remarks`` says,
     in sentences, what was detected, assumed or found odd while reading.
     """
@@ -64,6 +68,10 @@ class Catalogue:
     surface: FloatArray
     price: FloatArray
     plies: tuple[int, ...] = ()
+    stock_lengths: tuple[tuple[float, ...], ...] = ()
+    available: tuple[bool, ...] = ()
+    preferred: tuple[bool | None, ...] = ()
+    lead_time: tuple[str, ...] = ()
     columns: tuple[tuple[str, str], ...] = ()
     remarks: tuple[str, ...] = ()
 
