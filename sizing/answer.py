@@ -10,6 +10,8 @@ from sizing.basis import basis_of, left_out
 from sizing.brief.model import Brief, Combination, Objective, Option
 from sizing.cautions import cautions_for
 from sizing.check import CheckedDesign, check_design
+from sizing.cutting import cutting_list
+from sizing.cutting_pieces import with_order_lengths
 from sizing.errors import DisagreementError
 from sizing.formulation import Formulation
 from sizing.objective import values_of
@@ -25,6 +27,7 @@ from sizing.results import (
 )
 from sizing.selection.outcome import Pick
 from sizing.standards.contract import Sense
+from sizing.supply_cautions import supply_cautions
 
 OBJECTIVE_TOLERANCE = 1e-9
 """Relative agreement asked of the pick's objective and the mass the check adds up."""
@@ -43,6 +46,7 @@ def describe(formulation: Formulation, sections: list[int], picked: Pick | None)
     objective = formulation.problem.objective(np.asarray(sections))
     if picked is not None:
         _must_agree(formulation, checked, picked, objective)
+    cutting = cutting_list(brief, formulation.catalogue, sections)
     return OptionResult(
         option=option.name,
         standard=formulation.standard.name,
@@ -62,7 +66,7 @@ def describe(formulation: Formulation, sections: list[int], picked: Pick | None)
         mass=mass,
         connection_allowance=option.connection_allowance,
         groups=_groups(brief, checked),
-        members=checked.members,
+        members=with_order_lengths(brief, checked.members),
         sections=_summary(formulation, checked),
         lighter=_lighter(formulation, sections),
         combinations=_combinations(brief, checked),
@@ -72,12 +76,16 @@ def describe(formulation: Formulation, sections: list[int], picked: Pick | None)
         worked=_worked(formulation, checked),
         left_out=left_out(formulation),
         basis=basis_of(formulation),
-        cautions=cautions_for(brief, option, formulation.standard, checked.members),
+        cautions=(
+            *supply_cautions(brief, formulation.catalogue, sections, cutting),
+            *cautions_for(brief, option, formulation.standard, checked.members),
+        ),
         cost=_total("cost", formulation, sections),
         currency=option.cost.currency if option.cost else "",
         carbon=_total("carbon", formulation, sections),
         biogenic=_biogenic(option, mass),
         volume=sum(m.area * m.length for m in checked.members),
+        cutting=cutting,
     )
 
 

@@ -36,7 +36,8 @@ class MemberResult:
 
     ``governing`` is the sense whose utilisation is greater (None for a member without force).
     ``forces`` are the member forces in N of every combination, in the order of
-    ``OptionResult.combinations``.
+    ``OptionResult.combinations``. ``order_length``: system length less end deductions, rounded
+    up, in m; None where the group gives no deductions or the member is part of a longer run.
     """
 
     name: str
@@ -63,6 +64,7 @@ class MemberResult:
     governing_combination: str
     forces: tuple[float, ...]
     note: str = ""
+    order_length: float | None = None
 
     @property
     def reversal(self) -> bool:
@@ -176,6 +178,62 @@ class WorkedCheck:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class CutPiece:
+    """Pieces of one ``length`` (m) and section: ``number`` over all trusses, ``marks`` of one.
+
+    A piece of a continuous chord is marked by its first and last member, ``B1 to B4``. ``note``
+    says where it is too long to carry or for every bar.
+    """
+
+    length: float
+    number: int
+    marks: tuple[str, ...]
+    note: str = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class CutPattern:
+    """``bars`` bars of ``stock_length`` (m), each cut into (length in m, number) ``pieces``.
+
+    ``offcut`` in m is left over on each.
+    """
+
+    stock_length: float
+    bars: int
+    pieces: tuple[tuple[float, int], ...]
+    offcut: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class CuttingResult:
+    """How the pieces of one section are cut from stock bars.
+
+    ``status``: ``proven`` (no better plan exists), ``stopped`` (the bound leaves a gap), ``not
+    enough stock`` (of the bars at hand) or ``no stock lengths`` (none stated). ``objective`` and
+    ``bound`` measure what is ``minimised``: length in m, bars, or cost in the user's currency.
+    ``waste`` in m is offcuts, saw cuts and trim. ``splices``: (run, where) in words.
+    """
+
+    designation: str
+    status: str
+    method: str
+    minimised: str
+    objective: float | None
+    bound: float | None
+    pieces: tuple[CutPiece, ...]
+    patterns: tuple[CutPattern, ...]
+    bars: int
+    stock_length: float
+    piece_length: float
+    waste: float
+    kerf: float
+    trim: float
+    trusses: int
+    splices: tuple[tuple[str, str], ...] = ()
+    lead_time: str = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class OptionResult:
     """The complete, checked answer of one option.
 
@@ -220,6 +278,7 @@ class OptionResult:
     carbon: float | None = None
     biogenic: float | None = None
     volume: float = 0.0
+    cutting: tuple[CuttingResult, ...] = ()
 
     @property
     def surface(self) -> float:

@@ -130,9 +130,8 @@ def _understand(
             return Column(index=head.index, head=head.text, property=name)
     measured = unit_factor(head.unit) if head.unit else None
     if head.name in PRICES | STOCK_LENGTHS:
-        if head.name in PRICES:
-            return _price(head, file=file, line=line)
-        return _stock_lengths(head, measured, file=file, line=line)
+        read = _price if head.name in PRICES else _stock_lengths
+        return read(head, file=file, line=line)
     gyration = _gyration(head.name, letters)
     wanted = _wanted(head.name, gyration)
     if not wanted:
@@ -242,9 +241,8 @@ def _price(head: _Head, *, file: str, line: int) -> Column | Problem:
     )
 
 
-def _stock_lengths(
-    head: _Head, measured: tuple[str, float] | None, *, file: str, line: int
-) -> Column | Problem:
+def _stock_lengths(head: _Head, *, file: str, line: int) -> Column | Problem:
+    measured = unit_factor(head.unit) if head.unit else None
     if measured is None or measured[0] != "length":
         return Problem(
             file=file,
