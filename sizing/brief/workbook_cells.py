@@ -90,7 +90,8 @@ def toml_of(text: str) -> Any:
 
 def pairs_of(text: str) -> dict[str, Any] | None:
     """Return the table that TOML's ``key = value, key = value`` is; None when it is none."""
-    table = toml_of("{ " + text.replace("\n", " ") + " }")
+    flat = text.replace("\n", " ").strip()
+    table = toml_of(flat if flat.startswith("{") else "{ " + flat + " }")
     return table if isinstance(table, dict) else None
 
 
@@ -126,6 +127,12 @@ def _text_cell(value: Any) -> str | None:
     legible = all(c.isprintable() or c == "\n" for c in value)
     if value and value == value.strip() and value[0] not in _STRUCTURED and legible and not risky:
         return value
+    return quoted_text(value)
+
+
+def quoted_text(value: str) -> str:
+    """Return a text in quotation marks, as TOML: then it is nothing but that text."""
+    risky = any(mark in value for mark in _LOOKALIKES)
     return toml_string(value).replace("_", "\\u005F" if risky else "_")
 
 
@@ -137,7 +144,7 @@ def _any_cell(value: Any) -> CellValue | None:
         return value if held else None
     if isinstance(value, str):
         cell = _text_cell(value)
-        return cell if cell is None or _any(cell).value == value else toml_string(value)
+        return cell if cell is None or _any(cell).value == value else quoted_text(value)
     return toml_value(value)
 
 

@@ -106,19 +106,18 @@ def _value_columns(
 
 
 def _known(sheet: ItemSheet) -> dict[str, Column]:
-    by_key = {".".join(str(p) for p in column.path): column for column in sheet.rows}
-    return by_key | {column.head.casefold(): column for column in sheet.rows}
+    return {column.head.casefold(): column for column in sheet.rows}
 
 
 def _column(
     item: Any, known: dict[str, Column], spot: Spot, sheet: ItemSheet, draft: Draft, *, needed: bool
 ) -> Column | None:
     """Return what the row holds: a known item, or a key of its own such as ``gamma_M1``."""
-    text = str(decode(item, "text").value)
-    column = known.get(head_of(text, spot).text.casefold()) or known.get(text)
+    text = str(item).strip()
+    column = known.get(head_of(text, spot).text.casefold())
     if column is not None:
         return column
-    path = _dotted(str(item))
+    path = _dotted(text)
     if path:
         return Column(head=text, path=path)
     if needed:
@@ -156,8 +155,7 @@ def _read_row(
     for c, base in columns.items():
         spot, path = (row, c), (*base, *column.path)
         if spot not in grid.cells:
-            if not draft.places.known(path):
-                draft.places.record(path, sheet.title, spot)
+            draft.places.record_empty(path, sheet.title, spot)
             continue
         draft.places.record(path, sheet.title, spot)
         try:

@@ -204,6 +204,12 @@ def _kind(annotation: Any) -> tuple[Kind, tuple[str, ...]]:
     return kinds.get(origin or annotation, "any"), ()
 
 
+UNITS: Mapping[str, tuple[str, ...]] = {
+    str(column.path[0]): column.choices for column in columns_of(raw_tables.RawUnits)
+}
+"""The units that bare numbers may have, by what they measure."""
+
+
 def _key(head: str, note: str = "") -> Column:
     return Column(head=head, kind="text", note=note)
 

@@ -65,8 +65,9 @@ def tables_of_grids(grids: Sequence[Grid], source: SourceFile) -> WorkbookBrief:
     found = _sheets(grids, findings)
     for sheet in SHEETS:
         grid = found.get(sheet.title)
-        if sheet.place and isinstance(sheet.place[0], str):
-            draft.places.record_sheet((sheet.place[0],), sheet.title)
+        heads = {str(row.path[0]) for row in sheet.rows} if isinstance(sheet, ItemSheet) else set()
+        for key in {sheet.place[0]} if sheet.place else heads:
+            draft.places.record_sheet((key,), sheet.title)
         if grid is None:
             continue
         _caution_computed(grid, findings)

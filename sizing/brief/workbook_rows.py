@@ -308,13 +308,16 @@ def _record(
     places, title = draft.places, sheet.title
     own = [c for c in (*heads.keys.values(), *heads.columns) if (row, c) in grid.cells]
     places.record(path, title, (row, min(own, default=min(heads.all))))
-    for c, column in heads.columns.items():
-        places.record((*path, *column.path), title, (row, c))
-        if len(column.path) > 1 and not places.known((*path, column.path[0])):
-            places.record((*path, column.path[0]), title, (row, c))
-    for c, name in heads.factors.items():
-        places.record((*path, sheet.factors, name), title, (row, c))
-    if heads.further and isinstance(value, dict):
-        for key in value:
-            if not places.known((*path, key)) and (row, heads.further) in grid.cells:
-                places.record((*path, key), title, (row, heads.further))
+    paths = {c: (*path, *column.path) for c, column in heads.columns.items()}
+    paths |= {c: (*path, sheet.factors, name) for c, name in heads.factors.items()}
+    for c, cell_path in paths.items():
+        if (row, c) in grid.cells:
+            places.record(cell_path, title, (row, c))
+        else:
+            places.record_empty(cell_path, title, (row, c))
+        if c in heads.columns and len(cell_path) > len(path) + 1:
+            places.record_empty(cell_path[:-1], title, (row, c))
+    if heads.further and isinstance(value, dict) and (row, heads.further) in grid.cells:
+        filled = {p[len(path)] for c, p in paths.items() if (row, c) in grid.cells}
+        for key in value.keys() - filled:
+            places.record((*path, key), title, (row, heads.further))

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from sizing.brief.toml_writer import toml_key, toml_pairs, toml_value
-from sizing.brief.workbook_cells import LONGEST_TEXT, CellValue, encode
+from sizing.brief.workbook_cells import LONGEST_TEXT, CellValue, encode, quoted_text
 from sizing.brief.workbook_layout import (
     EACH,
     FURTHER,
@@ -20,6 +20,7 @@ from sizing.brief.workbook_layout import (
     ITEM,
     NOTE,
     SHEETS,
+    UNITS,
     VALUE,
     Column,
     ItemSheet,
@@ -51,7 +52,8 @@ def filled_sheets(tables: Mapping[str, Any]) -> tuple[FilledSheet, ...]:
     """Return the sheets that hold the tables; raise :class:`CannotHoldError` where none can."""
     rest = deepcopy(dict(tables))
     units = rest.get("units")
-    units = {k: str(v) for k, v in units.items()} if isinstance(units, dict) else {}
+    units = units if isinstance(units, dict) else {}
+    units = {kind: units[kind] for kind, known in UNITS.items() if units.get(kind) in known}
     filled: dict[str, FilledSheet] = {}
     deepest_first = sorted(SHEETS, key=lambda sheet: -len(sheet.place))
     for sheet in deepest_first:
@@ -80,7 +82,9 @@ def _rows(
         (*sheet.columns, *sheet.keys) if sheet.keys_last else (*sheet.keys, *sheet.columns)
     )
     further_column = (Column(head=FURTHER, kind="text", note=FURTHER_NOTE),) if further_used else ()
-    factor_columns = tuple(Column(head=str(encode(name, "text"))) for name in names)
+    factor_columns = tuple(
+        Column(head=_name_head(name, (*sheet.keys, *sheet.columns))) for name in names
+    )
     own_columns = tuple(_with_unit(column, units) for column in keys_and_columns)
     return FilledSheet(
         title=sheet.title,
@@ -91,6 +95,17 @@ def _rows(
             for own, further, cut in rows
         ),
     )
+
+
+def _name_head(name: str, others: Sequence[Column]) -> str:
+    """Return a name as a head: in quotation marks where it might be taken for another head."""
+    words = {FURTHER, *(column.head for column in others)}
+    words |= {str(column.path[0]) for column in others if column.path}
+    flat = name.partition("[")[0].strip().casefold()
+    clash = (
+        not flat or flat in {word.casefold() for word in words} or name != " ".join(name.split())
+    )
+    return quoted_text(name) if clash else str(encode(name, "text"))
 
 
 def _with_unit(column: Column, units: Mapping[str, str]) -> Column:
@@ -186,6 +201,8 @@ def _entry_cells(
         _take_cell(left, Column(head=name, path=(sheet.factors, name)), ()) for name in names
     )
     further = _limited(toml_pairs(left)) if left else None
+    if not entry and not sheet.keys:
+        further = "{}"  # else the row would be empty, and none
     return (*(by_path[column.path] for column in sheet.columns), *factors), further
 
 
@@ -243,6 +260,8 @@ def _items(sheet: ItemSheet, rest: dict[str, Any]) -> FilledSheet:
             further.setdefault(path, [None] * len(tables))[i] = value
     for path, values in further.items():
         head = ".".join(toml_key(key) for key in path)
+        if head.casefold() in (column.head.casefold() for column in sheet.rows):
+            head = quoted_text(head)  # a key all the same, and not the item of that name
         cells = tuple(None if v is None else _needed(encode(v, "any"), head) for v in values)
         rows.append((Column(head=head, path=path, note="Further key"), cells))
     for head in {base[0] for base in bases if base}:
@@ -250,7 +269,7 @@ def _items(sheet: ItemSheet, rest: dict[str, Any]) -> FilledSheet:
     note = Column(head=NOTE, kind="text")
     item = Column(head=ITEM, kind="text")
     heads = tuple(
-        Column(head=str(encode(base[-1], "text")) if sheet.each else VALUE) for base in bases
+        Column(head=_name_head(base[-1], (item, note)) if sheet.each else VALUE) for base in bases
     )
     heads = heads or (() if sheet.each else (Column(head=VALUE),))
     notes = [(column.head, column.note) for column, _ in rows]

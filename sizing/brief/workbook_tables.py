@@ -10,7 +10,7 @@ from typing import Any
 from sizing.brief.findings import Findings, KeyPath, quoted
 from sizing.brief.workbook_cells import decode
 from sizing.brief.workbook_file import Grid, Spot, spot_text
-from sizing.brief.workbook_layout import Column
+from sizing.brief.workbook_layout import UNITS, Column
 from sizing.brief.workbook_places import Places
 
 _UNIT = re.compile(r"\s*\[([^\]]*)\]\s*$")
@@ -58,18 +58,20 @@ class Draft:
     def check_units(self) -> None:
         """Record heads whose unit is another than the one of bare numbers."""
         given = self.tables.get("units")
+        units = given if isinstance(given, dict) else {}
         for cell, kind, unit in self.units:
-            wanted = given.get(kind) if isinstance(given, dict) and kind else ""
-            if isinstance(wanted, str) and wanted != unit and (wanted or not kind):
+            if not kind:
                 self.findings.add(
                     (cell,),
                     found=f"the unit [{unit}] in the head",
-                    expected=f"[{wanted}], the unit of {kind} on the sheet General"
-                    if kind
-                    else "a head without a unit",
-                    fix="A number in another unit is written with it, such as 120 mm."
-                    if kind
-                    else "",
+                    expected="a head without a unit",
+                )
+            elif units.get(kind) in UNITS[kind] and units[kind].casefold() != unit.casefold():
+                self.findings.add(
+                    (cell,),
+                    found=f"the unit [{unit}] in the head",
+                    expected=f"[{units[kind]}], the unit of {kind} on the sheet General",
+                    fix="A number in another unit is written with it, such as 120 mm.",
                 )
 
 
