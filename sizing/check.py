@@ -21,7 +21,7 @@ from sizing.formulation import GRAVITY, limit_factors, mass_per_metre, member_co
 from sizing.mechanics.analysis import Analysis, analyse
 from sizing.mechanics.brief_loads import geometry_of
 from sizing.results import DeflectionResult, Extreme, MemberResult
-from sizing.standards.contract import MemberConditions, ResistanceTable, Sense, Standard
+from sizing.standards.contract import MemberConditions, ResistanceTable, Sense, Standard, Step
 
 FloatArray = NDArray[np.float64]
 
@@ -302,8 +302,9 @@ class _Judge:
         with np.errstate(divide="ignore"):
             ratio = np.where(acts, load / resistance, 0.0)
         greatest, governing = int(np.argmax(load)), int(np.argmax(ratio))
+        steps: tuple[Step, ...] = ()
         if self.terms.work and resistance[governing] > 0.0:
-            self._agree(sense, governing, float(resistance[governing]))
+            steps = self._worked(sense, governing, float(resistance[governing]))
         names = [c.name for c in self.terms.combinations]
         return Extreme(
             force=float(self.force[greatest]),
@@ -313,6 +314,7 @@ class _Judge:
             governing_combination=names[governing],
             governing_force=float(self.force[governing]),
             clause=self.clause(sense, governing),
+            steps=steps,
         )
 
     def resistance(self, sense: Sense, c: int) -> float:
@@ -333,8 +335,8 @@ class _Judge:
     def _duration(self, c: int) -> int:
         return self.terms.durations.index(self.terms.combinations[c].duration)
 
-    def _agree(self, sense: Sense, c: int, resistance: float) -> None:
-        """Work a deciding resistance line by line and compare it with the table's."""
+    def _worked(self, sense: Sense, c: int, resistance: float) -> tuple[Step, ...]:
+        """Return a deciding resistance worked line by line, once it agrees with the table's."""
         terms = self.terms
         duration = terms.combinations[c].duration
         steps = terms.standard.working(
@@ -347,6 +349,7 @@ class _Judge:
                 f"{terms.brief.members[self.member].name}: {sense} resistance {resistance:.6g} N "
                 f"from the table, {worked:.6g} N worked line by line; nothing is issued"
             )
+        return steps
 
 
 def _governing(tension: Extreme | None, compression: Extreme | None) -> Sense | None:

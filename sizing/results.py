@@ -18,7 +18,9 @@ class Extreme:
 
     ``resistance`` in N and ``utilisation`` belong to the combination with the greatest
     utilisation of this sense, named by ``governing_combination`` (it may differ from the one
-    with the greatest force where the resistance depends on load duration).
+    with the greatest force where the resistance depends on load duration). ``steps`` are the
+    worked lines of the resistance before the group's cap on utilisation; empty where there is
+    none.
     """
 
     force: float
@@ -28,6 +30,7 @@ class Extreme:
     governing_combination: str
     governing_force: float
     clause: str
+    steps: tuple[Step, ...] = ()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

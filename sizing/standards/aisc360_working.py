@@ -7,7 +7,7 @@ import numpy as np
 from sizing.brief.sections import Catalogue
 from sizing.standards.aisc360_clauses import CLAUSES, CLAUSES_WITH_E7, RUPTURE, SINGLE, YIELD
 from sizing.standards.aisc360_options import FACTOR_TEXTS, FACTORS, Options360
-from sizing.standards.aisc360_rows import MOST_ELEMENTS, Row360, RowArrays360
+from sizing.standards.aisc360_rows import MOST_ELEMENTS, Element, Row360, RowArrays360
 from sizing.standards.aisc360_rules import (
     INELASTIC_END,
     critical_stress,
@@ -17,25 +17,23 @@ from sizing.standards.aisc360_rules import (
 from sizing.standards.aisc360_slenderness import Slenderness360
 from sizing.standards.conditions import Resistances
 from sizing.standards.contract import FloatArray, MemberConditions, Step
+from sizing.standards.formula import (
+    PI,
+    Formula,
+    Symbol,
+    greatest,
+    least,
+    number,
+    root,
+    symbols,
+    up_to,
+)
+from sizing.standards.slenderness import radii_in_and_out
+from sizing.standards.worked_lines import step
 
-
-def step(
-    symbol: str,
-    expression: str,
-    value: float | FloatArray,
-    unit: str,
-    clause: str,
-    meaning: str = "",
-) -> Step:
-    """Return one worked line."""
-    return Step(
-        symbol=symbol,
-        expression=expression,
-        value=float(value),
-        unit=unit,
-        clause=clause,
-        meaning=meaning,
-    )
+AG, AN, AE, FY, FU, E_MOD = symbols("Ag", "An", "Ae", "Fy", "Fu", "E")
+PN_Y, PN_U, PN, SHEAR_LAG, K_NET = symbols("Pn,y", "Pn,u", "Pn", "U", "k_net")
+RATIO, END, FE, FCR = symbols("Lc/r", "4.71 √(E/Fy)", "Fe", "Fcr")
 
 
 def design(method: str, symbol: str) -> str:
@@ -43,9 +41,10 @@ def design(method: str, symbol: str) -> str:
     return f"φ {symbol}" if method == "LRFD" else f"{symbol} / Ω"
 
 
-def design_text(method: str, symbol: str, factor: str) -> str:
+def design_formula(method: str, nominal: Symbol, factor: str) -> Formula:
     """Return the formula of the strength: ``0.90 Pn`` or ``Pn / 1.67``."""
-    return f"{factor} {symbol}" if method == "LRFD" else f"{symbol} / {factor}"
+    value = number(float(factor), text=factor)
+    return value * nominal if method == "LRFD" else nominal / value
 
 
 def _strength_steps(catalogue: Catalogue, row: Row360) -> list[Step]:
@@ -79,27 +78,28 @@ def tension_steps(
     first, second = design(options.method, "Pn,y"), design(options.method, "Pn,u")
     return (
         *_strength_steps(catalogue, row),
-        step("Pn,y", "Fy Ag", yielding, "N", CLAUSES[YIELD]),
+        step("Pn,y", FY * AG, yielding, "N", CLAUSES[YIELD]),
         step(
             first,
-            design_text(options.method, "Pn,y", yielding_text),
+            design_formula(options.method, PN_Y, yielding_text),
             yielding_factor * yielding,
             "N",
             CLAUSES[YIELD],
         ),
         step("Fu", row.origin, row.Fu, "Pa", "A3.1", "tensile strength"),
-        step("An", f"{net:g} Ag", net * area, "m²", "B4.3", "net area at the joints"),
+        step("k_net", "brief", net, "-", "B4.3", "net over gross area at the joints"),
+        step("An", K_NET * AG, net * area, "m²", "B4.3", "net area at the joints"),
         step("U", "shear lag factor", options.shear_lag, "-", "D3"),
-        step("Ae", "An U", effective, "m²", "D3"),
-        step("Pn,u", "Fu Ae", rupture, "N", CLAUSES[RUPTURE]),
+        step("Ae", AN * SHEAR_LAG, effective, "m²", "D3"),
+        step("Pn,u", FU * AE, rupture, "N", CLAUSES[RUPTURE]),
         step(
             second,
-            design_text(options.method, "Pn,u", rupture_text),
+            design_formula(options.method, PN_U, rupture_text),
             rupture_factor * rupture,
             "N",
             CLAUSES[RUPTURE],
         ),
-        step(symbol, f"min({first}, {second})", strength, "N", clause, "tension strength"),
+        step(symbol, least(*symbols(first, second)), strength, "N", clause, "tension strength"),
     )
 
 
@@ -131,26 +131,27 @@ def compression_steps(
     ]
     Fcr = critical_stress(E, rows.Fy, slenderness.effective)
     end = INELASTIC_END * np.sqrt(E / row.Fy)
-    text = "0.877 Fe" if ratio > end else "0.658^(Fy/Fe) Fy"
+    formula: Formula = FY
     if ratio > 0.0:
-        steps.append(step("Fe", "π² E / (Lc/r)²", elastic_stress(E, ratio), "Pa", "E3-4"))
+        formula = up_to(RATIO, END, 0.658 ** (FY / FE) * FY, 0.877 * FE)
+        steps.append(step("Fe", PI**2 * E_MOD / RATIO**2, elastic_stress(E, ratio), "Pa", "E3-4"))
     steps += [
-        step("4.71 √(E/Fy)", "limit of Lc/r", end, "-", "E3"),
-        step("Fcr", text, Fcr[0, 0], "Pa", "E3"),
+        step("4.71 √(E/Fy)", INELASTIC_END * root(E_MOD / FY), end, "-", "E3", "limit of Lc/r"),
+        step("Fcr", formula, Fcr[0, 0], "Pa", "E3"),
     ]
     area = rows.effective_area(catalogue.area, Fcr)[0, 0]
-    name = "Ag"
+    of = AG
     if area < catalogue.area[0]:
-        name = "Ae"
+        of = AE
         steps += [
             *_width_steps(rows, Fcr),
-            step("Ae", _area_text(row), area, "m²", "E7", "effective area"),
+            step("Ae", _area_formula(row), area, "m²", "E7", "effective area"),
         ]
     _, factor, _ = FACTOR_TEXTS[options.method]
-    steps.append(step("Pn", f"Fcr {name}", Fcr[0, 0] * area, "N", clause))
+    steps.append(step("Pn", FCR * of, Fcr[0, 0] * area, "N", clause))
     if not note:
-        text = design_text(options.method, "Pn", factor)
-        last = step(symbol, text, strength, "N", clause, "compression strength")
+        formula = design_formula(options.method, PN, factor)
+        last = step(symbol, formula, strength, "N", clause, "compression strength")
     return (*steps, last)
 
 
@@ -183,22 +184,61 @@ def _slenderness_steps(
     """Return the lines that lead to Lc/r."""
     if slenderness.by_e5[0, 0]:
         length = max(members.length[0], members.in_plane[0], members.out_of_plane[0])
-        rule = "E5(b)" if options.single_angles == "E5 space" else "E5(a)"
-        return [
-            step("L", "system length", length, "m", CLAUSES[SINGLE]),
-            step(
-                "L/ra", "axis parallel to the connected leg", slenderness.ratio_e5[0, 0], "-", rule
-            ),
-            step("Lc/r", f"{rule} of L/ra", slenderness.effective[0, 0], "-", rule),
-        ]
+        return _single_angle_steps(options, catalogue, length, slenderness)
     axis = "least" if catalogue.family[0] == "angle" else ""
+    r_in, r_out = (float(r[0, 0]) for r in radii_in_and_out(catalogue, members))
+    if axis:
+        r_in = r_out = float(catalogue.r_least[0])
+    radii = symbols(f"r_{axis or 'in'}", f"r_{axis or 'out'}")
+    lengths = symbols("Lc,in", "Lc,out")
+    given = [step(radii[0].name, "catalogue", r_in, "m", "section", "radius of gyration")]
+    if not axis:
+        given.append(step(radii[1].name, "catalogue", r_out, "m", "section", "radius of gyration"))
     return [
+        *given,
         step("Lc,in", "buckling length in plane", members.in_plane[0], "m", "E2"),
-        step("Lc,in/r", f"Lc,in / r_{axis or 'in'}", slenderness.inside[0, 0], "-", "E2"),
+        step("Lc,in/r", lengths[0] / radii[0], slenderness.inside[0, 0], "-", "E2"),
         step("Lc,out", "buckling length out of plane", members.out_of_plane[0], "m", "E2"),
-        step("Lc,out/r", f"Lc,out / r_{axis or 'out'}", slenderness.outside[0, 0], "-", "E2"),
-        step("Lc/r", "max(Lc,in/r, Lc,out/r)", slenderness.effective[0, 0], "-", "E2"),
+        step("Lc,out/r", lengths[1] / radii[1], slenderness.outside[0, 0], "-", "E2"),
+        step(
+            "Lc/r",
+            greatest(*symbols("Lc,in/r", "Lc,out/r")),
+            slenderness.effective[0, 0],
+            "-",
+            "E2",
+        ),
     ]
+
+
+def _single_angle_steps(
+    options: Options360, catalogue: Catalogue, length: float, slenderness: Slenderness360
+) -> list[Step]:
+    """Return the lines of Lc/r of a single angle web member, E5."""
+    space = options.single_angles == "E5 space"
+    rule = "E5(b)" if space else "E5(a)"
+    radius = catalogue.r_major if options.shorter_leg else catalogue.r_minor
+    L, ra, rz, legs, ratio = symbols("L", "ra", "rz", "bl/bs", "L/ra")
+    formula = (
+        up_to(ratio, 75.0, 60.0 + 0.8 * ratio, 45.0 + ratio)
+        if space
+        else up_to(ratio, 80.0, 72.0 + 0.75 * ratio, 32.0 + 1.25 * ratio)
+    )
+    meaning = "axis parallel to the connected leg"
+    steps = [
+        step("L", "system length", length, "m", CLAUSES[SINGLE]),
+        step("ra", "catalogue", radius[0], "m", "section", meaning),
+        step("L/ra", L / ra, slenderness.ratio_e5[0, 0], "-", rule),
+    ]
+    sides = sorted((float(catalogue.depth[0]), float(catalogue.width[0])))
+    unequal = sides[1] / sides[0]
+    if options.shorter_leg and unequal > 1.0:
+        extra, floor = (6.0, 0.82) if space else (4.0, 0.95)
+        steps += [
+            step("rz", "catalogue", catalogue.r_least[0], "m", "section", "least radius"),
+            step("bl/bs", "catalogue", unequal, "-", rule, "longer over shorter leg"),
+        ]
+        formula = greatest(formula + extra * (legs**2 - 1.0), floor * L / rz)
+    return [*steps, step("Lc/r", formula, slenderness.effective[0, 0], "-", rule)]
 
 
 def _width_steps(rows: RowArrays360, Fcr: FloatArray) -> list[Step]:
@@ -213,10 +253,43 @@ def _width_steps(rows: RowArrays360, Fcr: FloatArray) -> list[Step]:
             rows.Fy,
             Fcr,
         )[0, 0]
-        name = rows.rows[0].elements[e].name
-        steps.append(step(f"be, {name}", "E7-2, E7-3", be, "m", "E7.1", "effective width"))
+        steps += _element_width_steps(rows.rows[0], e, float(rows.Fy[0]), float(be))
     return steps
 
 
-def _area_text(row: Row360) -> str:
-    return "Ag − Σ (b − be) t" if row.elements else "[0.038 E / (Fy D/t) + 2/3] Ag"
+def _element_width_steps(row: Row360, e: int, Fy: float, be: float) -> list[Step]:
+    """Return the lines of be of one element, eqs. E7-2 to E7-5."""
+    element = row.elements[e]
+    ratio, limit, b, t, Fel = _element_symbols(element)
+    share = root(Fel / FCR)
+    reduced = least(1.0, (1.0 - element.c1 * share) * share)
+    elastic = (element.c2 * element.limit / element.ratio) ** 2 * Fy
+    return [
+        step(b.name, "catalogue", element.width, "m", "section", "width"),
+        step(t.name, "catalogue", element.thickness, "m", "section", "thickness"),
+        step(limit.name, "Table B4.1a", element.limit, "-", "Table B4.1a"),
+        step(Fel.name, (element.c2 * limit / ratio) ** 2 * FY, elastic, "Pa", "E7-5"),
+        step(
+            f"be, {element.name}",
+            b * up_to(ratio, limit * root(FY / FCR), 1.0, reduced),
+            be,
+            "m",
+            "E7.1",
+            "effective width, E7-2 and E7-3",
+        ),
+    ]
+
+
+def _element_symbols(element: Element) -> tuple[Symbol, ...]:
+    return symbols(element.name, *(f"{s}, {element.name}" for s in ("λr", "b", "t", "Fel")))
+
+
+def _area_formula(row: Row360) -> Formula:
+    if not row.elements:
+        return (0.038 * E_MOD / (FY * symbols("D/t")[0]) + number(2.0 / 3.0, text="2/3")) * AG
+    area: Formula = AG
+    for element in row.elements:
+        _, _, b, t, _ = _element_symbols(element)
+        (be,) = symbols(f"be, {element.name}")
+        area = area - element.count * (b - be) * t
+    return area

@@ -16,6 +16,7 @@ from numpy.typing import NDArray
 
 from sizing.brief.model import LoadDuration
 from sizing.brief.sections import Catalogue
+from sizing.standards.formula import Formula
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]
@@ -86,7 +87,8 @@ class Step:
     """One line of a worked check: ``symbol`` = ``expression`` = ``value`` ``unit``, by ``clause``.
 
     ``value`` is SI; ``unit`` is the SI unit as text (``N``, ``m``, ``Pa``, ``-``). ``expression``
-    is the formula in the symbols of the earlier lines, for print.
+    is the formula in the symbols of the earlier lines, for print, or the origin of an input.
+    ``formula`` is the same formula in a form that can be worked again; None for an input.
     """
 
     symbol: str
@@ -95,6 +97,7 @@ class Step:
     unit: str
     clause: str
     meaning: str = ""
+    formula: Formula | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -156,4 +159,5 @@ class Standard(Protocol):
 class StandardFactory(Protocol):
     """Build a standard from an option's grade and settings; raise :class:`SettingsError`."""
 
-    def __call__(self, grade: str | None, settings: Mapping[str, Any]) -> Standard: ...
+    def __call__(self, grade: str | None, settings: Mapping[str, Any]) -> Standard:
+        """Return the standard with its choices made."""

@@ -33,8 +33,14 @@ from sizing.standards.contract import (
     Sense,
     Step,
 )
+from sizing.standards.formula import PI, Formula, least, symbols
 from sizing.standards.settings import Range, SettingsReader
 from sizing.standards.slenderness import is_angle, slenderness_in_and_out
+from sizing.standards.worked_lines import step
+
+A, K_NET, SIGMA_T, SIGMA_C, E_MOD, N_FACTOR, N_SIGMA = symbols(
+    "A", "k_net", "σ_t", "σ_c", "E", "n", "N_σ"
+)
 
 KEYS = (
     "E",
@@ -149,9 +155,11 @@ class Elastic:
         clause = CLAUSES[TENSION]
         net = float(members.net_factor[0])
         return (
-            _step("σ_t", "setting", self.allowable_tension, "Pa", clause, "allowable stress"),
-            _step("k_net", "brief", net, "-", clause, "net over gross area at the joints"),
-            _step("N_t", "k_net A σ_t", float(table.tension[0, 0, 0]), "N", clause, "resistance"),
+            step("σ_t", "setting", self.allowable_tension, "Pa", clause, "allowable stress"),
+            step("k_net", "brief", net, "-", clause, "net over gross area at the joints"),
+            step(
+                "N_t", K_NET * A * SIGMA_T, float(table.tension[0, 0, 0]), "N", clause, "resistance"
+            ),
         )
 
     def _compression_steps(
@@ -161,14 +169,16 @@ class Elastic:
         area = float(catalogue.area[0])
         squash = area * self.allowable_compression
         steps = [
-            _step("σ_c", "setting", self.allowable_compression, "Pa", clause, "allowable stress"),
-            _step("N_σ", "A σ_c", squash, "N", clause),
+            step("σ_c", "setting", self.allowable_compression, "Pa", clause, "allowable stress"),
+            step("N_σ", A * SIGMA_C, squash, "N", clause),
         ]
-        terms = ["N_σ"]
+        terms = [N_SIGMA]
+        angle = catalogue.family[0] == "angle"
+        radius = "least radius of gyration" if angle else "radius of gyration"
         if self.safety_factor is not None:
             steps += [
-                _step("E", "setting", self.material.E, "Pa", "material"),
-                _step("n", "setting", self.safety_factor, "-", "safety factor on Euler's load"),
+                step("E", "setting", self.material.E, "Pa", "material"),
+                step("n", "setting", self.safety_factor, "-", "safety factor on Euler's load"),
             ]
             for mark, index, length, slenderness in (
                 ("in", BUCKLING_IN, members.in_plane[0], table.slenderness_in[0, 0]),
@@ -178,19 +188,21 @@ class Elastic:
                     continue  # held throughout, or no second moment of area: nothing to work
                 load = area * float(euler_stress(self.material.E, slenderness)) / self.safety_factor
                 text = CLAUSES[index]
+                L, i, ratio, euler = symbols(*(f"{letter}_{mark}" for letter in "LiλN"))
                 steps += [
-                    _step(f"L_{mark}", "brief", float(length), "m", text, "buckling length"),
-                    _step(f"λ_{mark}", _ratio(catalogue, mark), float(slenderness), "-", text),
-                    _step(f"N_{mark}", f"π² E A / (n λ_{mark}²)", load, "N", text),
+                    step(f"L_{mark}", "brief", float(length), "m", text, "buckling length"),
+                    step(i.name, "catalogue", length / slenderness, "m", "section", radius),
+                    step(ratio.name, L / i, float(slenderness), "-", text),
+                    step(euler.name, PI**2 * E_MOD * A / (N_FACTOR * ratio**2), load, "N", text),
                 ]
-                terms.append(f"N_{mark}")
-        expression = f"min({', '.join(terms)})" if len(terms) > 1 else terms[0]
+                terms.append(euler)
+        expression: Formula | str = least(*terms)
         reason = table.reasons[int(table.notes[0, 0])]
         resistance = float(table.compression[0, 0, 0])
         if resistance == 0.0 and reason:
             expression = "0"
         governing = table.clauses[int(table.compression_clause[0, 0, 0])]
-        steps.append(_step("N_c", expression, resistance, "N", governing, reason or "resistance"))
+        steps.append(step("N_c", expression, resistance, "N", governing, reason or "resistance"))
         return tuple(steps)
 
     def basis(self) -> tuple[tuple[str, str], ...]:
@@ -222,18 +234,6 @@ class Elastic:
         if self.safety_factor is None:
             return (*left_out, "Buckling of compression members is not checked at all.")
         return left_out
-
-
-def _step(
-    symbol: str, expression: str, value: float, unit: str, clause: str, meaning: str = ""
-) -> Step:
-    return Step(
-        symbol=symbol, expression=expression, value=value, unit=unit, clause=clause, meaning=meaning
-    )
-
-
-def _ratio(catalogue: Catalogue, mark: str) -> str:
-    return f"L_{mark} / i_least" if catalogue.family[0] == "angle" else f"L_{mark} / i_{mark}"
 
 
 def make_elastic(grade: str | None, settings: Mapping[str, Any]) -> Elastic:

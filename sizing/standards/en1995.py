@@ -43,7 +43,7 @@ from sizing.standards.en1995_strength import (
     k_mod,
     lambda_rel,
 )
-from sizing.standards.en1995_working import Strength, compression_steps, step, tension_steps
+from sizing.standards.en1995_working import Strength, compression_steps, tension_steps
 from sizing.standards.settings import SettingsReader, nearest
 from sizing.standards.slenderness import slenderness_in_and_out
 from sizing.standards.timber_sections import (
@@ -53,6 +53,7 @@ from sizing.standards.timber_sections import (
     product_names,
     smaller_and_larger,
 )
+from sizing.standards.worked_lines import step
 
 NAME = "EN 1995-1-1"
 EDITION = "2004 + A1:2008 + A2:2014, recommended values"
@@ -170,7 +171,7 @@ class EN1995:
         )
         if sense == "tension":
             return tension_steps(strength, one, float(condition.net_factor[0]), clause)
-        return compression_steps(strength, one, table, clause)
+        return compression_steps(strength, one, condition, table, clause)
 
     def basis(self) -> tuple[tuple[str, str], ...]:
         """Return (what, value with source) rows for the basis of design."""

@@ -43,9 +43,10 @@ from sizing.standards.nds_settings import (
 from sizing.standards.nds_sizes import exclude_sizes
 from sizing.standards.nds_strength import density
 from sizing.standards.nds_values import Values
-from sizing.standards.nds_working import compression_steps, step, tension_steps
+from sizing.standards.nds_working import compression_steps, tension_steps
 from sizing.standards.slenderness import slenderness_in_and_out
 from sizing.standards.timber_sections import SQRT12, Exclusions, over_durations
+from sizing.standards.worked_lines import step
 
 EDITION = "ANSI/AWC NDS-2018 with Supplement 2018"
 
