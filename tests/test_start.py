@@ -155,6 +155,7 @@ def test_the_outline_of_a_simple_girder_by_hand() -> None:
         "    reactions: A0 50.4 kN up, A12 36.0 kN up\n"
     ) in text
     assert "  roofing (permanent): 72.0 kN down in all\n" in text
+    assert "Span 24.000 m between supports that hold it up." in text
     assert "    reactions: A0 36.0 kN up, A12 36.0 kN up\n" in text
     assert "Reactions from equilibrium of the whole, without the weight of the members." in text
     assert "Deflection limit sag: span/250 = 96.0 mm along y at 13 nodes in" in text

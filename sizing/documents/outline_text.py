@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import sys
 from collections.abc import Sequence
+from itertools import pairwise
 
 import numpy as np
 
@@ -60,6 +61,7 @@ def _truss(outline: Outline) -> list[str]:
         else f"Statically indeterminate, {count.redundants} redundant: the member forces depend "
         "on the sections.",
     ]
+    lines += _spans(brief)
     small = shown_units(brief.units).movement
     lines += [
         f"Deflection limit {visible(limit.name)}: {visible(limit.limit_text)} = "
@@ -69,6 +71,16 @@ def _truss(outline: Outline) -> list[str]:
         for limit in brief.deflection_limits
     ]
     return lines
+
+
+def _spans(brief: Brief) -> list[str]:
+    """Return the spans of a plane truss between supports that hold it up."""
+    lines = sorted({brief.nodes[s.node].position[0] for s in brief.supports if s.held[-1]})
+    if brief.dimensions == 3 or len(lines) < 2:
+        return []
+    length = Display.of(brief.units).length
+    spans = " + ".join(length.number(b - a) for a, b in pairwise(lines))
+    return [f"Span {spans} {length.label} between supports that hold it up."]
 
 
 def _loads(outline: Outline) -> list[str]:
