@@ -65,6 +65,7 @@ def read_combinations(
         states = [e.state for _, e, _ in entries if e is not None] + [c.state for c in made]
         _must_hold_strength(states, findings)
     _caution(combinations, cases.cases, findings)
+    _caution_unfactored(combinations, standards, findings)
     return CombinationTable(
         combinations=combinations,
         names=names,
@@ -236,6 +237,19 @@ def _must_hold_strength(states: Sequence[str], findings: Findings) -> None:
         )
 
 
+def _caution_unfactored(
+    combinations: Sequence[Combination], standards: Sequence[str], findings: Findings
+) -> None:
+    """Say where nothing is raised above its characteristic value, as design resistances ask."""
+    european = [name for name in standards if name.casefold().startswith(("en", "eurocode", "ec"))]
+    factors = [f for c in combinations if c.state == "strength" for f in c.factors.values()]
+    if european and factors and max(abs(f) for f in factors) <= 1.0:
+        findings.caution(
+            "No strength combination has a factor above 1, but the resistances of "
+            f"{european[0]} are design values: they go with factored loads, EN 1990 6.10."
+        )
+
+
 def _caution(
     combinations: Sequence[Combination], cases: Sequence[LoadCase], findings: Findings
 ) -> None:
@@ -243,6 +257,11 @@ def _caution(
     for q, case in enumerate(cases):
         if q not in used:
             findings.caution(f"Load case {case.name} is in no combination.")
+    if cases and not any(case.self_weight for case in cases):
+        findings.caution(
+            "No load case has self_weight = true: the members' own weight is left out unless the "
+            "nodal loads include it."
+        )
     for c in combinations:
         own = [cases[q].name for q in c.factors if cases[q].self_weight]
         if len(own) > 1:

@@ -55,6 +55,11 @@ catalogue = "square-hollow-sections"
 service_class = 2
 """.replace("out_of_plane = 20", 'out_of_plane = "20 ft"')
 
+NO_OWN_WEIGHT = (
+    "No load case has self_weight = true: the members' own weight is left out unless the nodal "
+    "loads include it."
+)
+
 
 def read(folder: Path, text: str, name: str = "brief.toml") -> Brief:
     path = folder / name
@@ -356,6 +361,7 @@ def test_spans_lie_between_neighbouring_supports(tmp_path: Path) -> None:
     brief = read(tmp_path, text)
     assert [d.limit for d in brief.deflection_limits] == pytest.approx([0.04, 0.1, 0.04, 0.1])
     assert brief.cautions == (
+        NO_OWN_WEIGHT,
         "Deflection limit both: its nodes stand in spans of 4.000 m to 10.000 m; the smallest is "
         "taken.",
         "Deflection limit end: A8 beyond the outer supports take the span next to them; a "
@@ -386,6 +392,7 @@ def test_the_span_of_a_space_truss_on_four_supports(tmp_path: Path) -> None:
     assert [brief.nodes[n].name for n in limit.nodes] == ["T"]
     assert limit.direction == (0.0, 0.0, 1.0)
     assert brief.cautions == (
+        NO_OWN_WEIGHT,
         "Deflection limit top: the span is taken as 24.000 m, the greatest distance between "
         'neighbouring supports; write span = "..." to state it.',
     )
@@ -461,3 +468,17 @@ def test_member_lengths_are_distances(tmp_path: Path) -> None:
     for m in brief.members:
         ends = brief.nodes[m.start].position, brief.nodes[m.end].position
         assert m.length == math.dist(*ends)
+
+
+@pytest.mark.parametrize(("factor", "cautioned"), [("1.0", True), ("1.35", False)])
+def test_design_resistances_ask_for_factored_loads(
+    tmp_path: Path, factor: str, cautioned: bool
+) -> None:
+    """Strength combinations that raise nothing are told where the standard is a Eurocode."""
+    held = 'restrained_nodes = ["A0", "A3", "A8"]\ncontinues_in = ["chord-middle"]'
+    text = girder(held).replace("{ snow = 1.5 }", f"{{ snow = {factor} }}")
+    said = [c for c in read(tmp_path, text).cautions if c.startswith("No strength combination")]
+    assert said == cautioned * [
+        "No strength combination has a factor above 1, but the resistances of EN 1993-1-1 are "
+        "design values: they go with factored loads, EN 1990 6.10."
+    ]
