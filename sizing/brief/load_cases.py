@@ -17,12 +17,13 @@ from sizing.brief.findings import (
     quoted,
     shown,
 )
+from sizing.brief.load_shares import SpreadLoads
 from sizing.brief.model import LoadCase, Member
 from sizing.brief.name_ranges import nodes_named
 from sizing.brief.nodes_and_supports import NodeTable
 from sizing.brief.point_loads import read_point_loads
 from sizing.brief.raw_tables import RawCase, read_entry
-from sizing.brief.spread_loads import SpreadLoads, read_spread_loads
+from sizing.brief.spread_loads import read_spread_loads
 
 GREATEST_FORCE = 1e9
 """N. No truss node carries 1 GN: such a force is in another unit than the brief says."""

@@ -16,10 +16,10 @@ from numpy.typing import NDArray
 
 from sizing.brief.chains import members_named
 from sizing.brief.findings import Findings, KeyPath, Quantities, counted, quoted, shown
-from sizing.brief.model import Member, StatedLoad
+from sizing.brief.load_shares import SpreadLoads
+from sizing.brief.model import Member
 from sizing.brief.nodes_and_supports import NodeTable
 from sizing.brief.raw_tables import RawPointLoad, read_entry
-from sizing.brief.spread_loads import SpreadLoads
 from sizing.brief.stated_loads import force_text, number_with_unit
 
 FloatArray = NDArray[np.float64]
@@ -196,9 +196,7 @@ def _put(
         node, name = (start, first) if distance <= AT_A_NODE else (end, second)
         loads.add(node, force)
         text = f"point load {path[-1]} at node {name}: {force_text(force, units)}"
-        loads.stated.append(
-            StatedLoad(text=text, given=tuple(force.tolist()), applied=tuple(force.tolist()))
-        )
+        loads.state(text, force, force)
         return
     where = f"member {first}-{second}, {number_with_unit(distance, 'length', units)} from {first}"
     if not lump:
@@ -220,9 +218,7 @@ def _put(
         f"point load {path[-1]} on {where}: {force_text(force, units)}; at the nodes {first} "
         f"{force_text((1.0 - part) * force, units)}, {second} {force_text(part * force, units)}"
     )
-    loads.stated.append(
-        StatedLoad(text=text, given=tuple(force.tolist()), applied=tuple(applied.tolist()))
-    )
+    loads.state(text, force, applied)
     findings.caution(
         f"Load case {path[1]}: the load on {where} is shared between {first} and {second}; the "
         "bending of the member between its nodes is not covered."
