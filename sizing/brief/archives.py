@@ -73,9 +73,8 @@ def _look_at(part: zipfile.ZipInfo) -> None:
         raise ArchiveError(f"the part {name!r} packed in an odd way", "an .xlsx workbook")
     if part.file_size > FREE_SIZE and part.file_size > LARGEST_RATIO * max(part.compress_size, 1):
         raise ArchiveError(
-            f"the part {name!r}, which unpacks to {part.file_size // max(part.compress_size, 1)} "
-            "times its size",
-            f"at most {LARGEST_RATIO} times",
+            f"the part {name!r}, packed out of all proportion",
+            f"a part that unpacks to at most {LARGEST_RATIO} times its size",
         )
     if name.casefold().endswith(_PACKED):
         raise ArchiveError(f"the archive {name!r} inside the workbook", "sheets only")

@@ -38,7 +38,8 @@ def read_items(sheet: ItemSheet, grid: Grid, draft: Draft) -> None:
         expected = f"a row of heads with {ITEM} and {'names of options' if sheet.each else VALUE}"
         draft.problem(sheet.title, (1, 1), found="no head " + ITEM, expected=expected)
         return
-    refuse_merged(grid, head[0], sheet.title, draft)
+    if refuse_merged(grid, head[0], sheet.title, draft):
+        return
     columns = _value_columns(sheet, grid, head, draft)
     known = _known(sheet)
     for base in columns.values():

@@ -45,9 +45,8 @@ def read_rows(sheet: RowSheet, grid: Grid, draft: Draft) -> None:
     if not grid.cells:
         return
     heads = _find_heads(sheet, grid, draft)
-    if heads is None:
+    if heads is None or refuse_merged(grid, heads.row, sheet.title, draft):
         return
-    refuse_merged(grid, heads.row, sheet.title, draft)
     stray: list[str] = []
     unknown: set[str] = set()
     for row, filled in rows_below(grid, heads.row):

@@ -114,13 +114,17 @@ def rows_below(grid: Grid, head: int) -> Iterator[tuple[int, list[int]]]:
     yield from sorted(rows.items())
 
 
-def refuse_merged(grid: Grid, head: int, title: str, draft: Draft) -> None:
-    """Record merged cells in or below the row of heads: which of the rows a value is for?"""
-    for name, last in grid.merged:
-        if last >= head:
-            draft.findings.add(
-                (f"{title}!{name}",),
-                found="merged cells",
-                expected="one value in each cell",
-                fix="Split the cells and repeat the value.",
-            )
+def refuse_merged(grid: Grid, head: int, title: str, draft: Draft) -> bool:
+    """Record merged cells in or below the row of heads: which of the rows is a value for?
+
+    Return whether there are any.
+    """
+    merged = [name for name, last in grid.merged if last >= head]
+    for name in merged:
+        draft.findings.add(
+            (f"{title}!{name}",),
+            found="merged cells",
+            expected="one value in each cell",
+            fix="Split the cells and repeat the value.",
+        )
+    return bool(merged)
