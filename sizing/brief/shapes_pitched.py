@@ -22,6 +22,8 @@ from sizing.brief.shapes_sketch import Pair, Sketch, pairs, restrained
 from sizing.errors import InputError, Problem
 
 ZONED = 8
+USUAL_RESTRAINT = 4.5
+"""m. A binder along every bottom chord node or second one (common practice)."""
 LEAST_PITCH, GREATEST_PITCH = 5.0, 60.0
 HALVES = {"left": "left", "right": "right"}
 
@@ -38,7 +40,7 @@ RISE = Parameter(
 RESTRAINT = Parameter(
     name="restraint", kind="length", least=0.3, greatest=60.0,
     words="greatest distance of the points that hold the bottom chord sideways; usually half the "
-    "span",
+    "span, up to 4.5 m",
 )  # fmt: skip
 PLAIN = (SPAN, PITCH, RISE, RESTRAINT, *ROOF_PARAMETERS)
 PANELLED = (
@@ -222,7 +224,8 @@ def _bottom(sketch: Sketch, shape: str, values: Values, last: int) -> None:
     names = [f"A{k}" for k in range(last + 1)]
     along = [sketch.nodes[name][0] for name in names]
     longest = max(b - a for a, b in pairwise(along))
-    held = restrained(shape, names, along, values["restraint"] or max(along[-1] / 2, longest))
+    usual = max(min(along[-1] / 2, USUAL_RESTRAINT), longest)
+    held = restrained(shape, names, along, values["restraint"] or usual)
     more: dict[str, Any] = {"buckling": {"in_plane": 1.0}, "restrained_nodes": held}
     if last < ZONED:
         sketch.group("bottom-chord", [f"A0..A{last}"], **more)

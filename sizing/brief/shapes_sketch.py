@@ -16,6 +16,9 @@ from sizing.errors import InputError, Problem
 PLACES = 4
 """Decimals of coordinates in m: a tenth of a millimetre, finer than any setting-out."""
 
+SLACK = 1e-3
+"""m by which a distance between restraints may be exceeded: coordinates are rounded."""
+
 NodeRef = tuple[str, int]
 Pair = tuple[NodeRef, NodeRef]
 
@@ -114,7 +117,7 @@ def restrained_places(shape: str, along: Sequence[float], greatest: float) -> li
     panel is longer.
     """
     longest = max(b - a for a, b in pairwise(along))
-    if longest > greatest * (1.0 + 1e-9):
+    if longest > greatest + SLACK:
         raise InputError(
             [
                 Problem(
@@ -132,23 +135,21 @@ def restrained_places(shape: str, along: Sequence[float], greatest: float) -> li
     here = 0
     while True:
         there = _farthest(along, here, greatest)
-        if there == here or along[there] > half + 1e-9:
+        if there == here or along[there] > half + SLACK:
             break
         chosen |= {there, last - there}
         here = there
     ordered = sorted(chosen)
     for a, b in pairwise(ordered):  # close what is too wide in the middle
         at = a
-        while along[b] - along[at] > greatest * (1.0 + 1e-9):
+        while along[b] - along[at] > greatest + SLACK:
             at = _farthest(along, at, greatest)
             chosen.add(at)
     return sorted(chosen)
 
 
 def _farthest(along: Sequence[float], start: int, reach: float) -> int:
-    reachable = [
-        k for k in range(start, len(along)) if along[k] - along[start] <= reach * (1.0 + 1e-9)
-    ]
+    reachable = [k for k in range(start, len(along)) if along[k] - along[start] <= reach + SLACK]
     return reachable[-1]
 
 

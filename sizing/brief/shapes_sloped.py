@@ -9,6 +9,8 @@ from sizing.brief.shapes_parameters import Parameter, Values
 from sizing.brief.shapes_sketch import Pair, Sketch, pairs, restrained, runs
 
 ZONED = 8
+USUAL_RESTRAINT = 4.5
+"""m (common practice)."""
 SLIM = 12.0
 """Usual span over depth of the mono-pitch truss in its middle (common practice)."""
 CANOPY_SLIM = 6.0
@@ -35,7 +37,7 @@ MONO_PITCH = (
     Parameter(
         name="restraint", kind="length", least=0.3, greatest=60.0,
         words="greatest distance of the points that hold the bottom chord sideways; usually half "
-        "the span",
+        "the span, up to 4.5 m",
     ),
     *ROOF_PARAMETERS,
 )  # fmt: skip
@@ -75,7 +77,8 @@ def mono_pitch(values: Values) -> Sketch:
     sketch.supports = {"A0": {"held": ["x", "y"]}, f"A{n}": {"held": ["y"]}}
     names = [f"A{k}" for k in range(n + 1)]
     along = [sketch.nodes[name][0] for name in names]
-    held = restrained("mono-pitch", names, along, values["restraint"] or span / 2)
+    usual = max(min(span / 2, USUAL_RESTRAINT), span / n)
+    held = restrained("mono-pitch", names, along, values["restraint"] or usual)
     sketch.group("bottom-chord", [f"A0..A{n}"], {"in_plane": 1.0}, restrained_nodes=held)
     sketch.comments[("groups", "bottom-chord")] = BRACED
     sketch.group("top-chord", [f"B0..B{n}"])

@@ -211,6 +211,19 @@ def test_restraint_is_never_wider_than_asked_for() -> None:
             assert max(lengths) > restraint - 2.4 - 1e-3
 
 
+@pytest.mark.parametrize("span", [8.1, 25.0, 29.99, 31.0, 47.7])
+def test_odd_spans_need_no_narrower_restraint_than_round_ones(span: float) -> None:
+    """Coordinates are rounded to a tenth of a millimetre; the usual restraint allows for it."""
+    for name in ("pratt-girder", "mono-pitch", "bowstring", "howe-roof"):
+        for panels in (6, 14):
+            brief = shaped(name, {"span": span, "panels": panels})
+            chord = [g for g in brief.groups if g.name.startswith("bottom")]
+            longest = max(brief.buckling_lengths(i)[1] for g in chord for i in g.members)
+            panel = span / panels
+            widest = 3 * panel if name == "pratt-girder" else max(min(span / 2, 4.5), panel)
+            assert widest - panel < longest <= widest + 1e-3
+
+
 SMALL: dict[str, dict[str, Any]] = {name: {} for name in SHAPES} | {
     name: {"span": "12 m", "panels": 4} for name in GIRDERS
 } | {
