@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable
 from fnmatch import fnmatchcase
 
 from sizing.brief.model import Brief, Stock, StockBars
@@ -15,18 +14,18 @@ from sizing.selection.cutting_check import faults_of
 from sizing.selection.cutting_problem import CuttingPlan, CuttingProblem, StockLength
 from sizing.selection.cutting_stock import cut_stock
 
-UNIT = 1e-4
-"""m. Lengths are cut in tenths of a millimetre, an inch among them: pieces and saw cuts taken
-up, bars taken down."""
+PER_METRE = 10_000
+"""Lengths are cut in tenths of a millimetre (a whole inch is 254 of them): pieces and saw cuts
+taken up, bars taken down."""
 
 NOISE = 1e-3
 """Part of that unit that counts as rounding of the machine."""
 
-MONEY = 0.01
-"""Smallest unit of money: prices are taken to hundredths."""
+PER_CURRENCY = 100
+"""Prices are taken to hundredths of the currency."""
 
-SECONDS = 10.0
-"""Time for one section; what is then not proven says so with its gap."""
+SECONDS = 5.0
+"""Time for one section; what is then not proven says so with its gap. A truss takes far less."""
 
 TOO_LONG_TO_CARRY = "longer than the longest piece that can be carried"
 TOO_LONG_TO_CUT = "longer than every bar"
@@ -36,7 +35,6 @@ def cutting_list(
     brief: Brief,
     catalogue: Catalogue,
     sections: list[int],
-    stop: Callable[[], bool] | None = None,
 ) -> tuple[CuttingResult, ...]:
     """Return one result per section used, in catalogue order; empty without ``[stock]``.
 
@@ -46,7 +44,7 @@ def cutting_list(
     if brief.stock is None:
         return ()
     return tuple(
-        _section(brief, brief.stock, catalogue, s, sections, stop) for s in sorted(set(sections))
+        _section(brief, brief.stock, catalogue, s, sections) for s in sorted(set(sections))
     )
 
 
@@ -67,7 +65,6 @@ def _section(
     catalogue: Catalogue,
     section: int,
     sections: list[int],
-    stop: Callable[[], bool] | None,
 ) -> CuttingResult:
     bars = bars_for(stock, catalogue, section)
     usable = [] if bars is None else [length - stock.trim for length in bars.lengths]
@@ -79,7 +76,7 @@ def _section(
             pieces += own.pieces
             splices += own.splices
     listed = _gathered(pieces, stock, max(usable, default=math.inf))
-    plan = None if bars is None else _plan(stock, bars, listed, stop)
+    plan = None if bars is None else _plan(stock, bars, listed)
     common = {
         "designation": catalogue.designation[section],
         "pieces": listed,
@@ -106,7 +103,7 @@ def _gathered(pieces: list[Piece], stock: Stock, most: float) -> tuple[CutPiece,
             notes.append(TOO_LONG_TO_CUT)
         found.append(
             CutPiece(
-                length=max(piece.length for piece in same),
+                length=units / PER_METRE,
                 number=len(same) * stock.trusses,
                 marks=tuple(dict.fromkeys(piece.mark for piece in same)),
                 note="; ".join(notes),
@@ -115,9 +112,7 @@ def _gathered(pieces: list[Piece], stock: Stock, most: float) -> tuple[CutPiece,
     return tuple(found)
 
 
-def _plan(
-    stock: Stock, bars: StockBars, pieces: tuple[CutPiece, ...], stop: Callable[[], bool] | None
-) -> CuttingPlan:
+def _plan(stock: Stock, bars: StockBars, pieces: tuple[CutPiece, ...]) -> CuttingPlan:
     """Cut what fits a bar at all; what does not is named in the list of pieces."""
     fitting = [piece for piece in pieces if TOO_LONG_TO_CUT not in piece.note]
     prices = bars.prices or (0.0,) * len(bars.lengths)
@@ -127,7 +122,7 @@ def _plan(
         lengths=tuple(_up(piece.length) for piece in fitting),
         numbers=tuple(piece.number for piece in fitting),
         stock=tuple(
-            StockLength(length=_down(length), price=round(price / MONEY), available=number)
+            StockLength(length=_down(length), price=round(price * PER_CURRENCY), available=number)
             for length, price, number in zip(bars.lengths, prices, numbers, strict=True)
         ),
         kerf=_up(stock.kerf),
@@ -135,7 +130,7 @@ def _plan(
         # Lengths from a catalogue have no price per bar: the least length is the nearest thing.
         minimise="length" if stock.minimise == "cost" and not priced else stock.minimise,
     )
-    plan = cut_stock(problem, seconds=SECONDS, stop=stop)
+    plan = cut_stock(problem, seconds=SECONDS)
     faults = faults_of(plan)
     if faults:
         raise DisagreementError(f"the cutting list does not add up: {'; '.join(faults)}")
@@ -158,37 +153,37 @@ def _result(stock: Stock, plan: CuttingPlan | None, common: dict[str, object]) -
             **common,  # type: ignore[arg-type]  # keys and types as gathered above
         )
     problem = plan.problem
-    scale = {"length": UNIT, "bars": 1.0, "cost": MONEY}[problem.minimise]
+    scale = {"length": PER_METRE, "bars": 1, "cost": PER_CURRENCY}[problem.minimise]
     return CuttingResult(
         status=plan.status,
         method=plan.method,
         minimised=problem.minimise,
-        objective=None if plan.objective is None else plan.objective * scale,
-        bound=None if plan.objective is None else plan.bound * scale,
+        objective=None if plan.objective is None else plan.objective / scale,
+        bound=None if plan.objective is None else plan.bound / scale,
         patterns=tuple(
             CutPattern(
-                stock_length=problem.stock[p.stock].length * UNIT,
+                stock_length=problem.stock[p.stock].length / PER_METRE,
                 bars=p.bars,
                 pieces=tuple(
-                    (length * UNIT, count)
+                    (length / PER_METRE, count)
                     for length, count in zip(problem.lengths, p.pieces, strict=True)
                     if count
                 ),
-                offcut=p.offcut(problem) * UNIT,
+                offcut=p.offcut(problem) / PER_METRE,
             )
             for p in plan.patterns
         ),
         bars=plan.bars,
-        stock_length=plan.stock_length * UNIT,
-        piece_length=plan.piece_length * UNIT,
-        waste=plan.waste * UNIT,
+        stock_length=plan.stock_length / PER_METRE,
+        piece_length=plan.piece_length / PER_METRE,
+        waste=plan.waste / PER_METRE,
         **common,  # type: ignore[arg-type]  # keys and types as gathered above
     )
 
 
 def _up(length: float) -> int:
-    return math.ceil(length / UNIT - NOISE)
+    return math.ceil(length * PER_METRE - NOISE)
 
 
 def _down(length: float) -> int:
-    return math.floor(length / UNIT + NOISE)
+    return math.floor(length * PER_METRE + NOISE)

@@ -9,6 +9,7 @@ from datetime import date
 from typing import Any
 from xml.etree import ElementTree as Xml
 
+from sizing.documents.cutting_drawing import cutting_drawing
 from sizing.documents.drawing import svg_text
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
@@ -65,6 +66,7 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
                 "outcome": outcome_sentence(option),
                 "adequate": option.adequate,
                 "drawing": svg_text(drawing),
+                "bars": "" if bars is None else svg_text(bars),
                 "worked": [
                     _worked(check, tables.units, _caps(job, option).get(check.mark, 1.0))
                     for check in option.worked
@@ -72,6 +74,7 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
                 "tables": {table.name: essential_part(table) for table in own},
             }
             for (option, own), drawing in zip(tables.by_option, drawings, strict=True)
+            for bars in [cutting_drawing(option, tables.units)]
         ],
         brief=f"{visible(job.brief.source.name)}, SHA-256 {job.brief.source.sha256}",
         maker=f"sizing {job.version}",

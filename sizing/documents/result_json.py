@@ -24,6 +24,7 @@ from typing import Any
 from sizing.brief.model import SourceFile
 from sizing.documents.wording import met
 from sizing.results import (
+    CuttingResult,
     DeflectionResult,
     Extreme,
     JobResult,
@@ -79,6 +80,10 @@ _FIELDS = (
         "resistance and clause, utilisation and what governs",
     ),
     ("options.*.take_off", "per section: pieces, total system length, mass, outer surface"),
+    (
+        "options.*.cutting",
+        "per section: bars, pieces, patterns, waste, bound; empty where the brief has no [stock]",
+    ),
     ("options.*.lighter", "per group: the next lighter section and the check that it fails"),
     ("options.*.combinations", "by name: state, duration, factors, applied_N, residual, origin"),
     ("options.*.deflections", "list: limit, node, direction, combination, value_m, limit_m"),
@@ -167,6 +172,7 @@ def _option(job: JobResult, option: OptionResult) -> dict[str, Any]:
         "groups": _groups(option),
         "members": {m.name: _member(m, names) for m in option.members},
         "take_off": _take_off(option),
+        "cutting": [_cutting(entry) for entry in option.cutting],
         "lighter": [_lighter(entry) for entry in option.lighter],
         "combinations": _combinations(option),
         "deflections": [_deflection(d) for d in option.deflections],
@@ -219,6 +225,7 @@ def _member(m: MemberResult, combinations: list[str]) -> dict[str, Any]:
         "section": m.designation,
         "catalogue_row": int(m.catalogue_row),
         "system_length_m": _number(m.length),
+        "order_length_m": _number(m.order_length),
         "mass_per_length_kg_m": _number(m.mass_per_metre),
         "mass_kg": _number(m.mass),
         "area_m2": _number(m.area),
@@ -268,6 +275,44 @@ def _take_off(option: OptionResult) -> list[dict[str, Any]]:
         }
         for s in option.sections
     ]
+
+
+def _cutting(entry: CuttingResult) -> dict[str, Any]:
+    return {
+        "section": entry.designation,
+        "status": entry.status,
+        "method": entry.method,
+        "minimised": entry.minimised,
+        "objective": _number(entry.objective),
+        "bound": _number(entry.bound),
+        "trusses": entry.trusses,
+        "bars": entry.bars,
+        "stock_length_m": _number(entry.stock_length),
+        "piece_length_m": _number(entry.piece_length),
+        "waste_m": _number(entry.waste),
+        "saw_cut_m": _number(entry.kerf),
+        "lost_end_m": _number(entry.trim),
+        "lead_time": entry.lead_time,
+        "pieces": [
+            {
+                "length_m": _number(p.length),
+                "number": p.number,
+                "marks": list(p.marks),
+                "note": p.note,
+            }
+            for p in entry.pieces
+        ],
+        "patterns": [
+            {
+                "stock_length_m": _number(p.stock_length),
+                "bars": p.bars,
+                "pieces": [{"length_m": length, "number": count} for length, count in p.pieces],
+                "offcut_m": _number(p.offcut),
+            }
+            for p in entry.patterns
+        ],
+        "splices": [{"run": run, "where": where} for run, where in entry.splices],
+    }
 
 
 def _lighter(entry: LighterResult) -> dict[str, Any]:

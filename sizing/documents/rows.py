@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from datetime import date
 
+from sizing.documents.cutting_table import cutting_tables, with_order_length
 from sizing.documents.force_tables import (
     combinations_table,
     deflections_table,
@@ -58,8 +59,9 @@ def option_tables(job: JobResult, option: OptionResult, units: ShownUnits) -> tu
     """Return the tables of one option."""
     brief = job.brief
     return (
-        members_table(brief, option, units),
+        with_order_length(members_table(brief, option, units), option, units),
         sections_table(option, units),
+        *cutting_tables(option, units),
         groups_table(brief, option, units),
         combinations_table(brief, option, units),
         deflections_table(brief, option, units),
