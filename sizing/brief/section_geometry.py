@@ -11,7 +11,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 STEEL_DENSITY = 7850.0
 """kg/m³, the density of every steel section table (EN 1991-1-1 Table A.4; EN 10210-2 Annex A)."""
@@ -34,6 +34,14 @@ CORNER_PRODUCT = 19.0 / 24.0 - math.pi / 4.0 - CORNER_AREA * CORNER_LEVER**2
 About the corner itself ∫xy over the square is r⁴/4, over the quarter disc
 r⁴ (π/4 - 2/3 + 1/8); the difference is r⁴ (19/24 - π/4).
 """
+
+
+US_ANGLE_AREA = 0.995
+US_ANGLE_SECOND_MOMENT = 0.990
+US_ANGLE_LEAST = 0.971
+"""About what printed properties are of sharp-cornered ones in the thin rows of AISC Manual Table
+1-7 (from memory): at worst, L4x4x1/4, 0.9959, 0.987 and 0.9658, so that the least radius stays
+within 0.3 % of every printed one; thick rows come out up to 1.5 % low, on the safe side."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -226,11 +234,22 @@ def equal_angle(*, leg: float, thickness: float, root_radius: float) -> SectionP
 
 
 def us_angle(*, leg: float, other_leg: float, thickness: float) -> SectionProperties:
-    """Return a US angle with sharp corners: fillets differ from mill to mill (ASTM A6).
+    """Return a US angle: sharp corners, reduced to the safe side of the printed tables.
 
-    Against AISC Manual Table 1-7 (from memory) second moments come out up to 1.5 % high.
+    Fillets and toes differ from mill to mill (ASTM A6). Against AISC Manual Table 1-7 (from
+    memory) sharp corners give areas up to 0.6 %, second moments up to 1.5 % and least ones up to
+    3.8 % too high; the factors below take that off.
     """
-    return angle(leg=leg, other_leg=other_leg, thickness=thickness, root_radius=0.0, toe_radius=0.0)
+    sharp = angle(
+        leg=leg, other_leg=other_leg, thickness=thickness, root_radius=0.0, toe_radius=0.0
+    )
+    return replace(
+        sharp,
+        area=US_ANGLE_AREA * sharp.area,
+        i_major=US_ANGLE_SECOND_MOMENT * sharp.i_major,
+        i_minor=US_ANGLE_SECOND_MOMENT * sharp.i_minor,
+        i_least=US_ANGLE_LEAST * sharp.i_least,
+    )
 
 
 def i_section(

@@ -192,11 +192,16 @@ def test_moments_scale_with_the_unit_of_length(h: float, b: float, k: float) -> 
     assert many.surface == pytest.approx(k * one.surface, rel=1e-12)
 
 
-def test_angle_with_sharp_corners_is_two_rectangles() -> None:
-    """Without radii an angle is b t + (a - t) t, whatever the fillets of rolled ones do."""
+def test_us_angles_are_two_rectangles_less_what_printed_tables_lack() -> None:
+    """A US angle is b t + (a - t) t less 0.5 %, and its least radius hardly above the printed one."""
     found = geometry.us_angle(leg=4.0, other_leg=3.0, thickness=0.25)
-    assert found.area == pytest.approx(0.25 * (4 + 3 - 0.25), rel=1e-14)
+    assert found.area == pytest.approx(0.995 * 0.25 * (4 + 3 - 0.25), rel=1e-14)
     assert found.surface == pytest.approx(14.0)
+    # L4x4x1/4, AISC Manual Table 1-7, from memory: A 1.93 in2, I 3.00 in4, rz 0.783 in
+    known = geometry.us_angle(leg=4.0, other_leg=4.0, thickness=0.25)
+    assert known.area <= 1.93 * 1.0005
+    assert known.i_major <= 3.00 * 1.005
+    assert math.sqrt(known.i_least / known.area) <= 0.783 * 1.004
 
 
 def test_wider_than_deep_still_puts_the_greater_moment_first() -> None:
