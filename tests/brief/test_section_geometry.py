@@ -193,7 +193,7 @@ def test_moments_scale_with_the_unit_of_length(h: float, b: float, k: float) -> 
 
 
 def test_us_angles_are_two_rectangles_less_what_printed_tables_lack() -> None:
-    """A US angle is b t + (a - t) t less 0.5 %, and its least radius hardly above the printed one."""
+    """Area is b t + (a - t) t less 0.5 %; the least radius is hardly above the printed one."""
     found = geometry.us_angle(leg=4.0, other_leg=3.0, thickness=0.25)
     assert found.area == pytest.approx(0.995 * 0.25 * (4 + 3 - 0.25), rel=1e-14)
     assert found.surface == pytest.approx(14.0)
