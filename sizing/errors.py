@@ -34,9 +34,16 @@ class Problem:
     fix: str = ""
 
     def text(self) -> str:
-        """Return the mistake as one line that a person can act on."""
+        """Return the mistake as one line that a person can act on.
+
+        What a file holds may not command a terminal or turn the line round: characters that do
+        not print appear as their codes.
+        """
         line = f"{self.file}: {self.place}: found {self.found}; expected {self.expected}"
-        return f"{line}. {self.fix}" if self.fix else f"{line}."
+        line = f"{line}. {self.fix}" if self.fix else f"{line}."
+        if line.isprintable():
+            return line
+        return "".join(c if c.isprintable() else f"<{ord(c):04X}>" for c in line)
 
 
 class SizingError(Exception):

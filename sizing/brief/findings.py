@@ -19,6 +19,8 @@ KeyPath = tuple[str | int, ...]
 
 MOST_SUGGESTIONS = 200
 """Looking up near names is slow in a hopeless file; nobody reads so many suggestions."""
+MOST_PROBLEMS = 1_000
+"""Nobody mends more mistakes in one round; the rest of a hopeless file is counted."""
 LONGEST_SHOWN = 60
 _PLAIN_NAME = re.compile(r"[\w +'-]+")
 LEAST_LIKENESS = 0.5
@@ -95,6 +97,7 @@ class Findings:
         self._order = order
         self._paths: dict[Problem, KeyPath] = {}
         self._suggestions = 0
+        self._uncollected = 0
 
     @property
     def problems(self) -> tuple[Problem, ...]:
@@ -102,10 +105,13 @@ class Findings:
         return tuple(sorted(self._paths, key=lambda problem: self._order(self._paths[problem])))
 
     def __len__(self) -> int:
-        return len(self._paths)
+        return len(self._paths) + self._uncollected
 
     def add(self, path: KeyPath, *, found: str, expected: str, fix: str = "") -> None:
-        """Record one mistake."""
+        """Record one mistake; beyond :data:`MOST_PROBLEMS` only count it."""
+        if len(self._paths) >= MOST_PROBLEMS:
+            self._uncollected += 1
+            return
         problem = Problem(
             file=self.file, place=self.place(path), found=found, expected=expected, fix=fix
         )
@@ -148,8 +154,18 @@ class Findings:
 
     def raise_if_any(self) -> None:
         """Raise :class:`InputError` with every mistake in the file's order, if there is one."""
-        if self._paths:
+        if not self._paths:
+            return
+        if not self._uncollected:
             raise InputError(self.problems)
+        rest = Problem(
+            file=self.file,
+            place="the file",
+            found=f"{self._uncollected} further mistakes",
+            expected="none",
+            fix="Mend those above first.",
+        )
+        raise InputError((*self.problems, rest))
 
 
 class Quantities:

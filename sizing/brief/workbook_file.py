@@ -16,16 +16,14 @@ from sizing.brief.archives import ArchiveError, open_archive
 from sizing.brief.workbook_cells import Oddity
 from sizing.errors import InputError, Problem
 
-LARGEST_UNPACKED = 16 * 1024 * 1024
+LARGEST_UNPACKED = 10 * 1024 * 1024
 """Bytes. A brief of 300 members and 10 load cases unpacks to 1 MiB."""
-MOST_ROWS = 100_000
+MOST_ROWS = 20_000
 MOST_COLUMNS = 1_000
 """A brief of more rows or columns than this is none that a person can check."""
 MOST_CELLS = 3_000_000
 """Rows times columns: a cell far down and one far right span a field that takes long to cross."""
 MOST_SHEETS = 100
-
-_MAIN = "{http://schemas.openxmlformats.org/spreadsheetml/2006/main}"
 
 Spot = tuple[int, int]
 """Row and column, both counted from 1."""
@@ -136,32 +134,36 @@ def _outline(archive: zipfile.ZipFile, part: str) -> _Outline:
 
     A row far down, or one that comes again, would cost much time or get lost.
     """
-    from defusedxml.ElementTree import iterparse
+    from xml.parsers import expat  # document types and entities were refused before
+
     from openpyxl.utils.cell import coordinate_to_tuple, range_boundaries
 
     seen = _Outline()
     row = column = 0
-    with archive.open(part) as stream:
-        for event, element in iterparse(stream, events=("start", "end")):
-            tag = element.tag.removeprefix(_MAIN)
-            if event == "start" and tag == "row":
-                number = int(element.get("r", row + 1))
-                if number <= row:
-                    raise ArchiveError(f"row {number} after row {row}", "rows in their order")
-                row, column = number, 0
-            elif event == "start" and tag == "c":
-                where = element.get("r")
-                spot = coordinate_to_tuple(where) if where else (row, column + 1)
-                if spot[0] != row or spot[1] <= column:
-                    raise ArchiveError(f"cell {where} out of its order", "cells in their order")
-                column = spot[1]
-            elif event == "end" and tag in ("v", "f", "t"):
-                seen.rows, seen.columns = max(seen.rows, row), max(seen.columns, column)
-            elif event == "end" and tag == "mergeCell":
-                name = element.get("ref", "")
-                seen.merged.append((name, range_boundaries(name)[3] or 0))
-            elif event == "end" and tag in ("row", "mergeCells"):
-                element.clear()
+
+    def begin(name: str, attributes: dict[str, str]) -> None:
+        nonlocal row, column
+        tag = name.rpartition(":")[2]
+        if tag == "c":
+            where = attributes.get("r")
+            spot = coordinate_to_tuple(where) if where else (row, column + 1)
+            if spot[0] != row or spot[1] <= column:
+                raise ArchiveError(f"cell {where} out of its order", "cells in their order")
+            column = spot[1]
+        elif tag in ("v", "f", "t"):
+            seen.rows, seen.columns = max(seen.rows, row), max(seen.columns, column)
+        elif tag == "row":
+            number = int(attributes.get("r", row + 1))
+            if number <= row:
+                raise ArchiveError(f"row {number} after row {row}", "rows in their order")
+            row, column = number, 0
+        elif tag == "mergeCell":
+            merged = attributes.get("ref", "")
+            seen.merged.append((merged, range_boundaries(merged)[3] or 0))
+
+    parser = expat.ParserCreate()
+    parser.StartElementHandler = begin
+    parser.Parse(archive.read(part), True)
     large = seen.rows > MOST_ROWS or seen.columns > MOST_COLUMNS
     if large or seen.rows * seen.columns > MOST_CELLS:
         raise ArchiveError(
