@@ -186,13 +186,15 @@ def _conclude(
     floor = cheapest(problem)
     for way in reversed(order):
         certificate = way.branching.certificate()
-        if certificate.bound <= floor or not verify(problem, certificate).accepted:
+        if certificate.bound < floor and not way.branching.finished:
+            continue
+        if not verify(problem, certificate).accepted:
             continue
         status = "open"
         if way.branching.finished:
             status = "none feasible" if best is None else "proven"
         return Bound(
-            value=certificate.bound,
+            value=max(certificate.bound, floor),
             status=status,
             sections=best,
             objective=least,
