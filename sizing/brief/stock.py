@@ -86,8 +86,8 @@ def read_stock(
     per_section = []
     for pattern, value in entry.per_section.items():
         here: KeyPath = (*path, "per_section", pattern)
-        own, _ = read_entry(RawSectionStock, value, here, findings, "a table with lengths")
-        if own is not None:
+        own, wrong = read_entry(RawSectionStock, value, here, findings, "a table with lengths")
+        if own is not None and "lengths" not in wrong:
             bars = _bars(here, own, findings, quantities, priced=priced)
             if bars is not None:
                 per_section.append((pattern, bars))
