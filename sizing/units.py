@@ -109,6 +109,7 @@ _LARGEST_EXPONENT = 250
 """Powers of ten beyond this are refused before exact arithmetic: no quantity of this world."""
 _NUMBER = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?", re.ASCII)
 _DECIMAL_COMMA = re.compile(r"[+-]?\d+,\d+", re.ASCII)
+_MARKED_DIGITS = re.compile(r"[+-]?\d[\d.]*['’,]\d", re.ASCII)
 _SPACED_DIGITS = re.compile(r"[+-]?\d+ +\d")
 
 
@@ -198,6 +199,9 @@ def _from_text(value: str, kind: Kind, expected: str) -> float:
         raise QuantityError(found=f"{shown} with a comma", expected=expected, fix=fix)
     if _SPACED_DIGITS.match(text):
         fix = "Write the digits of a number without spaces."
+        raise QuantityError(found=shown, expected=expected, fix=fix)
+    if _MARKED_DIGITS.match(text):
+        fix = "Write a decimal point, and thousands without any mark."
         raise QuantityError(found=shown, expected=expected, fix=fix)
     number_match = _NUMBER.match(text)
     if len(text) > _LONGEST_TEXT or number_match is None:
