@@ -46,7 +46,7 @@ def cover_table(job: JobResult, issued: date) -> Table:
         title="Schedule of truss members",
         columns=ITEM_COLUMNS,
         rows=tuple(rows),
-        notes=("Numbers were computed outside this workbook; it holds values, no formulas.",),
+        notes=("Numbers are values worked out elsewhere; the sheet Recheck alone has formulas.",),
     )
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections import Counter
 from itertools import groupby
 
 from sizing.brief.model import Brief
@@ -20,6 +21,9 @@ from sizing.documents.wording import (
 )
 from sizing.results import Extreme, LighterResult, MemberResult, OptionResult
 
+FOOT = 0.3048
+"""Metres (exact)."""
+
 SAME_LENGTH = 1e-6
 """Relative difference below which a buckling length equals the system length (rounding)."""
 
@@ -32,6 +36,7 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
     columns = (
         Column(head="Mark"),
         Column(head="Group"),
+        Column(head="Number off", style="whole", essential=False),
         Column(head="From node"),
         Column(head="To node"),
         Column(head="Section"),
@@ -41,7 +46,19 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
             head="Mass per length",
             unit=per_length.unit, style="number", places=per_length.places, essential=False,
         ),
-        Column(head="Mass", unit=mass.unit, style="number", places=mass.places),
+        Column(head="Mass each", unit=mass.unit, style="number", places=mass.places),
+        Column(
+            head="Mass of all alike",
+            unit=mass.unit, style="number", places=mass.places, essential=False,
+        ),
+        Column(
+            head="Outer surface",
+            unit=units.surface.unit, style="number", places=units.surface.places, essential=False,
+        ),
+        Column(
+            head="Section factor A/V",
+            unit="1/ft" if units.us else "1/m", style="number", places=0, essential=False,
+        ),
         Column(head="Greatest tension", unit=force.unit, style="force", places=force.places),
         Column(head="in combination"),
         Column(head="Greatest compression", unit=force.unit, style="force", places=force.places),
@@ -58,16 +75,23 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
         Column(head="Slenderness in plane", style="number", places=1),
         Column(head="Slenderness out of plane", style="number", places=1),
         Column(head="Slenderness limit", style="number", places=0, essential=False),
+        Column(head="Restraint assumed in plane", style="prose", essential=False),
+        Column(head="Restraint assumed out of plane", style="prose", essential=False),
         Column(head="Utilisation", style="ratio"),
         Column(head="Check met", essential=False),
         Column(head="Governing check"),
         Column(head="Governing combination"),
         Column(head="Note", style="prose", essential=False),
     )  # fmt: skip
+    off = Counter(_piece(m) for m in option.members)
+    per_metre = {
+        s.designation: s.surface / s.total_length for s in option.sections if s.total_length > 0.0
+    }
     rows = tuple(
         (
             visible(m.mark),
             visible(m.group),
+            off[_piece(m)],
             visible(m.start),
             visible(m.end),
             visible(m.designation),
@@ -75,6 +99,8 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
             length.of(m.length),
             per_length.of(m.mass_per_metre),
             mass.of(m.mass),
+            mass.of(m.mass * off[_piece(m)]),
+            *_surface(m, per_metre.get(m.designation, math.nan), units),
             *_extreme(m.tension, force.scale),
             *_extreme(m.compression, force.scale),
             "yes" if m.reversal else "no",
@@ -83,6 +109,10 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
             m.slenderness_in,
             m.slenderness_out,
             m.slenderness_limit if m.slenderness_limit is not None else "none set",
+            *(
+                _held(m.length, buckling, pressed=m.compression is not None, units=units)
+                for buckling in (m.in_plane, m.out_of_plane)
+            ),
             ratio(m.utilisation),
             "yes" if met(m.utilisation) else "NO",
             governing_check(m),
@@ -93,9 +123,16 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
     )
     totals: list[Cell] = [None] * len(columns)
     totals[0] = "Total"
-    totals[6] = length.of(math.fsum(m.length for m in option.members))
-    totals[8] = mass.of(math.fsum(m.mass for m in option.members))
+    totals[_at(columns, "System length")] = length.of(math.fsum(m.length for m in option.members))
+    totals[_at(columns, "Mass each")] = mass.of(math.fsum(m.mass for m in option.members))
+    surfaces = [m.length * per_metre.get(m.designation, math.nan) for m in option.members]
+    if all(math.isfinite(s) for s in surfaces):
+        totals[_at(columns, "Outer surface")] = units.surface.of(math.fsum(surfaces))
     notes = [SIGNS + " Strength combinations only; reversal: both occur.", NOT_A_CUT_LENGTH]
+    notes.append(
+        "Number off: pieces of the group alike in section and in order length (system length "
+        "where none is given). A/V: outer surface over volume, all sides exposed."
+    )
     if any(group.utilisation_cap != 1.0 for group in brief.groups):
         notes.append("Utilisation 1.00 is the group's cap on utilisation (see Groups).")
     return Table(
@@ -107,6 +144,24 @@ def members_table(brief: Brief, option: OptionResult, units: ShownUnits) -> Tabl
         totals=tuple(totals),
         large_paper=True,
     )
+
+
+def _at(columns: tuple[Column, ...], head: str) -> int:
+    return next(j for j, column in enumerate(columns) if column.head == head)
+
+
+def _piece(member: MemberResult) -> tuple[str, str, float]:
+    """Return what identical pieces share: group, section, and length to a tenth of a millimetre."""
+    length = member.length if member.order_length is None else member.order_length
+    return member.group, member.designation, round(length, 4)
+
+
+def _surface(member: MemberResult, per_metre: float, units: ShownUnits) -> tuple[Cell, Cell]:
+    """Return outer surface and section factor of a member."""
+    if not math.isfinite(per_metre):
+        return "not given", "not given"
+    factor = per_metre / member.area
+    return units.surface.of(member.length * per_metre), factor * (FOOT if units.us else 1.0)
 
 
 def _extreme(extreme: Extreme | None, scale: float) -> tuple[Cell, Cell]:

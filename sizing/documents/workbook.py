@@ -1,7 +1,8 @@
 """The schedule workbook: one table per sheet, typed cells, ready to print.
 
-Text goes in as text even where it begins with ``=``, ``+``, ``-`` or ``@``; there are no
-formulas, no macros and no merged cells. The file's bytes depend on the tables alone.
+Text goes in as text even where it begins with ``=``, ``+``, ``-`` or ``@``; there are no macros
+and no merged cells, and formulas on the sheet Recheck only. The file's bytes depend on the
+tables alone.
 """
 
 from __future__ import annotations
@@ -9,16 +10,19 @@ from __future__ import annotations
 import math
 import re
 import zipfile
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from datetime import date
 from io import BytesIO
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
+from sizing.documents import recheck_sheet
 from sizing.documents.plain_text import shortened, visible
+from sizing.documents.recheck import not_rechecked, recheck_blocks, sheet_units
 from sizing.documents.rows import JobTables, job_tables
+from sizing.documents.sheets import Footer, Looks, put, set_page
 from sizing.documents.tables import Cell, Column, Table, printed
-from sizing.documents.wording import ALARMS, met
-from sizing.results import JobResult
+from sizing.documents.wording import ALARMS, mark_runs, met
+from sizing.results import JobResult, OptionResult
 
 if TYPE_CHECKING:
     from openpyxl import Workbook
@@ -45,11 +49,11 @@ SLACK = 0.6
 ROW = 12.75
 """Height of a row of 9 point type, points."""
 
-_PAPER = {(False, False): 9, (False, True): 8, (True, False): 1, (True, True): 3}
-"""(US, large) to paper size code of ISO/IEC 29500: A4, A3, letter, tabloid."""
+RECHECK_AFTER = "Restraint"
+"""The table behind which the sheet Recheck stands."""
 
+_FORMULA_CELL = re.compile(rb'(<c r="([A-Z]+[0-9]+)"[^>]*><f>[^<]*</f>)<v\s*(?:/>|></v>)')
 _ILLEGAL_IN_SHEET_NAME = re.compile(r"[\[\]:*?/\\]")
-_ESCAPE_LOOKALIKE = re.compile(r"_(?=x[0-9A-Fa-f]{4}_)")
 
 
 def workbook_bytes(job: JobResult, issued: date) -> bytes:
@@ -59,8 +63,8 @@ def workbook_bytes(job: JobResult, issued: date) -> bytes:
     tables = job_tables(job, issued)
     book = Workbook()
     book.remove(book.active)
-    looks = _Looks(book)
-    footer = _Footer(job, issued)
+    looks = Looks(book)
+    footer = Footer(job, issued)
     names = _SheetNames()
     for table in tables.shared:
         sheet = book.create_sheet(names.take(table.name))
@@ -68,15 +72,51 @@ def workbook_bytes(job: JobResult, issued: date) -> bytes:
         if table.name == "Cover":
             _signing_boxes(sheet, looks)
     several = len(tables.by_option) > 1
+    worked: dict[str, dict[str, float]] = {}
     for option, own in tables.by_option:
         for table in own:
             wanted = f"{table.name} {option.option}" if several else table.name
             sheet = book.create_sheet(names.take(wanted))
             above = f"{visible(job.brief.title)} · option {visible(option.option)}"
             _fill(sheet, table, above, looks, footer, tables)
+            if table.name == RECHECK_AFTER:
+                wanted = f"{recheck_sheet.NAME} {option.option}" if several else recheck_sheet.NAME
+                sheet = book.create_sheet(names.take(wanted))
+                worked[sheet.title] = _recheck(sheet, job, option, above, looks, footer, tables)
+    book.calculation.fullCalcOnLoad = True
     book.properties.title = shortened(visible(job.brief.title), 200)
     book.properties.creator = f"sizing {job.version}"
-    return _fixed_bytes(book, issued)
+    return _fixed_bytes(book, issued, worked)
+
+
+def _recheck(
+    sheet: Worksheet,
+    job: JobResult,
+    option: OptionResult,
+    above: str,
+    looks: Looks,
+    footer: Footer,
+    tables: JobTables,
+) -> dict[str, float]:
+    """Fill and set up the sheet Recheck; return what its formulas give."""
+    from openpyxl.utils import get_column_letter
+
+    us = tables.units.us
+    found = recheck_sheet.fill_recheck(
+        sheet,
+        recheck_blocks(job.brief, option),
+        above,
+        sheet_units(us=us),
+        looks,
+        mark_runs(not_rechecked(option)),
+    )
+    wide = max(1, math.ceil((sheet.max_column - 5) / recheck_sheet.COLUMNS_A_PAGE))
+    sheet.sheet_view.showGridLines = False
+    sheet.print_area = f"A1:{get_column_letter(sheet.max_column)}{sheet.max_row}"
+    sheet.print_title_rows = "1:2"
+    sheet.print_title_cols = "A:A"
+    set_page(sheet, footer, us=us, large_paper=True, pages_wide=wide)
+    return found
 
 
 class _SheetNames:
@@ -110,89 +150,21 @@ def _utf16_cut(text: str, units: int) -> str:
     return kept
 
 
-class _Footer:
-    """Traceability on every page: brief and its hash, page n of N, version and date."""
-
-    def __init__(self, job: JobResult, issued: date) -> None:
-        source = job.brief.source
-        name = shortened(visible(source.name), 50)
-        self.left = _no_codes(f"{name} · SHA-256 {source.sha256[:12]}")
-        self.right = _no_codes(f"sizing {job.version} · {issued.isoformat()}")
-        self.title = _no_codes(shortened(visible(job.brief.title), 70))
-
-
-def _no_codes(text: str) -> str:
-    return text.replace("&", "&&")
-
-
-class _Looks:
-    """The styles of the workbook, each registered once."""
-
-    def __init__(self, book: Workbook) -> None:
-        from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
-
-        self.book = book
-        self.fine = Side(style="thin", color="9AA5AE")
-        self.hair = Side(style="hair", color="9AA5AE")
-        self.strong = Side(style="medium", color="2B3A46")
-        self.font = Font(name="Arial", size=9)
-        self.bold = Font(name="Arial", size=9, bold=True)
-        self.title = Font(name="Arial", size=14, bold=True, color="2B3A46")
-        self.quiet = Font(name="Arial", size=9, italic=True, color="4A5560")
-        self.alarm = Font(name="Arial", size=9, bold=True, color="8A2C0D")
-        self.head_fill = PatternFill("solid", start_color="E6EAED")
-        self.under = Border(bottom=self.hair)
-        self.over = Border(top=self.strong)
-        self.box = Border(top=self.fine, bottom=self.fine, left=self.fine, right=self.fine)
-        self.head_border = Border(top=self.fine, bottom=self.strong)
-        self.alignment = Alignment
-        self._known: dict[tuple[object, ...], Any] = {}
-
-    def of(self, column: Column, *, text: bool, total: bool, alarm: bool) -> str:
-        """Return the name of the style for one kind of cell."""
-        key = (column.style, column.places, text, total, alarm)
-        if key not in self._known:
-            from openpyxl.styles import NamedStyle
-
-            name = f"cell {len(self._known) + 1}"
-            style = NamedStyle(name=name)
-            style.font = self.alarm if alarm else self.bold if total else self.font
-            style.border = self.over if total else self.under
-            style.number_format = "@" if text else _number_format(column)
-            style.alignment = self.alignment(
-                horizontal="right" if column.numeric else "left",
-                vertical="top",
-                wrap_text=text and not column.numeric,
-                indent=0 if column.numeric else 1,
-            )
-            self.book.add_named_style(style)
-            self._known[key] = name
-        return str(self._known[key])
-
-
-def _number_format(column: Column) -> str:
-    if column.style == "whole":
-        return "0"
-    places = 2 if column.style == "ratio" else column.places
-    plain = "0." + "0" * places if places else "0"
-    return f'{plain} "T";-{plain} "C";{plain}' if column.style == "force" else plain
-
-
 def _fill(
     sheet: Worksheet,
     table: Table,
     above: str,
-    looks: _Looks,
-    footer: _Footer,
+    looks: Looks,
+    footer: Footer,
     tables: JobTables,
 ) -> None:
-    _put(sheet, 1, 1, table.title).font = looks.title
+    put(sheet, 1, 1, table.title).font = looks.title
     lines = (above, *table.notes)
     for i, line in enumerate(lines, 2):
-        _put(sheet, i, 1, line).font = looks.quiet
+        put(sheet, i, 1, line).font = looks.quiet
     head = len(lines) + 2
     for j, column in enumerate(table.columns, 1):
-        cell = _put(sheet, head, j, f"{column.head}\n{column.unit}" if column.unit else column.head)
+        cell = put(sheet, head, j, f"{column.head}\n{column.unit}" if column.unit else column.head)
         cell.font, cell.fill, cell.border = looks.bold, looks.head_fill, looks.head_border
         cell.alignment = looks.alignment(
             horizontal="right" if column.numeric else "left",
@@ -211,25 +183,13 @@ def _fill(
     _page(sheet, table, head, last, footer, tables)
 
 
-def _put(sheet: Worksheet, row: int, column: int, value: Cell) -> Any:
-    cell = sheet.cell(row=row, column=column)
-    if isinstance(value, str):
-        cell.value = _ESCAPE_LOOKALIKE.sub("_x005F_", value)
-        cell.data_type = "s"  # whatever the text looks like
-        if value.startswith(("=", "+", "-", "@")):
-            cell.quotePrefix = True
-    elif value is not None:
-        cell.value = value
-    return cell
-
-
 def _put_styled(
-    sheet: Worksheet, row: int, j: int, value: Cell, column: Column, looks: _Looks, *, total: bool
+    sheet: Worksheet, row: int, j: int, value: Cell, column: Column, looks: Looks, *, total: bool
 ) -> None:
     alarm = value in ALARMS or (
         column.style == "ratio" and isinstance(value, float) and not met(value)
     )
-    cell = _put(sheet, row, j, value)
+    cell = put(sheet, row, j, value)
     prefixed = cell.quotePrefix
     cell.style = looks.of(column, text=isinstance(value, str), total=total, alarm=alarm)
     if prefixed:
@@ -279,7 +239,7 @@ def _lines(text: str, width: float) -> int:
 
 
 def _page(
-    sheet: Worksheet, table: Table, head: int, last: int, footer: _Footer, tables: JobTables
+    sheet: Worksheet, table: Table, head: int, last: int, footer: Footer, tables: JobTables
 ) -> None:
     from openpyxl.utils import get_column_letter
 
@@ -296,23 +256,13 @@ def _page(
     sheet.print_title_rows = f"1:{head}"
     if table.pages_wide > 1:
         sheet.print_title_cols = f"A:{get_column_letter(keys)}"
-    setup = sheet.page_setup
-    setup.orientation = "landscape"
-    setup.paperSize = _PAPER[tables.units.us, table.large_paper]
-    setup.pageOrder = "overThenDown"
-    setup.fitToWidth, setup.fitToHeight = table.pages_wide, 0
-    sheet.sheet_properties.pageSetUpPr.fitToPage = True
-    margins = sheet.page_margins
-    margins.left = margins.right = 0.5
-    margins.top, margins.bottom, margins.header, margins.footer = 0.7, 0.7, 0.35, 0.35
-    sheet.oddHeader.left.text = footer.title
-    sheet.oddHeader.right.text = _no_codes(sheet.title)
-    sheet.oddFooter.left.text = footer.left
-    sheet.oddFooter.center.text = "Page &P of &N"
-    sheet.oddFooter.right.text = footer.right
-    for part in (sheet.oddHeader.left, sheet.oddHeader.right, sheet.oddFooter.left,
-                 sheet.oddFooter.center, sheet.oddFooter.right):  # fmt: skip
-        part.size = 8
+    set_page(
+        sheet,
+        footer,
+        us=tables.units.us,
+        large_paper=table.large_paper,
+        pages_wide=table.pages_wide,
+    )
 
 
 def _columns_to_print(sheet: Worksheet, table: Table) -> int:
@@ -322,11 +272,11 @@ def _columns_to_print(sheet: Worksheet, table: Table) -> int:
     return len(table.columns) + max(0, beyond)
 
 
-def _signing_boxes(sheet: Worksheet, looks: _Looks) -> None:
+def _signing_boxes(sheet: Worksheet, looks: Looks) -> None:
     """Add empty boxes for who prepared and who checked, on the cover below the facts."""
     row = sheet.max_row + 2
     for label in ("Prepared by, date", "Checked by, date", "Revision"):
-        name, box = _put(sheet, row, 1, label), _put(sheet, row, 2, None)
+        name, box = put(sheet, row, 1, label), put(sheet, row, 2, None)
         name.font, name.border, box.border = looks.bold, looks.box, looks.box
         name.alignment = looks.alignment(vertical="center")
         sheet.row_dimensions[row].height = 28
@@ -334,12 +284,19 @@ def _signing_boxes(sheet: Worksheet, looks: _Looks) -> None:
     sheet.print_area = f"A1:B{row - 1}"
 
 
-def _fixed_bytes(book: Workbook, issued: date) -> bytes:
-    """Save the book with fixed times: document properties by ``issued``, ZIP entries by 1980."""
+def _fixed_bytes(book: Workbook, issued: date, worked: Mapping[str, Mapping[str, float]]) -> bytes:
+    """Save the book with fixed times: document properties by ``issued``, ZIP entries by 1980.
+
+    ``worked`` holds what formulas give, by sheet and cell.
+    """
     raw = BytesIO()
     book.save(raw)
     fixed = BytesIO()
     stamp = f"{issued.isoformat()}T00:00:00Z".encode()
+    by_part = {
+        f"xl/worksheets/sheet{i}.xml": worked.get(title, {})
+        for i, title in enumerate(book.sheetnames, 1)
+    }
     with zipfile.ZipFile(raw) as source, zipfile.ZipFile(fixed, "w") as target:
         for name in _sorted_parts(source.namelist()):
             content = source.read(name)
@@ -347,10 +304,21 @@ def _fixed_bytes(book: Workbook, issued: date) -> bytes:
                 content = re.sub(
                     rb"(<dcterms:(?:created|modified)[^>]*>)[^<]*", rb"\g<1>" + stamp, content
                 )
+            elif values := by_part.get(name):
+                content = _with_values(content, values)
             entry = zipfile.ZipInfo(name, date_time=ZIP_DATE)
             entry.external_attr = 0o644 << 16
             target.writestr(entry, content, compress_type=zipfile.ZIP_DEFLATED, compresslevel=6)
     return fixed.getvalue()
+
+
+def _with_values(content: bytes, values: Mapping[str, float]) -> bytes:
+    """Put what each formula gives beside it, for programs that show files without working."""
+
+    def valued(match: re.Match[bytes]) -> bytes:
+        return match.group(1) + b"<v>" + repr(values[match.group(2).decode()]).encode() + b"</v>"
+
+    return _FORMULA_CELL.sub(valued, content)
 
 
 def _sorted_parts(names: Iterable[str]) -> list[str]:

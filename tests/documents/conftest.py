@@ -43,6 +43,8 @@ from sizing.results import (
     WorkedCheck,
 )
 from sizing.standards.contract import Step
+from sizing.standards.formula import symbols
+from sizing.standards.worked_lines import step
 
 E = 210e9
 YIELD = 355e6
@@ -365,12 +367,23 @@ def _member(brief: Brief, i: int, designation: str, force: np.ndarray) -> Member
     euler = math.pi**2 * E * area / slender**2
     pressure = 1.0 / (1.0 / (area * YIELD) + 1.25 / euler)
     strength = [c.state == "strength" for c in brief.combinations]
-    tension = _extreme(brief, np.where(strength, force, 0.0), area * YIELD, "6.2.3 tension")
-    push = _extreme(brief, np.where(strength, -force, 0.0), pressure, "6.3.1 buckling out of plane")
+    A, f_y, N_E = symbols("A", "f_y", "N_E")
+    given = (
+        step("A", "catalogue", area, "m²", "section", "area"),
+        step("f_y", "S355", YIELD, "Pa", "3.2.1", "yield strength"),
+    )
+    pull = (*given, step("N_Rd", A * f_y, area * YIELD, "N", "6.2.3", "resistance"))
+    bow = (
+        *given,
+        step("N_E", "Euler", euler, "N", "", "Euler's load"),
+        step("N_Rd", 1.0 / (1.0 / (A * f_y) + 1.25 / N_E), pressure, "N", "6.3.1"),
+    )
+    tension = _extreme(brief, np.where(strength, force, 0.0), pull, "6.2.3 tension")
+    push = _extreme(brief, np.where(strength, -force, 0.0), bow, "6.3.1 buckling out of plane")
     compression = push and Extreme(
         force=-push.force, combination=push.combination, resistance=push.resistance,
         utilisation=push.utilisation, governing_combination=push.governing_combination,
-        governing_force=-push.governing_force, clause=push.clause,
+        governing_force=-push.governing_force, clause=push.clause, steps=push.steps,
     )  # fmt: skip
     worst = max((e for e in (tension, compression) if e), key=lambda e: e.utilisation, default=None)
     return MemberResult(
@@ -390,15 +403,17 @@ def _member(brief: Brief, i: int, designation: str, force: np.ndarray) -> Member
     )  # fmt: skip
 
 
-def _extreme(brief: Brief, force: np.ndarray, resistance: float, clause: str) -> Extreme | None:
+def _extreme(
+    brief: Brief, force: np.ndarray, steps: tuple[Step, ...], clause: str
+) -> Extreme | None:
     k = int(np.argmax(force))
     if force[k] < 1e-3:
         return None
-    name = brief.combinations[k].name
+    name, resistance = brief.combinations[k].name, steps[-1].value
     return Extreme(
         force=float(force[k]), combination=name, resistance=resistance,
         utilisation=float(force[k]) / resistance, governing_combination=name,
-        governing_force=float(force[k]), clause=clause,
+        governing_force=float(force[k]), clause=clause, steps=steps,
     )  # fmt: skip
 
 

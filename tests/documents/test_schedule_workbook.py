@@ -18,8 +18,9 @@ from sizing.documents.workbook import LONGEST_SHEET_NAME, workbook_bytes
 ISSUED = date(2026, 3, 1)
 SHEETS = [
     "Cover", "Summary", "Nodes", "Loads", "Members", "Sections", "Groups", "Combinations",
-    "Deflections", "Reactions", "Joint forces", "Restraint", "Basis", "Cautions",
+    "Deflections", "Reactions", "Joint forces", "Restraint", "Recheck", "Basis", "Cautions",
 ]  # fmt: skip
+RECHECK = SHEETS.index("Recheck") + 1
 
 
 def _book(job):
@@ -55,7 +56,7 @@ def test_members_sheet_repeats_the_result(book, girder_job):
     for row, member in zip(rows, members, strict=True):
         assert row[column["Mark"]] == member.mark
         assert row[column["System length m"]] == pytest.approx(member.length)
-        assert row[column["Mass kg"]] == pytest.approx(member.mass)
+        assert row[column["Mass each kg"]] == pytest.approx(member.mass)
         assert row[column["Utilisation"]] == pytest.approx(member.utilisation)
         tension = row[column["Greatest tension kN"]]
         expected = "none" if member.tension is None else member.tension.force / 1e3
@@ -73,7 +74,7 @@ def test_totals_are_the_sums_of_their_columns(girder_job, tower_job):
             for i, value in enumerate(total or ()):
                 if isinstance(value, int | float):
                     assert value == pytest.approx(math.fsum(r[i] for r in rows), rel=1e-12)
-                    if str(heads[i]).startswith("Mass\n"):
+                    if str(heads[i]).startswith(("Mass\n", "Mass each\n")):
                         masses.setdefault(round(value, 6), []).append(sheet.title)
         assert len(masses) == 1
 
@@ -87,7 +88,7 @@ def test_units_follow_the_brief(tower_job):
     row = rows[2]
     for head, si, unit in (
         ("System length ft", member.length * ureg.m, "ft"),
-        ("Mass lb", member.mass * ureg.kg, "lb"),
+        ("Mass each lb", member.mass * ureg.kg, "lb"),
         ("Mass per length lb/ft", member.mass_per_metre * ureg.kg / ureg.m, "lb/ft"),
         ("Greatest compression kip", member.compression.force * ureg.N, "kip"),
     ):
@@ -135,7 +136,7 @@ def test_filters_cover_heads_and_data_but_not_the_total(book):
     first = int(re.sub(r"\D", "", sheet.freeze_panes)) - 1
     assert total is not None
     assert heads[0] == "Mark"
-    assert sheet.auto_filter.ref == f"A{first}:X{first + len(rows)}"
+    assert sheet.auto_filter.ref == f"A{first}:AD{first + len(rows)}"
 
 
 def test_wide_tables_repeat_their_keys(large_job):
@@ -145,15 +146,16 @@ def test_wide_tables_repeat_their_keys(large_job):
     assert sheet.print_title_cols == "$A:$D"
 
 
-def test_nothing_but_values(girder_job):
-    """No formulas, merged cells, macros or links to other files."""
+def test_formulas_stand_on_the_recheck_only(girder_job):
+    """No formulas elsewhere, no merged cells, macros or links to other files."""
     with zipfile.ZipFile(BytesIO(workbook_bytes(girder_job, ISSUED))) as parts:
         names = parts.namelist()
         assert not [n for n in names if "vba" in n.lower() or "externalLink" in n]
         for name in names:
             root = ElementTree.fromstring(parts.read(name))
             tags = {element.tag.rsplit("}", 1)[-1] for element in root.iter()}
-            assert not tags & {"f", "mergeCell", "hyperlink"}, name
+            assert not tags & {"mergeCell", "hyperlink"}, name
+            assert ("f" in tags) == (name == f"xl/worksheets/sheet{RECHECK}.xml"), name
 
 
 def test_cover_has_boxes_for_who_prepared_and_checked(book):
@@ -177,7 +179,7 @@ def test_same_result_same_bytes(girder_job, tower_job):
 def test_sheet_names_are_legal_and_unique(hostile_job):
     """Whatever options are called, sheet names obey the rules of spreadsheet programs."""
     names = _book(hostile_job).sheetnames
-    assert len(names) == 4 + 10 * 8
+    assert len(names) == 4 + 11 * 8
     assert len({n.lower() for n in names}) == len(names)
     for name in names:
         assert len(name.encode("utf-16-le")) // 2 <= LONGEST_SHEET_NAME
