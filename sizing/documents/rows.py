@@ -26,6 +26,7 @@ from sizing.documents.option_tables import (
     sections_table,
 )
 from sizing.documents.quantities import ShownUnits, shown_units
+from sizing.documents.stated_loads_table import load_totals_table
 from sizing.documents.summary_table import summary_table
 from sizing.documents.tables import Table
 from sizing.results import JobResult, OptionResult
@@ -49,6 +50,7 @@ def job_tables(job: JobResult, issued: date) -> JobTables:
             cover_table(job, issued),
             summary_table(job, units),
             nodes_table(job.brief, units),
+            load_totals_table(job.brief, units),
             loads_table(job.brief, units),
         ),
         by_option=tuple((option, option_tables(job, option, units)) for option in job.options),
