@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 from sizing.selection.choices import Choices
 from sizing.selection.linear_steps import in_reach
 from sizing.selection.linearisation import Linearisation
+from sizing.selection.moves import candidates
 from sizing.selection.record import Record
 from sizing.selection.step_program import StepRules, propose
 
@@ -22,8 +23,38 @@ MOST_EXCESS = 0.05
 REACH = 0.8
 """Greatest change of ln(EA) in an improvement."""
 
+MOVE_REACH = 0.3
+"""Greatest change of ln(EA) in an exchange; the next section on either side is always in reach."""
+
+MOST_LISTED = 200
+MOST_TRIES = 8
+"""Candidates listed about one design, and analysed before the exchange gives up."""
+
 PATIENCE = 6
 """Failures in a row after which the predicted excess is compared with the errors seen."""
+
+MOST_FAILURES = 18
+"""Failures in a row after which the improvement gives up, however good the predictions look."""
+
+
+def exchange(record: Record, choices: Choices) -> None:
+    """Replace the best design by the best move of up to three groups, as long as one helps."""
+    problem = record.analysis.problem
+    while record.best is not None and not record.watch.stop():
+        before = record.best
+        model = Linearisation.at(record.analysis, before)
+        close = Choices.of(in_reach(problem, choices.mask, model.y, MOVE_REACH))
+        known = {design.tobytes() for design in record.designs()}
+        tries = 0
+        for candidate in candidates(model, close, before.sections, MOST_LISTED):
+            if candidate.sections.tobytes() in known:
+                continue
+            record.try_design(candidate.sections)
+            tries += 1
+            if record.best is not before or tries >= MOST_TRIES or record.watch.stop():
+                break
+        if record.best is before:
+            return
 
 
 def improve(record: Record, choices: Choices, core: int = 5) -> None:
@@ -58,7 +89,8 @@ def improve(record: Record, choices: Choices, core: int = 5) -> None:
             errors, centre = [], record.best
             continue
         errors.append(abs(found.worst - 1.0 - step.excess))
-        if len(errors) >= PATIENCE and step.excess > 2.0 * max(errors[-2 * PATIENCE :]):
+        hopeless = step.excess > 2.0 * max(errors[-2 * PATIENCE :])
+        if len(errors) >= MOST_FAILURES or (len(errors) >= PATIENCE and hopeless):
             return
         # The linear model of a failed neighbour sees other neighbours better.
         centre = found if len(errors) % 2 else record.best

@@ -98,20 +98,12 @@ class Linearisation:
 
         A fractional x has the mixed resistance Σ_s R_s x_gs, as the rows see it.
         """
-        problem, changes = self.problem, self.changes
+        problem = self.problem
         forces, movements = self.forces.copy(), self.movements.copy()
         for v in np.flatnonzero(x > 0.0):
-            g, share = choices.group[v], x[v]
-            t, extra = self._step(choices, np.array([v]))
-            first, ratio = changes.force_first[g], changes.force_ratio[g]
-            change = self._answer(first, ratio, t)
-            change += extra * changes.force_per_weight[g]
-            change[changes.inside[g]] += self._own(
-                self.forces[changes.inside[g]], change[changes.inside[g]], t
-            )
-            forces += share * change
-            moved = self._answer(changes.movement_first[g], changes.movement_ratio[g], t)
-            movements += share * (moved + extra * changes.movement_per_weight[g])
+            force, movement = self.change(choices, int(v))
+            forces += x[v] * force
+            movements += x[v] * movement
         resistance = np.where(
             forces > 0.0,
             self._mixed(problem.tension, choices, x),
@@ -128,6 +120,17 @@ class Linearisation:
             deflection=deflection,
             worst=worst,
         )
+
+    def change(self, choices: Choices, v: int) -> tuple[FloatArray, FloatArray]:
+        """Change of forces (m, c) and movements (r,) by variable v alone."""
+        changes, g = self.changes, choices.group[v]
+        t, extra = self._step(choices, np.array([v]))
+        force = self._answer(changes.force_first[g], changes.force_ratio[g], t)
+        force += extra * changes.force_per_weight[g]
+        inside = changes.inside[g]
+        force[inside] += self._own(self.forces[inside], force[inside], t)
+        movement = self._answer(changes.movement_first[g], changes.movement_ratio[g], t)
+        return force, movement + extra * changes.movement_per_weight[g]
 
     def _mixed(self, table: FloatArray, choices: Choices, x: FloatArray) -> FloatArray:
         problem = self.problem

@@ -26,7 +26,7 @@ class Record:
         self.watch = watch
         self.best: Evaluation | None = None
         self.least_bad: Evaluation | None = None
-        self.step_gap = 1e-3
+        self.step_gap = 2e-3
         self._tried: dict[bytes, Evaluation] = {}
 
     @property

@@ -5,10 +5,10 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from sizing.selection.analysis import DesignAnalysis
+from sizing.selection.analysis import DesignAnalysis, Evaluation
 from sizing.selection.choices import Choices
-from sizing.selection.exchange import improve
-from sizing.selection.linear_steps import descend, descend_mixed, round_mixture
+from sizing.selection.exchange import exchange, improve
+from sizing.selection.linear_steps import descend, descend_mixed, oscillate, round_mixture
 from sizing.selection.record import Record
 from sizing.selection.reduction import efficient_sections
 from sizing.selection.starts import STRESS_RATIO_PASSES, stiffest, strengthened, stress_ratio_design
@@ -25,6 +25,10 @@ def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Recor
     strong = record.try_design(stiffest(analysis.problem, mask))
     light = stress_ratio_design(analysis, mask, STRESS_RATIO_PASSES)
     record.try_design(light.sections)
+    # A design sized by its forces is the better start where strength governs, a mixture of
+    # sections where movements do; which is which shows only in the result.
+    descend(record, choices, light)
+    _improve(record, choices, None)
     for start in (strong, light, strengthened(analysis, mask, light)):
         if watch.stop():
             break
@@ -33,9 +37,15 @@ def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Recor
         found = None if x is None else round_mixture(record, choices, x)
         if found is not None:
             descend(record, choices, found)
-        if record.best is not before:
-            improve(record, choices)
+        _improve(record, choices, before)
     return record
+
+
+def _improve(record: Record, choices: Choices, before: Evaluation | None) -> None:
+    if record.best is not before:
+        exchange(record, choices)
+        oscillate(record, choices)
+        improve(record, choices)
 
 
 def first_designs(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Record:

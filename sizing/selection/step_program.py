@@ -32,7 +32,7 @@ EXCESS_PRICE = 5.0
 """Price of predicted excess in units of the present cost: well above what any relaxation of a
 limit has been worth, so that the steps end feasible."""
 
-ROUNDS = 5
+ROUNDS = 4
 """Most programs of one step; the answer is analysed exactly anyway."""
 
 ROWS_A_ROUND = 200
@@ -67,7 +67,7 @@ class StepRules:
     cost_limit: float = math.inf
     forbidden: tuple[IntArray, ...] = ()
     seconds: float = 20.0
-    nodes: int = 200
+    nodes: int = 30
     gap: float = 1e-6
     stop: Callable[[], bool] | None = None
 
@@ -99,12 +99,20 @@ def propose(
     )
     if relaxed is None or relaxed.reduced_costs is None:
         return None
-    upper = np.append(_core(choices, relaxed.reduced_costs[:-1], rules.core), rules.most_excess)
+    liked = _core(choices, relaxed.reduced_costs[:-1], rules.core)
+    liked[near == 1.0] = 1.0
+    upper = np.append(liked, rules.most_excess)
     answer: Step | None = None
+    start = _start(rows, near, upper, rules)
     for _ in range(ROUNDS):
         program = replace(rows.program(rules, integer=True), upper=upper)
         solved = solve(
-            program, seconds=rules.seconds, stop=rules.stop, gap=rules.gap, nodes=rules.nodes
+            program,
+            start=start,
+            seconds=rules.seconds,
+            stop=rules.stop,
+            gap=rules.gap,
+            nodes=rules.nodes,
         )
         if solved.values is None:
             return answer
@@ -145,6 +153,20 @@ def _relax(rows: _Rows, rules: StepRules) -> LinearAnswer | None:
         new, upper = np.array(rows.rows[first:]), np.array(rows.bounds[first:])
         program.add_rows(sparse.csr_array(new), np.full(upper.size, -np.inf), upper)
     return best
+
+
+def _start(rows: _Rows, near: FloatArray, upper: FloatArray, rules: StepRules) -> FloatArray | None:
+    # The present design with the excess it has, where the program admits it.
+    if not (near[near > 0.0] == 1.0).all():
+        return None
+    excess = max(
+        rows.model.predict(rows.choices, near).worst - 1.0 + rules.margin, rules.least_excess
+    )
+    return np.append(near, excess) if excess <= min(upper[-1], MOST_START) else None
+
+
+MOST_START = 1e3
+"""Excess beyond which the present design is no start worth giving."""
 
 
 def _core(choices: Choices, reduced_costs: FloatArray, size: int) -> FloatArray:
