@@ -14,7 +14,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
 import numpy as np
@@ -29,8 +29,21 @@ Pattern = tuple[int, tuple[int, ...]]
 """Stock length (index) and the number of each piece on one bar."""
 
 SCALE_BITS = 42
-"""Values become whole multiples of 2^-42 of the greatest expense: finer than any solver's dual,
-and sums over a few thousand pieces on one bar still fit 63 bits."""
+"""Values become whole multiples of 2^-42 of the greatest expense, finer than any solver's dual."""
+
+SHARES = 8
+"""Patterns taken at most from one filling of the knapsack, for each stock length."""
+
+ROUGH_ROOM = 12_500
+"""Steps on the longest bar while patterns are gathered: 1 mm on 12 m. The exact knapsack, many
+times slower on tenths of a millimetre, has the last word."""
+
+DEAREST_PIECE = 1e4
+"""Bars' worth that a piece may be valued at: only where bars at hand run out is it ever more than
+one, and a truss has fewer pieces. A limit on values never makes a bound wrong."""
+
+MOST_BITS = 60
+"""A value per length, on a whole bar, stays below 2^60: sums are held in 63 bits."""
 
 WORTH_ADDING = 1e-7
 """A pattern joins when its row is violated by more than this part of its expense; anything
@@ -56,6 +69,18 @@ class Relaxation:
     finished: bool
 
 
+_NOTHING = Relaxation(
+    patterns=(),
+    share=(),
+    bound=Fraction(0),
+    values=(),
+    charges=(),
+    top=Fraction(0),
+    scale=1,
+    finished=False,
+)
+
+
 class PatternProgram:
     """Column generation for one problem; solves again for fewer pieces from known patterns."""
 
@@ -75,29 +100,36 @@ class PatternProgram:
         available: Sequence[int | None],
         patterns: Sequence[Pattern],
         watch: Watch,
+        *,
+        exact: bool = True,
     ) -> Relaxation:
-        """Return the relaxation for ``numbers`` of the pieces, starting from ``patterns``."""
-        knapsack = self.knapsack(numbers)
+        """Return the relaxation for ``numbers`` of the pieces, starting from ``patterns``.
+
+        Not ``exact``: ends when the rough knapsack knows no more patterns; the shares are then
+        good enough to round, and the bound is nothing.
+        """
+        # On coarse lengths the rough knapsack is as fine as the exact one and gathers everything.
+        rough = _RoughKnapsack(self._sizes, numbers, self._rooms)
+        fine: Knapsack | None = None
         known = list(dict.fromkeys(self._start(numbers, patterns)))
         program = LinearProgram(self._dual_model(numbers, available, known))
-        best: Relaxation | None = None
+        best = _NOTHING
         while True:
             answer = program.run()
             if answer.values is None or answer.row_duals is None:
-                break
-            found = self._priced(answer.values, numbers, available, knapsack)
-            new = self._violated(found, knapsack, set(known))
-            if best is None or found.bound > best.bound:
-                best = found
+                return _with_shares(best, known, (0.0,) * len(known), finished=False)
             share = tuple(max(0.0, -float(dual)) for dual in answer.row_duals)
+            found = self._whole_values(answer.values)
+            new = [] if watch.stop() else rough.violated(found, self.expenses, set(known))
+            if exact and not new:
+                fine = fine or self.knapsack(numbers)
+                found = self._bounded(found, numbers, available, fine)
+                best = found if found.bound > best.bound else best
+                new = _worth_adding(found, fine, self._rooms, self.expenses, set(known))
             if not new or watch.stop():
-                return _with_shares(best, known, share, finished=not new)
+                return _with_shares(best, known, share, finished=exact and not new)
             known += new
             self._add(program, new)
-        empty = self._priced(
-            np.zeros(len(numbers) + len(self._rooms)), numbers, available, knapsack
-        )
-        return _with_shares(best or empty, known, (0.0,) * len(known), finished=False)
 
     def _start(self, numbers: Sequence[int], patterns: Sequence[Pattern]) -> list[Pattern]:
         """Return the patterns cut down to ``numbers``, and one for each piece alone."""
@@ -118,7 +150,7 @@ class PatternProgram:
         self, numbers: Sequence[int], available: Sequence[int | None], known: Sequence[Pattern]
     ) -> LinearModel:
         # Bounded values keep the program bounded where the stock at hand is not enough.
-        greatest = 4.0 * sum(self.expenses) * (1 + sum(numbers))
+        greatest = DEAREST_PIECE * max(self.expenses)
         limited = [math.inf if a is None else float(a) for a in available]
         charge = np.array([0.0 if math.isinf(a) else a for a in limited])
         most = np.array([0.0 if math.isinf(a) else greatest for a in limited])
@@ -146,63 +178,88 @@ class PatternProgram:
         matrix, limit = self._rows(patterns)
         program.add_rows(matrix, np.full(limit.size, -np.inf), limit)
 
-    def _priced(
+    def _whole_values(self, duals: np.ndarray) -> Relaxation:
+        """Return the dual values as whole numbers, not yet with their bound."""
+        pieces = len(self._sizes)
+        scale = self._scale(duals[:pieces])
+        return replace(
+            _NOTHING,
+            values=tuple(math.floor(max(0.0, float(v)) * scale) for v in duals[:pieces]),
+            charges=tuple(math.ceil(max(0.0, float(m)) * scale) for m in duals[pieces:]),
+            scale=scale,
+        )
+
+    def _bounded(
         self,
-        duals: np.ndarray,
+        found: Relaxation,
         numbers: Sequence[int],
         available: Sequence[int | None],
         knapsack: Knapsack,
     ) -> Relaxation:
-        """Return the exact bound that the dual values give, rounded to whole numbers first."""
-        scale = (1 << SCALE_BITS) // max(self.expenses)
-        pieces = len(numbers)
-        values = [math.floor(max(0.0, float(v)) * scale) for v in duals[:pieces]]
-        charges = [math.ceil(max(0.0, float(m)) * scale) for m in duals[pieces:]]
-        knapsack.fill(values)
+        """Return whole values with the exact bound that they give."""
+        knapsack.fill(found.values)
         top = max(
-            Fraction(knapsack.greatest(room), scale * self.expenses[j] + charges[j])
+            Fraction(knapsack.greatest(room), found.scale * self.expenses[j] + found.charges[j])
             for j, room in enumerate(self._rooms)
             if room > 0
         )
-        gain = sum(v * d for v, d in zip(values, numbers, strict=True))
-        loss = sum(m * a for m, a in zip(charges, available, strict=True) if a is not None)
-        bound = (gain / top - loss) / scale if top > 0 else Fraction(0)
-        return Relaxation(
-            patterns=(),
-            share=(),
-            bound=max(bound, Fraction(0)),
-            values=tuple(values),
-            charges=tuple(charges),
-            top=top,
-            scale=scale,
-            finished=False,
+        if top <= 0:
+            return found
+        gain = sum(v * d for v, d in zip(found.values, numbers, strict=True))
+        loss = sum(m * a for m, a in zip(found.charges, available, strict=True) if a is not None)
+        bound = (gain / top - loss) / found.scale
+        return replace(found, bound=max(bound, Fraction(0)), top=top)
+
+    def _scale(self, values: np.ndarray) -> int:
+        """Return the whole number by which values are multiplied: no sum on a bar overflows."""
+        dearest = float(np.max(values / np.array(self._sizes), initial=0.0)) * max(self._rooms)
+        finest = (1 << SCALE_BITS) // max(self.expenses)
+        most = (1 << MOST_BITS) / dearest if dearest > 0.0 else math.inf
+        return max(1, finest if finest <= most else int(most))
+
+
+class _RoughKnapsack:
+    """Patterns found with sizes rounded up to a coarse unit: each fits, some are missed."""
+
+    def __init__(self, sizes: Sequence[int], numbers: Sequence[int], rooms: Sequence[int]) -> None:
+        self._unit = -(-max(rooms) // ROUGH_ROOM)
+        self._rooms = [room // self._unit for room in rooms]
+        self._knapsack = Knapsack(
+            [-(-size // self._unit) for size in sizes], numbers, max(self._rooms)
         )
 
-    def _violated(
-        self, found: Relaxation, knapsack: Knapsack, known: set[Pattern]
+    def violated(
+        self, found: Relaxation, expenses: Sequence[int], known: set[Pattern]
     ) -> list[Pattern]:
-        new = []
-        for j, room in enumerate(self._rooms):
-            if room <= 0:
-                continue
-            limit = found.scale * self.expenses[j] + found.charges[j]
-            if knapsack.greatest(room) > limit * (1.0 + WORTH_ADDING):
-                pattern = (j, knapsack.pattern(room))
-                if pattern not in known:
-                    new.append(pattern)
-        return new
+        """Return patterns whose rows the values violate."""
+        self._knapsack.fill(found.values)
+        return _worth_adding(found, self._knapsack, self._rooms, expenses, known)
+
+
+def _worth_adding(
+    found: Relaxation,
+    knapsack: Knapsack,
+    rooms: Sequence[int],
+    expenses: Sequence[int],
+    known: set[Pattern],
+) -> list[Pattern]:
+    new: list[Pattern] = []
+    for j, room in enumerate(rooms):
+        if room <= 0:
+            continue
+        limit = (found.scale * expenses[j] + found.charges[j]) * (1.0 + WORTH_ADDING)
+        # The tables also hold the best patterns without the last pieces: more for one filling.
+        count = len(found.values)
+        firsts = sorted({-(-count * k // SHARES) for k in range(1, SHARES + 1)}, reverse=True)
+        new += [
+            (j, knapsack.pattern(room, first))
+            for first in firsts
+            if knapsack.greatest(room, first) > limit
+        ]
+    return [pattern for pattern in dict.fromkeys(new) if pattern not in known]
 
 
 def _with_shares(
     relaxation: Relaxation, patterns: Sequence[Pattern], share: Sequence[float], *, finished: bool
 ) -> Relaxation:
-    return Relaxation(
-        patterns=tuple(patterns),
-        share=tuple(share),
-        bound=relaxation.bound,
-        values=relaxation.values,
-        charges=relaxation.charges,
-        top=relaxation.top,
-        scale=relaxation.scale,
-        finished=finished,
-    )
+    return replace(relaxation, patterns=tuple(patterns), share=tuple(share), finished=finished)

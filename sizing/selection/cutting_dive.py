@@ -37,7 +37,7 @@ def rounded_plan(program: PatternProgram, relaxation: Relaxation, watch: Watch) 
                 numbers = [d - a for d, a in zip(numbers, cut, strict=True)]
                 bars.append((stock, cut))
         if any(numbers):
-            relaxation = program.solve(numbers, available, relaxation.patterns, watch)
+            relaxation = program.solve(numbers, available, relaxation.patterns, watch, exact=False)
     if any(numbers):
         rest = first_plan(problem, numbers)
         if rest is None:

@@ -49,15 +49,15 @@ class Knapsack:
                     np.maximum(row[step:], row[: row.size - step] + share * value, out=row[step:])
             self.best[i + 1] = row
 
-    def greatest(self, room: int) -> int:
-        """Return the greatest value in ``room``."""
-        return int(self.best[-1, room // self._unit])
+    def greatest(self, room: int, first: int | None = None) -> int:
+        """Return the greatest value in ``room``, of the ``first`` so many pieces (None: all)."""
+        return int(self.best[-1 if first is None else first, room // self._unit])
 
-    def pattern(self, room: int) -> tuple[int, ...]:
-        """Return counts of the pieces with the greatest value in ``room``."""
+    def pattern(self, room: int, first: int | None = None) -> tuple[int, ...]:
+        """Return counts of the pieces with that value."""
         left = room // self._unit
         counts = [0] * len(self._sizes)
-        for i in range(len(self._sizes) - 1, -1, -1):
+        for i in range((len(self._sizes) if first is None else first) - 1, -1, -1):
             target, size, value = self.best[i + 1, left], self._sizes[i], self._values[i]
             while self.best[i, left] + counts[i] * value != target:
                 counts[i] += 1

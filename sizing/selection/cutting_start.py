@@ -57,18 +57,21 @@ def _first_fit(problem: CuttingProblem, numbers: Sequence[int], usual: int) -> B
     stocks: list[int] = []
     rooms: list[int] = []
     for i in sorted(range(len(sizes)), key=lambda k: -sizes[k]):
-        for _ in range(numbers[i]):
-            place = next((b for b, room in enumerate(rooms) if room >= sizes[i]), None)
-            if place is None:
+        missing = numbers[i]
+        place = 0
+        while missing > 0:
+            if place == len(rooms):
                 stock = _new_bar(problem, sizes[i], usual, left)
                 if stock is None:
                     return None
-                place = len(rooms)
                 stocks.append(stock)
                 rooms.append(problem.room(stock))
                 contents.append([0] * len(sizes))
-            contents[place][i] += 1
-            rooms[place] -= sizes[i]
+            count = min(missing, rooms[place] // sizes[i])
+            contents[place][i] += count
+            rooms[place] -= count * sizes[i]
+            missing -= count
+            place += 1
     _exchange(problem, stocks, rooms, left)
     return [(stock, tuple(pieces)) for stock, pieces in zip(stocks, contents, strict=True)]
 

@@ -70,8 +70,7 @@ class _Search:
         self.watch = watch
         self.bars: Bars | None = None
         self.floor = 0
-        dearest = max(problem.expense(j) for j in range(len(problem.stock)))
-        self.ceiling = sum(problem.numbers) * dearest // problem.step + 1
+        self.ceiling = _most_expense(problem) // problem.step + 1
         self.method = "first fit decreasing"
 
     @property
@@ -124,6 +123,8 @@ class _Search:
         between is in no better plan. A pattern that is not full may be filled up: it then cuts
         surplus, for the same bar. None when they are too many, or time is up.
         """
+        if not relaxation.values:  # the linear program gave up
+            return None
         room_between = Fraction(self.ceiling - 1) - relaxation.bound
         if room_between < 0:
             return []
@@ -170,6 +171,16 @@ class _Search:
         )
 
 
+def _most_expense(problem: CuttingProblem) -> int:
+    """Return what no plan exceeds: a bar for every piece, or every bar at hand."""
+    dearest = max(problem.expense(j) for j in range(len(problem.stock)))
+    most = sum(problem.numbers) * dearest
+    counts = [bar.available for bar in problem.stock]
+    if None not in counts:
+        most = min(most, sum(problem.expense(j) * (n or 0) for j, n in enumerate(counts)))
+    return most
+
+
 def _merged(problem: CuttingProblem) -> tuple[CuttingProblem, list[int]]:
     """Return the problem with each length once, longest first, and the lengths' first places."""
     numbers: dict[int, int] = {}
@@ -186,17 +197,17 @@ def _merged(problem: CuttingProblem) -> tuple[CuttingProblem, list[int]]:
 def _spread(problem: CuttingProblem, bars: Bars, lengths: list[int]) -> Bars:
     """Give the pieces of merged lengths back to the entries that asked for them."""
     left = list(problem.numbers)
+    owners = [[i for i, own in enumerate(problem.lengths) if own == length] for length in lengths]
     spread: Bars = []
     for stock, pieces in bars:
         counts = [0] * len(problem.lengths)
-        for length, count in zip(lengths, pieces, strict=True):
+        for places, count in zip(owners, pieces, strict=True):
             missing = count
-            for i, own in enumerate(problem.lengths):
-                if own == length and missing:
-                    taken = min(missing, left[i])
-                    counts[i] += taken
-                    left[i] -= taken
-                    missing -= taken
+            for i in places:
+                taken = min(missing, left[i])
+                counts[i] += taken
+                left[i] -= taken
+                missing -= taken
         spread.append((stock, tuple(counts)))
     return spread
 
