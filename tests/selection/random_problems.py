@@ -150,7 +150,8 @@ def roof_girder(
     half = panels // 2
     ends, zone = [], []
     kinds = {"bottom": groups_chord, "top": groups_chord, "web": groups_web, "post": groups_web - 1}
-    offset = dict(zip(kinds, np.concatenate([[0], np.cumsum(list(kinds.values()))[:-1]]), strict=True))
+    starts = np.concatenate([[0], np.cumsum(list(kinds.values()))[:-1]])
+    offset = dict(zip(kinds, starts, strict=True))
 
     def place(kind, p):
         near = min(p, panels - 1 - p) if kind != "post" else min(p, panels - p)
@@ -175,8 +176,28 @@ def roof_girder(
 
 
 def _girder_problem(geometry, group, sections, combinations, top):
-    n, m, groups = geometry.free.size, geometry.members, int(group.max()) + 1
-    sides = (40, 50, 60, 70, 80, 90, 100, 120, 140, 150, 160, 180, 200, 220, 250, 260, 300, 350, 400)
+    n, groups = geometry.free.size, int(group.max()) + 1
+    sides = (
+        40,
+        50,
+        60,
+        70,
+        80,
+        90,
+        100,
+        120,
+        140,
+        150,
+        160,
+        180,
+        200,
+        220,
+        250,
+        260,
+        300,
+        350,
+        400,
+    )
     walls = (3, 4, 5, 6, 6.3, 8, 10, 12, 12.5, 14.2, 16)
     sizes = [(b, t) for b in sides for t in walls if 8 <= b / t <= 65][:sections]
     area, radius = square_tubes(sizes)
@@ -200,7 +221,9 @@ def _girder_problem(geometry, group, sections, combinations, top):
     buckling = geometry.length * np.where(np.abs(geometry.cosines[:, 0]) > 0.99, 3.0, 0.9)
     tension, compression = resistances(area, radius, buckling, [1.0])
     vertical = [k for k, f in enumerate(geometry.free) if f % 2 == 1]
-    states = np.array([[1, 1, 1, 0, 0.6], [1, 1, 0.5, 0.6, 1], [1, 1, 0, 1, 0], [1, 1, 0.7, 0, 0.7]])
+    states = np.array(
+        [[1, 1, 1, 0, 0.6], [1, 1, 0.5, 0.6, 1], [1, 1, 0, 1, 0], [1, 1, 0.7, 0, 0.7]]
+    )
     vectors = np.eye(n)[np.repeat(vertical, len(states))]
     span = np.ptp(geometry.position[:, 0])
     group_length = np.bincount(group, weights=geometry.length, minlength=groups)
