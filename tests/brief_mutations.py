@@ -101,7 +101,7 @@ def _apply(operation: str, holder: Any, key: Any, other: tuple[Any, Any], payloa
     elif operation == "swap":
         holder[key] = deepcopy(other[0][other[1]])
     elif operation == "scale" and isinstance(value, (int, float)):
-        holder[key] = -value if isinstance(payload, str) else value * 1e6
+        holder[key] = -value if isinstance(payload, str) else value * 1_000_000
     elif operation == "rename" and isinstance(holder, dict):
         holder[str(payload)[:50]] = holder.pop(key)
     elif operation == "wrap":

@@ -18,8 +18,11 @@ from typing import Any, Literal
 from sizing.brief.catalogue_numbers import NumberError, marks_of, plain, read_number
 from sizing.brief.toml_writer import toml_string, toml_value
 
-Kind = Literal["text", "date", "choice", "flag", "list", "list or word", "table", "any"]
-"""What a cell holds; ``any``: a quantity or whatever else, ``date``: text that is a date."""
+Kind = Literal[
+    "text", "date", "choice", "flag", "list", "quantities", "list or word", "table", "any"
+]
+"""What a cell holds. ``any``: a quantity or whatever else; ``quantities``: a list of such;
+``date``: text that is a date."""
 
 CellValue = str | int | float | bool
 
@@ -162,6 +165,13 @@ def _list_cell(value: Any) -> str | None:
     return toml_value(value)
 
 
+def _quantities_cell(value: Any) -> str | None:
+    if not isinstance(value, list):
+        return None
+    row = "; ".join(str(item) for item in value)
+    return row if value and _same(_quantities(row).value, value) else toml_value(value)
+
+
 def _list_or_word_cell(value: Any) -> CellValue | None:
     return _list_cell(value) if isinstance(value, list) else _any_cell(value)
 
@@ -179,6 +189,7 @@ _ENCODERS: dict[Kind, Callable[[Any], CellValue | None]] = {
     "choice": _text_cell,
     "flag": _flag_cell,
     "list": _list_cell,
+    "quantities": _quantities_cell,
     "list or word": _list_or_word_cell,
     "table": _table_cell,
     "any": _any_cell,
@@ -234,6 +245,24 @@ def _list(cell: Any) -> Decoded:
     return Decoded(value=[item for item in items if item])
 
 
+def _quantities(cell: Any) -> Decoded:
+    """Numbers and quantities between semicolons; between commas where each is followed by a space.
+
+    A comma without a space may be a decimal one and is left to the reader of quantities.
+    """
+    if not isinstance(cell, str):
+        value = _odd(cell)
+        number = isinstance(value, (int, float)) and not isinstance(value, bool)
+        return Decoded(value=[value] if number else value)
+    if cell.startswith("["):
+        value = toml_of(cell)
+        if isinstance(value, list):
+            return Decoded(value=value)
+    mark = next((m for m in (";", "\n") if m in cell), ", ")
+    items = [item.strip() for item in cell.split(mark)]
+    return Decoded(value=[_any(item).value for item in items if item])
+
+
 def _list_or_word(cell: Any) -> Decoded:
     """``all``, ``strength`` and ``serviceability`` are words, ``y`` an axis, the rest lists."""
     if isinstance(cell, str):
@@ -286,6 +315,7 @@ _DECODERS: dict[Kind, Callable[[Any], Decoded]] = {
     "choice": _text,
     "flag": _flag,
     "list": _list,
+    "quantities": _quantities,
     "list or word": _list_or_word,
     "table": _table,
     "any": _any,

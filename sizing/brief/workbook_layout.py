@@ -13,7 +13,9 @@ from dataclasses import dataclass
 from typing import Any, Literal, Union, get_args, get_origin
 
 from sizing.brief import raw_tables
+from sizing.brief.order_lengths import RawDeduction
 from sizing.brief.raw_tables import RawTable
+from sizing.brief.stock import RawStock
 from sizing.brief.workbook_cells import Kind
 
 Path = tuple[str | int, ...]
@@ -85,6 +87,9 @@ _HEADS: dict[Path, str] = {
     ("self_weight",): "Self-weight",
     ("long_term",): "Long-term part",
     ("kind",): "Kind of action",
+    ("end_deduction",): "End deduction, both ends",
+    ("end_deduction", "start"): "End deduction at the first node",
+    ("end_deduction", "end"): "End deduction at the second node",
     ("carbon", "a1_a3"): "Carbon: A1 to A3",
 }
 _FACTOR_OR_LENGTH = "A factor on the member's length (0.9) or a length with its unit (5.0 m)"
@@ -107,6 +112,17 @@ _NOTES: dict[Path, str] = {
     ("unrestrained_ends",): "Free chain ends with their factor: A8 = 2.0",
     ("families",): "Section families to choose from: SHS, RHS",
     ("sections",): "Designations or patterns to choose from: SHS 100*",
+    ("end_deduction",): "What the joints take off each member (35 mm); fill in this or the next "
+    "two",
+    ("order_length",): "Step that order lengths are rounded up to (5 mm)",
+    ("cost", "per_lb"): "Price of one pound of section",
+    ("cost", "per_metre"): "Price of one metre of member",
+    ("cost", "per_foot"): "Price of one foot of member",
+    ("cost", "per_piece"): "Price of one piece",
+    ("stock", "lengths"): "Lengths of bars in stock: 6 m, 12 m",
+    ("stock", "prices"): "Price of a bar of each length: 40; 75",
+    ("stock", "numbers"): "Bars at hand of each length: 10; 4",
+    ("stock", "per_section"): "Only by key, such as stock.per_section.NAME.lengths, in rows below",
     ("held",): "x, y or z, with commas between: x, y",
     ("nodes",): "Nodes with commas between (A3, A4), or all",
     ("RawLimit", "direction"): "x, y or z; vertical if left empty",
@@ -123,17 +139,27 @@ _KINDS: dict[Path, Kind] = {
     ("cost", "date"): "date",
     ("carbon", "date"): "date",
 }
-_UNITS: dict[Path, Unit] = {("limit",): "length", ("span",): "length", ("distance",): "length"}
+_UNITS: dict[Path, Unit] = {
+    ("limit",): "length",
+    ("span",): "length",
+    ("distance",): "length",
+    ("order_length",): "length",
+    ("end_deduction",): "length",
+    ("end_deduction", "start"): "length",
+    ("end_deduction", "end"): "length",
+}
 _WITHIN: dict[tuple[type[RawTable], str], Any] = {
     (raw_tables.RawBrief, "units"): raw_tables.RawUnits,
     (raw_tables.RawGroup, "slenderness_limits"): raw_tables.RawSlenderness,
     (raw_tables.RawOption, "slenderness_limits"): raw_tables.RawSlenderness,
     (raw_tables.RawOption, "cost"): raw_tables.RawCost,
     (raw_tables.RawOption, "carbon"): raw_tables.RawCarbon,
+    (raw_tables.RawBrief, "stock"): RawStock,
     (raw_tables.RawGroup, "buckling_length"): ("in_plane", "out_of_plane"),
+    (raw_tables.RawGroup, "end_deduction"): RawDeduction,
 }
 """Tables inside an entry whose keys get columns of their own."""
-_WHOLE_TOO = frozenset({"buckling_length"})
+_WHOLE_TOO = frozenset({"buckling_length", "end_deduction"})
 """Of these, the keys that may also hold one value."""
 
 
@@ -200,6 +226,8 @@ def _kind(annotation: Any) -> tuple[Kind, tuple[str, ...]]:
         return _kind(next(option for option in options if option is not type(None)))
     if origin is Literal:
         return "choice", tuple(str(option) for option in options)
+    if origin is list and options == (Any,):
+        return "quantities", ()
     kinds: Mapping[Any, Kind] = {str: "text", bool: "flag", list: "list", dict: "table"}
     return kinds.get(origin or annotation, "any"), ()
 

@@ -35,7 +35,7 @@ A4, A3 = 9, 8
 WIDTH_OF_A4 = 150
 """Characters across a sheet of A4 on its side that are legible yet."""
 
-_TEXT_KINDS = ("text", "date", "choice", "flag", "list", "list or word", "table")
+_TEXT_KINDS = ("text", "date", "choice", "flag", "list", "quantities", "list or word", "table")
 _SHORTEST_CHOICES = 255
 """Characters that a list of choices may have (limit of spreadsheet programs)."""
 

@@ -13,6 +13,7 @@ from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
 from sizing.brief.model import SourceFile
+from sizing.brief.shapes import SHAPES, shape_tables
 from sizing.brief.toml_reader import brief_from_tables, read_brief
 from sizing.brief.toml_writer import toml_text
 from sizing.brief.workbook_file import Grid, read_grids
@@ -101,6 +102,15 @@ def _plain(problem: Problem) -> tuple[str, str, str]:
     """The problem without its place; the place of another member in it stands for any."""
     found = re.sub(r"groups\.\S+\.members\[\d+\]|Members!\w+", "(place)", problem.found)
     return found, problem.expected, problem.fix
+
+
+@pytest.mark.parametrize("shape", SHAPES)
+def test_every_shape_is_the_same_brief_as_a_workbook(shape: str) -> None:
+    """The briefs that are written for a start survive the sheets."""
+    tables = shape_tables(shape)
+    book = through_sheets(tables)
+    assert book.tables == tables
+    assert book.cautions == ()
 
 
 def test_every_digit_of_a_number_survives() -> None:
