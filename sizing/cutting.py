@@ -24,7 +24,7 @@ NOISE = 1e-3
 PER_CURRENCY = 100
 """Prices are taken to hundredths of the currency."""
 
-SECONDS = 5.0
+SECONDS = 10.0
 """Time for one section; what is then not proven says so with its gap. A truss takes far less."""
 
 TOO_LONG_TO_CARRY = "longer than the longest piece that can be carried"

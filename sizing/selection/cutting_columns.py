@@ -42,6 +42,9 @@ DEAREST_PIECE = 1e4
 """Bars' worth that a piece may be valued at: only where bars at hand run out is it ever more than
 one, and a truss has fewer pieces. A limit on values never makes a bound wrong."""
 
+ROUNDS_BETWEEN_BOUNDS = 20
+"""Rounds of gathering between two looks at the exact bound, which may already do."""
+
 MOST_BITS = 60
 """A value per length, on a whole bar, stays below 2^60: sums are held in 63 bits."""
 
@@ -102,9 +105,11 @@ class PatternProgram:
         watch: Watch,
         *,
         exact: bool = True,
+        enough: int | None = None,
     ) -> Relaxation:
         """Return the relaxation for ``numbers`` of the pieces, starting from ``patterns``.
 
+        ``enough``: ends as soon as the bound, rounded up to whole steps, reaches it.
         Not ``exact``: ends when the rough knapsack knows no more patterns; the shares are then
         good enough to round, and the bound is nothing.
         """
@@ -114,19 +119,24 @@ class PatternProgram:
         known = list(dict.fromkeys(self._start(numbers, patterns)))
         program = LinearProgram(self._dual_model(numbers, available, known))
         best = _NOTHING
+        rounds = 0
         while True:
             answer = program.run()
             if answer.values is None or answer.row_duals is None:
                 return _with_shares(best, known, (0.0,) * len(known), finished=False)
             share = tuple(max(0.0, -float(dual)) for dual in answer.row_duals)
             found = self._whole_values(answer.values)
-            new = [] if watch.stop() else rough.violated(found, self.expenses, set(known))
-            if exact and not new:
+            stopping = watch.stop()
+            new = [] if stopping else rough.violated(found, self.expenses, set(known))
+            rounds += 1
+            if exact and (not new or rounds % ROUNDS_BETWEEN_BOUNDS == 0):
                 fine = fine or self.knapsack(numbers)
                 found = self._bounded(found, numbers, available, fine)
                 best = found if found.bound > best.bound else best
-                new = _worth_adding(found, fine, self._rooms, self.expenses, set(known))
-            if not new or watch.stop():
+                if enough is not None and math.ceil(best.bound) >= enough:
+                    return _with_shares(best, known, share, finished=False)
+                new = new or _worth_adding(found, fine, self._rooms, self.expenses, set(known))
+            if not new or stopping:
                 return _with_shares(best, known, share, finished=exact and not new)
             known += new
             self._add(program, new)

@@ -56,24 +56,35 @@ def _first_fit(problem: CuttingProblem, numbers: Sequence[int], usual: int) -> B
     contents: list[list[int]] = []
     stocks: list[int] = []
     rooms: list[int] = []
+    least = min((sizes[i] for i, number in enumerate(numbers) if number), default=0)
+    with_room: list[int] = []
     for i in sorted(range(len(sizes)), key=lambda k: -sizes[k]):
         missing = numbers[i]
-        place = 0
+        for bar in with_room:
+            missing -= _put(contents[bar], rooms, bar, i, sizes[i], missing)
+            if not missing:
+                break
         while missing > 0:
-            if place == len(rooms):
-                stock = _new_bar(problem, sizes[i], usual, left)
-                if stock is None:
-                    return None
-                stocks.append(stock)
-                rooms.append(problem.room(stock))
-                contents.append([0] * len(sizes))
-            count = min(missing, rooms[place] // sizes[i])
-            contents[place][i] += count
-            rooms[place] -= count * sizes[i]
-            missing -= count
-            place += 1
+            stock = _new_bar(problem, sizes[i], usual, left)
+            if stock is None:
+                return None
+            with_room.append(len(rooms))
+            stocks.append(stock)
+            rooms.append(problem.room(stock))
+            contents.append([0] * len(sizes))
+            bar = with_room[-1]
+            missing -= _put(contents[bar], rooms, bar, i, sizes[i], missing)
+        with_room = [bar for bar in with_room if rooms[bar] >= least]
     _exchange(problem, stocks, rooms, left)
     return [(stock, tuple(pieces)) for stock, pieces in zip(stocks, contents, strict=True)]
+
+
+def _put(pieces: list[int], rooms: list[int], bar: int, i: int, size: int, missing: int) -> int:
+    """Put as many of ``missing`` pieces as the bar has room for; return how many."""
+    count = min(missing, rooms[bar] // size)
+    pieces[i] += count
+    rooms[bar] -= count * size
+    return count
 
 
 def _new_bar(problem: CuttingProblem, size: int, usual: int, left: list[int | None]) -> int | None:

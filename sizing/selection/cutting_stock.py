@@ -82,10 +82,15 @@ class _Search:
         """Go through the steps until plan and bound meet or time is up."""
         problem = self.problem
         self._take(first_plan(problem, problem.numbers), "first fit decreasing")
+        self.floor = min(_by_length_alone(problem), self.ceiling)
+        if self.closed:
+            return
         program = PatternProgram(problem)
         available = [bar.available for bar in problem.stock]
-        relaxation = program.solve(problem.numbers, available, self.bars or [], self.watch)
-        self.floor = max(0, min(math.ceil(relaxation.bound), self.ceiling))
+        relaxation = program.solve(
+            problem.numbers, available, self.bars or [], self.watch, enough=self.ceiling
+        )
+        self.floor = max(self.floor, min(math.ceil(relaxation.bound), self.ceiling))
         if self.closed or self.watch.stop():
             return
         self._take(rounded_plan(program, relaxation, self.watch), "rounding of the linear program")
@@ -179,6 +184,18 @@ def _most_expense(problem: CuttingProblem) -> int:
     if None not in counts:
         most = min(most, sum(problem.expense(j) * (n or 0) for j, n in enumerate(counts)))
     return most
+
+
+def _by_length_alone(problem: CuttingProblem) -> int:
+    """Return the steps that the total length costs at the least expense per room."""
+    pairs = zip(problem.lengths, problem.numbers, strict=True)
+    taken = sum((length + problem.kerf) * number for length, number in pairs)
+    rate = min(
+        Fraction(problem.expense(j), problem.room(j) * problem.step)
+        for j in range(len(problem.stock))
+        if problem.room(j) > 0
+    )
+    return math.ceil(taken * rate)
 
 
 def _merged(problem: CuttingProblem) -> tuple[CuttingProblem, list[int]]:
