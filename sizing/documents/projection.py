@@ -40,7 +40,7 @@ def views_of(brief: Brief) -> tuple[View, ...]:
     return (
         View(
             title="General view",
-            points=tuple(_oblique(node.position) for node in brief.nodes),
+            points=tuple(oblique(node.position) for node in brief.nodes),
             axes=None,
             main=True,
         ),
@@ -56,7 +56,8 @@ def _flat(brief: Brief, title: str, axes: tuple[int, int], *, main: bool) -> Vie
     return View(title=title, points=points, axes=axes, main=main)
 
 
-def _oblique(position: tuple[float, ...]) -> Point:
+def oblique(position: tuple[float, ...]) -> Point:
+    """Return where a point, or a movement, falls in the general view (linear in ``position``)."""
     x, y, z = position
     depth = x * math.sin(AZIMUTH) + y * math.cos(AZIMUTH)
     across = x * math.cos(AZIMUTH) - y * math.sin(AZIMUTH)

@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+import base64
+import hashlib
+import json
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date
+from importlib.resources import files
 from typing import Any
 from xml.etree import ElementTree as Xml
 
@@ -14,6 +18,14 @@ from sizing.documents.drawing import svg_text
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.rows import job_tables
+from sizing.documents.state_drawing import (
+    caption,
+    deciding_combination,
+    force_drawing,
+    most_deflected,
+    state_data,
+    utilisation_drawing,
+)
 from sizing.documents.tables import Cell, Column, essential_part, printed
 from sizing.documents.wording import ALARMS, CLOSING_CAUTION, met, outcome_sentence
 from sizing.results import JobResult, OptionResult, WorkedCheck
@@ -26,6 +38,7 @@ SHORT_TEXT = 18
 """Characters up to which a cell is kept on one line: marks, sections, combinations."""
 
 TEMPLATE = "report.html.jinja"
+SCRIPT = "report_script.js"
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -56,6 +69,7 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
     """
     tables = job_tables(job, issued)
     cover, *shared = tables.shared
+    script = files("sizing.documents").joinpath(SCRIPT).read_text(encoding="utf-8")
     page: str = _template().render(
         title=visible(job.brief.title),
         cover=cover,
@@ -66,6 +80,7 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
                 "outcome": outcome_sentence(option),
                 "adequate": option.adequate,
                 "drawing": svg_text(drawing),
+                **_states(job, option, tables.units),
                 "bars": "" if bars is None else svg_text(bars),
                 "worked": [
                     _worked(check, tables.units, _caps(job, option).get(check.mark, 1.0))
@@ -81,8 +96,39 @@ def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) 
         issued=issued.isoformat(),
         closing=CLOSING_CAUTION,
         us=tables.units.us,
+        script=script,
+        script_hash=_hash_of(script),
     )
     return (page + "\n").encode("utf-8", "replace")
+
+
+def _states(job: JobResult, option: OptionResult, units: ShownUnits) -> dict[str, Any]:
+    """Return drawings of utilisation, forces and deflection, and the data to redraw them."""
+    first, sag = deciding_combination(option), most_deflected(option)
+    brief = job.brief
+    return {
+        "utilisation": svg_text(utilisation_drawing(brief, option)),
+        "forces": svg_text(force_drawing(brief, option, units, first)),
+        "caption": caption(brief, option, units, first),
+        "sag": "" if sag is None else svg_text(force_drawing(brief, option, units, sag)),
+        "sag_caption": "" if sag is None else caption(brief, option, units, sag),
+        "first": first,
+        "combinations": [visible(c.name) for c in option.combinations],
+        "marks": [visible(m.mark) for m in option.members],
+        "state": _script_data(state_data(brief, option, units)),
+    }
+
+
+def _script_data(data: dict[str, Any]) -> str:
+    """Return JSON that cannot end the element it stands in, whatever names it holds."""
+    text = json.dumps(data, ensure_ascii=True, separators=(",", ":"), allow_nan=False)
+    return text.replace("&", "\\u0026").replace("<", "\\u003c").replace(">", "\\u003e")
+
+
+def _hash_of(script: str) -> str:
+    """Return the hash by which a browser knows the page's own script (CSP level 2)."""
+    digest = hashlib.sha256(script.encode("utf-8")).digest()
+    return f"sha256-{base64.b64encode(digest).decode('ascii')}"
 
 
 def _template() -> Any:

@@ -69,7 +69,7 @@ class Paper:
         full: str = "",
         turn: float = 0.0,
         after: str = "",
-    ) -> None:
+    ) -> Xml.Element:
         """Write ``words`` with their base line at ``at``, turned by ``turn`` radians.
 
         ``full`` is the whole text where ``words`` is shortened; viewers show it on pointing.
@@ -99,6 +99,7 @@ class Paper:
         if after:
             second = Xml.SubElement(put, "tspan", dx=number(0.45 * size))
             second.text = after
+        return put
 
     def text_in(
         self,
@@ -111,11 +112,11 @@ class Paper:
         halo: bool = False,
         full: str = "",
         after: str = "",
-    ) -> None:
+    ) -> Xml.Element:
         """Write ``words`` centred in ``box``, along its direction."""
         down = 0.36 * size
         at = (box.x - math.sin(box.angle) * down, box.y + math.cos(box.angle) * down)
-        self.text(
+        return self.text(
             words, at, size=size, anchor="middle", ink=ink, bold=bold, halo=halo, full=full,
             turn=box.angle, after=after,
         )  # fmt: skip

@@ -82,7 +82,7 @@ def _draw_view(
     paper, layout = Paper(), Layout()
     paper.text(view.title, (origin[0], 16.0), size=12.0, bold=True)
     _members(paper, layout, brief, option, points)
-    _supports(paper, layout, brief, view, points)
+    draw_supports(paper, layout, brief, view, points)
     names = Names(
         paper=paper,
         layout=layout,
@@ -110,16 +110,18 @@ def _members(
 ) -> None:
     greatest = max((m.area for m in option.members), default=1.0)
     looks = {"tension": TENSION, "compression": COMPRESSION, None: NONE}
-    for member, result in zip(brief.members, option.members, strict=True):
+    for i, (member, result) in enumerate(zip(brief.members, option.members, strict=True)):
         a, b = points[member.start], points[member.end]
         ink, dash = looks[result.governing]
-        paper.line(a, b, ink=ink, width=line_width(result.area, greatest), dash=dash)
+        line = paper.line(a, b, ink=ink, width=line_width(result.area, greatest), dash=dash)
+        line.set("data-member", str(i))
         layout.add(segment_box(a, b, 2.5), "line")
 
 
-def _supports(
+def draw_supports(
     paper: Paper, layout: Layout, brief: Brief, view: View, points: Sequence[Point]
 ) -> None:
+    """Draw the support signs of a view and keep their places free of names."""
     held = {s.node: s.held for s in brief.supports}
     for nodes in at_points(points).values():
         flags = [held[i] for i in nodes if i in held]

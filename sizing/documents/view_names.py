@@ -139,7 +139,7 @@ def _beside_line(
     size = names.size
     for section in sections:
         width = text_width(mark, size) * BOLD + (text_width(f"  {section}", size) if section else 0)
-        boxes = _beside(ends, width, size)
+        boxes = beside(ends, width, size)
         free = names.layout.first_free(boxes)
         if free is not None:
             names.layout.add(boxes[free], "text")
@@ -156,7 +156,7 @@ def _upon_line(names: Names, ends: tuple[Point, Point], mark: str, full: str) ->
     names.paper.text_in(mark, box, size=names.size, halo=True, full=full, bold=True)
 
 
-def _beside(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:
+def beside(ends: tuple[Point, Point], width: float, size: float) -> list[Box]:
     """Return places along a member, above its line first, near its middle first."""
     (ax, ay), (bx, by) = ends
     angle = math.atan2(by - ay, bx - ax)

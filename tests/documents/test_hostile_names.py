@@ -100,11 +100,15 @@ class _Page(HTMLParser):
         self.words.append(data)
 
 
-def test_report_shows_names_and_runs_nothing(hostile_job, hostile_names):
-    """The page has no script, no event handler, no outside link, and every name as text."""
+def test_report_shows_names_and_runs_nothing_of_theirs(hostile_job, hostile_names):
+    """The one script is the page's own; no event handler, no outside link, every name as text."""
     page = _Page()
-    page.feed(report_bytes(hostile_job, ISSUED, draw_options(hostile_job)).decode("utf-8"))
-    assert not page.tags & {"script", "iframe", "img", "link", "object", "form"}
+    content = report_bytes(hostile_job, ISSUED, draw_options(hostile_job)).decode("utf-8")
+    page.feed(content)
+    assert content.count("<script>") == 1
+    assert content.count("<script") == 1 + len(hostile_job.options)  # and data, not run
+    assert "default-src 'none'" in content
+    assert not page.tags & {"iframe", "img", "link", "object", "form"}
     assert not page.handlers
     assert all(link.startswith("#") for link in page.links)
     words = set(page.words)
