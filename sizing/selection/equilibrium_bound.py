@@ -125,7 +125,8 @@ class _Rows:
     def add_violated(self, values: FloatArray) -> tuple[sparse.csr_array, FloatArray] | None:
         problem, choices = self.problem, self.choices
         x = values[: choices.count]
-        X = values[choices.count :].reshape(self.Z.shape[1], -1) * self.force_scale
+        states = values[choices.count :].reshape(self.Z.shape[1], problem.loads.shape[1])
+        X = states * self.force_scale
         w = choices.averages(problem.weight, x)
         forces = self.fixed + np.outer(self.per_weight @ w, self.own_factor)
         forces = forces + (self.Z @ X) @ problem.strength_factors.T
