@@ -98,6 +98,7 @@ def _bars_table(option: OptionResult, units: ShownUnits) -> Table:
             rows[-1] = (*rows[-1][:4], length.of(result.piece_length), *rows[-1][5:])
     some = option.cutting[0]
     saw = saw_length(units)
+    fine = replace(saw, places=saw.places + 1)
     trusses = "1 truss" if some.trusses == 1 else f"{some.trusses} trusses"
     stock = math.fsum(r.stock_length for r in option.cutting)
     pieces = math.fsum(r.piece_length for r in option.cutting)
@@ -116,7 +117,8 @@ def _bars_table(option: OptionResult, units: ShownUnits) -> Table:
         ),
         rows=tuple(rows),
         notes=(
-            f"Saw cut {saw.text(some.kerf)}, lost at the start of every bar {saw.text(some.trim)}. "
+            f"Saw cut {fine.text(some.kerf)}, lost at the start of every bar "
+            f"{fine.text(some.trim)}. "
             "Waste, as a part of the bars: offcuts, saw cuts and lost ends.",
             "Lengths are those of the pieces as listed; allowances for welding, end machining or "
             "waste on site are not included.",
