@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import sys
 from collections.abc import Collection, Mapping, Sequence
 
 from sizing.brief.findings import Findings, KeyPath, listed, quoted, shown
@@ -105,4 +106,5 @@ def is_number(value: object, at_least: float = -math.inf, at_most: float = math.
     """Return whether ``value`` is a finite number (not a boolean) within bounds."""
     if isinstance(value, bool) or not isinstance(value, (int, float)):
         return False
-    return math.isfinite(value) and at_least <= value <= at_most
+    finite = abs(value) <= sys.float_info.max  # holds for whole numbers of any length, not for NaN
+    return finite and at_least <= value <= at_most

@@ -269,3 +269,10 @@ def test_a_sheet_that_fills_the_bounds_is_read_in_time(tmp_path: Path) -> None:
     path = tmp_path / "brief.xlsx"
     book.save(path)
     assert not accept(lambda: read_brief(path))
+
+
+def test_a_number_of_hundreds_of_digits_among_settings_is_told() -> None:
+    """A whole number beyond all floating-point numbers, where a rule expects one up to 1."""
+    tables = tomllib.loads(EVERY_KEY)
+    tables["combination_rule"]["psi"]["snow"] = [10**400, 0.2, 0.0]
+    assert not accept(lambda: brief_from_tables(tables, SOURCE))
