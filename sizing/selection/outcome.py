@@ -9,6 +9,8 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
+from sizing.selection.certificate import Certificate
+
 IntArray = NDArray[np.intp]
 
 Status = Literal["proven", "within gap", "stopped", "no adequate section"]
@@ -66,7 +68,8 @@ class Pick:
 
     ``bound`` is a valid lower bound on the objective of every feasible design of the problem as
     stated. ``analyses`` counts exact structural analyses. ``method`` names what proved or
-    bounded the answer, in words for the report.
+    bounded the answer, in words for the report. ``certificate``, where one was made, proves its own
+    bound (within rounding of ``bound``) to a checker that does not need the search.
     """
 
     status: Status
@@ -78,6 +81,7 @@ class Pick:
     method: str
     shortfall: Shortfall | None = None
     near_ties: tuple[NearTie, ...] = ()
+    certificate: Certificate | None = None
 
     @property
     def gap(self) -> float | None:
@@ -94,12 +98,14 @@ class Limits:
     """When to stop and whom to tell. ``stop`` is polled; True asks for the best design so far.
 
     ``gap``: relative gap at which the search may end. ``near_ties``: how many to list, within
-    ``near_tie_margin`` (relative) of the best.
+    ``near_tie_margin`` (relative) of the best. ``certificate``: prove in the form that can be
+    written down and checked, and report no bound that is not.
     """
 
     seconds: float = 600.0
     gap: float = 0.0
     near_ties: int = 0
     near_tie_margin: float = 0.01
+    certificate: bool = False
     report: Callable[[Progress], None] | None = None
     stop: Callable[[], bool] | None = None

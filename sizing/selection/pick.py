@@ -8,6 +8,7 @@ from dataclasses import replace
 from sizing.errors import SolverError
 from sizing.selection.analysis import DesignAnalysis, Evaluation
 from sizing.selection.bounds import Bound, prove
+from sizing.selection.certificate import Certificate
 from sizing.selection.determinate import solve_determinate
 from sizing.selection.determinate_forces import DeterminateForces, determinate_forces
 from sizing.selection.equilibrium_bound import equilibrium_bound
@@ -61,7 +62,12 @@ def _pick_determinate(
     if answer.best is None and answer.finished:
         least_bad = answer.least_bad or analysis.evaluate(stiffest(problem, problem.allowed))
         return _nothing(analysis, watch, f"{EXACT}: proven infeasible", explain(problem, least_bad))
-    return _conclude(analysis, watch, answer.best, answer.bound, EXACT)
+    if not watch.limits.certificate or answer.best is None:
+        return _conclude(analysis, watch, answer.best, answer.bound, EXACT)
+    proof = _prove(problem, answer.best, analysis, watch)
+    best = _better(analysis, answer.best, proof)
+    method = f"{EXACT}; bound: {proof.method}"
+    return _conclude(analysis, watch, best, proof.value, method, proof.certificate)
 
 
 def _pick_indeterminate(problem: SizingProblem, analysis: DesignAnalysis, watch: Watch) -> Pick:
@@ -77,22 +83,30 @@ def _pick_indeterminate(problem: SizingProblem, analysis: DesignAnalysis, watch:
         method = f"{BOUNDED}: proven infeasible by equilibrium alone"
         return _nothing(analysis, watch, method, explain(problem, least_bad))
     method = f"{SEARCHED}; bound: equilibrium and the resistance of each section"
-    if watch.stop() or _near(objective, bound, watch.limits.gap):
+    certify = watch.limits.certificate
+    if not certify and (watch.stop() or _near(objective, bound, watch.limits.gap)):
         return _conclude(analysis, watch, best, bound, method)
     proof = _prove(problem, best, analysis, watch)
-    if proof.sections is not None:
-        better = analysis.evaluate(proof.sections)
-        if better.feasible and (best is None or better.objective < best.objective):
-            best = better
+    best = _better(analysis, best, proof)
     if proof.status == "none feasible" and best is None:
         method = f"{proof.method}: proven infeasible"
         return _nothing(analysis, watch, method, explain(problem, least_bad))
     if best is None and not watch.stop():
         method = f"{SEARCHED}; that nothing fits is not proven"
         return _nothing(analysis, watch, method, explain(problem, least_bad))
-    if proof.value > bound:
+    if certify or proof.value > bound:
         bound, method = proof.value, f"{SEARCHED}; bound: {proof.method}"
-    return _conclude(analysis, watch, best, bound, method)
+    certificate = proof.certificate if bound <= proof.value else None
+    return _conclude(analysis, watch, best, bound, method, certificate)
+
+
+def _better(analysis: DesignAnalysis, best: Evaluation | None, proof: Bound) -> Evaluation | None:
+    """Return the design that the proof met on its way where it is feasible and cheaper."""
+    if proof.sections is None:
+        return best
+    found = analysis.evaluate(proof.sections)
+    cheaper = best is None or found.objective < best.objective
+    return found if found.feasible and cheaper else best
 
 
 def _prove(
@@ -116,7 +130,12 @@ def _near(objective: float | None, bound: float, gap: float) -> bool:
 
 
 def _conclude(
-    analysis: DesignAnalysis, watch: Watch, best: Evaluation | None, bound: float, method: str
+    analysis: DesignAnalysis,
+    watch: Watch,
+    best: Evaluation | None,
+    bound: float,
+    method: str,
+    certificate: Certificate | None = None,
 ) -> Pick:
     objective = None if best is None else best.objective
     known = bound if math.isfinite(bound) else None
@@ -130,7 +149,7 @@ def _conclude(
     if best is not None and wanted > 0 and not watch.asked():
         ties = near_ties(analysis, watch, best, wanted, watch.limits.near_tie_margin)
         if ties and ties[0].objective < best.objective * (1.0 - ROUNDING):
-            return _lighter_tie(analysis, watch, ties, bound, method)
+            return _lighter_tie(analysis, watch, ties, bound, method, certificate)
     watch.report("done", objective, known, analysis.count)
     return Pick(
         status=status,
@@ -141,11 +160,17 @@ def _conclude(
         seconds=watch.seconds,
         method=method,
         near_ties=ties,
+        certificate=certificate,
     )
 
 
 def _lighter_tie(
-    analysis: DesignAnalysis, watch: Watch, ties: tuple[NearTie, ...], bound: float, method: str
+    analysis: DesignAnalysis,
+    watch: Watch,
+    ties: tuple[NearTie, ...],
+    bound: float,
+    method: str,
+    certificate: Certificate | None,
 ) -> Pick:
     # The list of near ties has met a cheaper design: it becomes the pick.
     if bound > ties[0].objective * (1.0 + ROUNDING):
@@ -154,9 +179,8 @@ def _lighter_tie(
         )
     best = analysis.evaluate(ties[0].sections)
     limits = replace(watch.limits, near_ties=0)
-    return replace(
-        _conclude(analysis, watch.with_limits(limits), best, bound, method), near_ties=ties[1:]
-    )
+    concluded = _conclude(analysis, watch.with_limits(limits), best, bound, method, certificate)
+    return replace(concluded, near_ties=ties[1:])
 
 
 def _nothing(analysis: DesignAnalysis, watch: Watch, method: str, shortfall: Shortfall) -> Pick:
