@@ -4,15 +4,15 @@ All ways branch on section ranges. Energy cuts serve where movements govern, wha
 redundancy; redundant forces serve where strength governs and there are few of them. Which is
 better, redundant forces alone or both together, shows only in the run, so the two take turns,
 with growing shares and the greater one for the better bound, until one has finished; a lighter
-design that one meets is passed on. Nothing is reported that the checker of ``certificate.py`` has
-not accepted.
+design that one meets is passed on. Progress lines tell the working bound; an answer holds only what
+the checker of ``certificate.py`` has accepted.
 """
 
 from __future__ import annotations
 
 import time
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -50,12 +50,23 @@ CHECK_SHARE = 0.3
 """Part of the time that the checker may need after the search for the bound."""
 
 
+CHECK_AFTER_STOP = 30.0
+"""Seconds of (estimated) work whose check, about a third of it, still follows a stop request;
+after more work the unchecked bound is dropped, so that the program ends when asked to."""
+
+PROVEN = 3e-8
+"""Relative difference between objective and checked bound that is the margin of the proof."""
+
+WIDER_MARGIN = 1e-6
+"""Share by which the claim is lowered when rounding made the checker refuse it."""
+
+
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Bound:
     """A checked lower bound on the objective of every feasible design.
 
-    ``status``: ``proven`` (nothing lighter than ``objective`` by more than one part in a hundred
-    million), ``none feasible`` (proven that nothing passes) or ``open``. sections and objective
+    ``status``: ``proven`` (nothing lighter than ``objective`` by more than three parts in a
+    hundred million), ``none feasible`` (proven that nothing passes) or ``open``. sections and objective
     are the best design known, perhaps lighter than the one handed over. ``boxes`` counts the
     boxes of all ways, ``certificate`` is what the checker accepted (None: the bound is the sum of
     the cheapest sections).
@@ -112,9 +123,10 @@ def prove(
                 bound = max(other.branching.bound for other in ways)
                 report("proving", known, bound if np.isfinite(bound) else None, analysis.count)
             if way.branching.finished or _near(way.branching, limits.gap):
-                return _conclude(problem, ways, incumbent, objective)
+                return _conclude(problem, ways, incumbent, objective, hurried=False)
         turn *= GROWTH
-    return _conclude(problem, ways, incumbent, objective)
+    hurried = limits.stop is not None and limits.stop()
+    return _conclude(problem, ways, incumbent, objective, hurried=hurried)
 
 
 def cheapest(problem: SizingProblem) -> float:
@@ -176,25 +188,33 @@ def _conclude(
     ways: list[_Way],
     incumbent: IntArray | None,
     objective: float | None,
+    *,
+    hurried: bool,
 ) -> Bound:
     boxes = sum(way.branching.boxes for way in ways)
     best, least = incumbent, objective
     for way in ways:
         if way.branching.best is not None and (least is None or way.branching.objective < least):
             best, least = way.branching.best, way.branching.objective
-    order = sorted(ways, key=lambda way: (way.branching.finished, way.branching.bound))
     floor = cheapest(problem)
+    order = sorted(ways, key=lambda way: (way.branching.finished, way.branching.bound))
     for way in reversed(order):
-        certificate = way.branching.certificate()
-        if certificate.bound < floor and not way.branching.finished:
+        finished = way.branching.finished
+        if way.branching.bound < floor and not finished:
             continue
-        if not verify(problem, certificate).accepted:
+        if hurried and way.branching.boxes * way.milliseconds > 1e3 * CHECK_AFTER_STOP:
             continue
+        certificate = _checked(problem, way.branching)
+        if certificate is None:
+            continue
+        value = max(certificate.bound, floor)
         status = "open"
-        if way.branching.finished:
-            status = "none feasible" if best is None else "proven"
+        if finished and best is None:
+            status = "none feasible"
+        elif least is not None and least - value <= PROVEN * abs(least):
+            status = "proven"
         return Bound(
-            value=max(certificate.bound, floor),
+            value=value,
             status=status,
             sections=best,
             objective=least,
@@ -211,3 +231,13 @@ def _conclude(
         boxes=boxes,
         certificate=None,
     )
+
+
+def _checked(problem: SizingProblem, branching: RangeBranching) -> Certificate | None:
+    certificate = branching.certificate()
+    for margin in (0.0, WIDER_MARGIN):
+        claim = certificate.bound - margin * abs(branching.objective)
+        lowered = replace(certificate, bound=claim)
+        if verify(problem, lowered).accepted:
+            return lowered
+    return None

@@ -27,8 +27,8 @@ FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]
 BoolArray = NDArray[np.bool_]
 
-SAME = 1e-9
-"""Relative difference of two movements that counts as none when symmetric ones are sought. A
+SAME_DIGITS = 9
+"""Decimals to which movements and limits must agree for requirements to count as symmetric. A
 mistake would cost strength, never validity: a mean of requirements is a requirement."""
 
 PROBES = 3
@@ -100,11 +100,13 @@ class EnergyCuts:
         basic = _basic_requirements(self.problem, self.ladder, self.B)
         values = self._probe(basic)
         size = np.abs(values).max(axis=0, initial=1e-300)
-        rounded = np.round(values / size / SAME) * SAME
-        merged: dict[tuple[object, ...], list[int]] = {}
+        rounded = np.round(values / size, SAME_DIGITS) + 0.0
+        greatest = basic.limit.max(axis=1, keepdims=True, initial=1e-300)
+        shape = np.round(basic.limit / greatest, SAME_DIGITS)
+        merged: dict[tuple[int, int, bytes, bytes], list[int]] = {}
         for j in range(basic.group.size):
-            limit = tuple(np.round(basic.limit[j] / basic.limit[j].max(), 9))
-            key = (int(basic.group[j]), int(basic.factor[j]), tuple(rounded[j]), limit)
+            place = (int(basic.group[j]), int(basic.factor[j]))
+            key = (*place, rounded[j].tobytes(), shape[j].tobytes())
             merged.setdefault(key, []).append(j)
         places = [np.array(found) for found in merged.values()]
         first = np.array([found[0] for found in places], dtype=np.intp)

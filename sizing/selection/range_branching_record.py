@@ -77,7 +77,10 @@ class ProofRecord:
         )
         order = np.argsort(node, kind="stable")
         count = np.bincount(node.astype(np.intp), minlength=nodes)
-        lists = () if members_of is None else members_of
+        requirement = np.concatenate([np.zeros(0, dtype=np.intp), *(cut[3] for cut in self._cuts)])
+        # Only requirements in use are handed over.
+        used, requirement = np.unique(requirement, return_inverse=True)
+        lists = () if members_of is None else tuple(members_of[int(j)] for j in used)
         empty = np.zeros((0, self._groups))
         stiffness, flexibility, weight = (
             np.concatenate([empty, *(cut[k] for cut in self._cuts)]) for k in range(3)
@@ -90,7 +93,7 @@ class ProofRecord:
             cut_stiffness=stiffness,
             cut_flexibility=flexibility,
             cut_weight=weight,
-            cut_requirement=np.concatenate([none, *(cut[3] for cut in self._cuts)]),
+            cut_requirement=requirement.ravel().astype(np.intp),
             cut_scale=np.concatenate([np.zeros(0), *(cut[4] for cut in self._cuts)]),
             basis=basis,
             split_kind=np.array(self._kind, dtype=np.intp),
