@@ -9,6 +9,7 @@ import numpy as np
 from sizing.basis import basis_of, left_out
 from sizing.brief.model import Brief, Combination, Objective, Option
 from sizing.cautions import cautions_for
+from sizing.certificate_file import about, certificate_bytes
 from sizing.check import CheckedDesign, check_design
 from sizing.cutting import cutting_list
 from sizing.cutting_pieces import with_order_lengths
@@ -20,6 +21,7 @@ from sizing.results import (
     GroupResult,
     LighterResult,
     MemberResult,
+    NearTieResult,
     OptionResult,
     ReactionResult,
     SectionSummary,
@@ -33,11 +35,13 @@ OBJECTIVE_TOLERANCE = 1e-9
 """Relative agreement asked of the pick's objective and the mass the check adds up."""
 
 
-def describe(formulation: Formulation, sections: list[int], picked: Pick | None) -> OptionResult:
+def describe(
+    formulation: Formulation, sections: list[int], picked: Pick | None, version: str
+) -> OptionResult:
     """Check the design (catalogue row per group) and return everything that is issued of it.
 
-    ``picked`` is None for sections that were given. Raises :class:`DisagreementError` when the
-    check does not confirm the pick.
+    ``picked`` is None for sections that were given; ``version`` is the tool's.
+    Raises :class:`DisagreementError` when the check does not confirm the pick.
     """
     start = perf_counter()
     brief, option = formulation.brief, formulation.option
@@ -85,8 +89,44 @@ def describe(formulation: Formulation, sections: list[int], picked: Pick | None)
         carbon=_total("carbon", formulation, sections),
         biogenic=_biogenic(option, mass),
         volume=sum(m.area * m.length for m in checked.members),
+        near_ties=_near_ties(formulation, picked),
+        certificate=_certificate(formulation, sections, picked, version),
         cutting=cutting,
     )
+
+
+def _near_ties(formulation: Formulation, picked: Pick | None) -> tuple[NearTieResult, ...]:
+    """Check the other designs that the pick lists; only adequate ones are passed on."""
+    results = []
+    for tie in () if picked is None else picked.near_ties:
+        sections = tie.sections.tolist()
+        checked = check_design(
+            formulation.brief,
+            formulation.option,
+            formulation.standard,
+            formulation.catalogue,
+            sections,
+            work=False,
+        )
+        if checked.adequate:
+            results.append(
+                NearTieResult(
+                    designations=tuple(formulation.catalogue.designation[s] for s in sections),
+                    objective=tie.objective,
+                    mass=sum(m.mass for m in checked.members),
+                    utilisation=checked.utilisation,
+                )
+            )
+    return tuple(results)
+
+
+def _certificate(
+    formulation: Formulation, sections: list[int], picked: Pick | None, version: str
+) -> bytes:
+    if picked is None or picked.certificate is None:
+        return b""
+    facts = about(formulation, sections, picked.certificate.bound, version)
+    return certificate_bytes(picked.certificate, facts)
 
 
 def _total(objective: Objective, formulation: Formulation, sections: list[int]) -> float | None:

@@ -8,7 +8,7 @@ import sys
 from collections.abc import Iterator
 from contextlib import contextmanager
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated
+from typing import TYPE_CHECKING, Annotated, Any
 
 import typer
 
@@ -38,12 +38,14 @@ EXIT_CODES: dict[type[SizingError], int] = {
     DisagreementError: 6,
     OutputError: 7,
 }
-"""Exit codes: 0 adequate and issued; 1 the given sections are not adequate (documents written)."""
+"""Exit codes: 0 adequate and issued; 1 the given sections are not adequate (documents written);
+8 a certificate is refused; 130 interrupted."""
 
 ONE_THREAD = ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS")
 """Matrices here are small: several threads only get in each other's way and round differently."""
 
 NOT_ADEQUATE = 1
+REFUSED = 8
 INTERRUPTED = 130
 
 app = typer.Typer(
@@ -70,6 +72,10 @@ OptionNames = Annotated[
 TimeLimit = Annotated[
     float, typer.Option("--time-limit", metavar="SECONDS", min=0.1, help="Per option.")
 ]
+Since = Annotated[
+    Path | None,
+    typer.Option("--since", metavar="FILE", help="Earlier result.json; tell what changed."),
+]
 Gap = Annotated[
     float,
     typer.Option("--gap", metavar="PERCENT", min=0.0, help="Stop when the gap is this small."),
@@ -83,19 +89,58 @@ def pick_command(
     option: OptionNames = None,
     time_limit: TimeLimit = 600.0,
     gap: Gap = 0.0,
+    near_ties: Annotated[
+        int,
+        typer.Option("--near-ties", metavar="N", min=0, help="List N other designs within 1 %."),
+    ] = 0,
+    certificate: Annotated[
+        bool,
+        typer.Option("--certificate", help="Write the proof as a file, for sizing verify."),
+    ] = False,
+    since: Since = None,
 ) -> None:
     """Pick the lightest adequate section for every group and issue the documents."""
+    from dataclasses import replace
+
     from sizing.brief.toml_reader import read_brief
     from sizing.job import pick_job
 
+    if certificate and out is None:
+        raise typer.BadParameter("--certificate needs --out, the folder to write it to")
+    previous = _before_the_work(out, since)
     asked = read_brief(brief)
+
     with _stop_on_interrupt() as stop:
         result = pick_job(
             asked,
             options=option or (),
-            limits=lambda name: _limits(name, time_limit, gap / 100.0, stop),
+            limits=lambda name: replace(
+                _limits(name, time_limit, gap / 100.0, stop),
+                near_ties=near_ties,
+                certificate=certificate,
+            ),
         )
-    _issue(result, out)
+    _issue(result, out, previous)
+
+
+@app.command("verify")
+def verify_command(
+    brief: BriefPath,
+    certificate: Annotated[
+        Path, typer.Argument(metavar="CERTIFICATE", help="Written by sizing pick --certificate.")
+    ],
+) -> None:
+    """Check a certificate anew from the brief, without the search that made it."""
+    from sizing.brief.toml_reader import read_brief
+    from sizing.documents.verification_text import verification_lines
+    from sizing.verification import verify_certificate
+
+    asked = read_brief(brief)
+    found = verify_certificate(asked, certificate)
+    for line in verification_lines(asked, found):
+        typer.echo(line)
+    if not (found.accepted and found.adequate):
+        raise typer.Exit(REFUSED)
 
 
 @app.command("compare")
@@ -110,6 +155,7 @@ def compare_command(
     from sizing.documents.side_by_side import print_comparison
     from sizing.job import compare_job
 
+    _before_the_work(out)
     asked = read_brief(brief)
     with _stop_on_interrupt() as stop:
         result = compare_job(
@@ -219,20 +265,40 @@ def start_command(
     typer.echo(f"next: sizing check {file}, then sizing pick {file} --out DIR")
 
 
-def _issue(result: JobResult, out: Path | None) -> None:
+def _before_the_work(out: Path | None, since: Path | None = None) -> dict[str, Any] | None:
+    """Refuse a folder that cannot take documents, and read the earlier result, if any."""
+    if out is not None:
+        from sizing.documents.issue import refuse_impossible
+
+        refuse_impossible(out)
+    if since is None:
+        return None
+    from sizing.documents.changes import read_previous
+
+    return read_previous(since)
+
+
+def _issue(result: JobResult, out: Path | None, previous: dict[str, Any] | None = None) -> None:
     from sizing.documents.screen import print_result
 
-    written = _write(result, out)
+    written = _write(result, out, previous)
     print_result(result)
+    if previous is not None:
+        from sizing.documents.changes import changes_lines
+
+        for line in changes_lines(previous, result):
+            typer.echo(line)
     _tell(written)
 
 
-def _write(result: JobResult, out: Path | None) -> tuple[Path, ...]:
+def _write(
+    result: JobResult, out: Path | None, previous: dict[str, Any] | None = None
+) -> tuple[Path, ...]:
     if out is None:
         return ()
     from sizing.documents.issue import write_documents
 
-    return write_documents(result, out)
+    return write_documents(result, out, previous=previous)
 
 
 def _tell(written: tuple[Path, ...]) -> None:

@@ -42,7 +42,7 @@ def pick_job(
         picked = pick(formulation.problem, limits(formulation.option.name))
         if picked.sections is None:
             raise NoAdequateSectionError(why_none(formulation, picked))
-        results.append(describe(formulation, picked.sections.tolist(), picked))
+        results.append(describe(formulation, picked.sections.tolist(), picked, tool_version()))
     return JobResult(brief=brief, version=tool_version(), options=tuple(results))
 
 
@@ -81,7 +81,7 @@ def check_job(
     for option in _chosen(brief, options or [o.name for o in brief.options if o.name in sections]):
         formulation = formulate(brief, option)
         rows = _rows_of(formulation, sections.get(option.name, {}))
-        results.append(describe(formulation, rows, None))
+        results.append(describe(formulation, rows, None, tool_version()))
     return JobResult(brief=brief, version=tool_version(), options=tuple(results))
 
 

@@ -113,6 +113,19 @@ class LighterResult:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class NearTieResult:
+    """Another adequate design, nearly as good: ``designations`` per group in brief order.
+
+    ``objective`` is of what was minimised; mass in kg; ``utilisation`` the greatest of all checks.
+    """
+
+    designations: tuple[str, ...]
+    objective: float
+    mass: float
+    utilisation: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class DeflectionResult:
     """One limit at one node in one combination: ``value`` and ``limit`` in m."""
 
@@ -243,7 +256,8 @@ class OptionResult:
     ``status`` is the pick's (``proven``, ``within gap``, ``stopped``) or ``checked`` for given
     sections. ``objective_text`` names what was minimised. ``cost`` (in ``currency``), ``carbon``
     (kgCO2e, modules A1 to A3) and ``biogenic`` (kgCO2e, negative) are None where the brief gives
-    no rates; ``volume`` of all members is in m³. ``displacements`` are
+    no rates; ``volume`` of all members is in m³. ``certificate`` is the proof as a file's bytes
+    (see :mod:`sizing.certificate_file`), empty when none was asked for. ``displacements`` are
     (combination, node, component) in m as nested tuples in brief order.
     """
 
@@ -281,6 +295,8 @@ class OptionResult:
     carbon: float | None = None
     biogenic: float | None = None
     volume: float = 0.0
+    near_ties: tuple[NearTieResult, ...] = ()
+    certificate: bytes = b""
     cutting: tuple[CuttingResult, ...] = ()
 
     @property

@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import date
+from typing import Any
 
+from sizing.documents.changes import changes_table
 from sizing.documents.cutting_table import cutting_tables, with_order_length
 from sizing.documents.force_tables import (
     combinations_table,
@@ -19,6 +22,7 @@ from sizing.documents.job_tables import (
     loads_table,
     nodes_table,
 )
+from sizing.documents.near_ties_table import near_ties_tables
 from sizing.documents.option_tables import (
     groups_table,
     members_table,
@@ -41,14 +45,20 @@ class JobTables:
     by_option: tuple[tuple[OptionResult, tuple[Table, ...]], ...]
 
 
-def job_tables(job: JobResult, issued: date) -> JobTables:
-    """Return every table of ``job`` in the order in which it is printed."""
+def job_tables(
+    job: JobResult, issued: date, previous: Mapping[str, Any] | None = None
+) -> JobTables:
+    """Return every table of ``job`` in the order in which it is printed.
+
+    ``previous`` is an earlier result (see :mod:`sizing.documents.changes`).
+    """
     units = shown_units(job.brief.units)
     return JobTables(
         units=units,
         shared=(
             cover_table(job, issued),
             summary_table(job, units),
+            *(() if previous is None else (changes_table(previous, job),)),
             nodes_table(job.brief, units),
             load_totals_table(job.brief, units),
             loads_table(job.brief, units),
@@ -65,6 +75,7 @@ def option_tables(job: JobResult, option: OptionResult, units: ShownUnits) -> tu
         sections_table(option, units),
         *cutting_tables(option, units),
         groups_table(brief, option, units),
+        *near_ties_tables(brief, option, units),
         combinations_table(brief, option, units),
         deflections_table(brief, option, units),
         reactions_table(brief, option, units),
