@@ -96,7 +96,8 @@ def test_a_folder_is_no_brief(tmp_path: Path) -> None:
         ),
         (
             b"\x00\x01\x02",
-            "line 1, column 1: found a line that is neither key = value nor [table]: <0000><0001><0002>; "
+            "line 1, column 1: found a line that is neither key = value nor [table]: "
+            "<0000><0001><0002>; "
             'expected TOML, such as key = 1.5 or key = "text" or [table].',
         ),
     ],
