@@ -4,13 +4,15 @@ from __future__ import annotations
 
 import os
 import secrets
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from contextlib import suppress
 from dataclasses import dataclass
 from datetime import UTC, date, datetime
 from pathlib import Path
+from typing import Any
 
 from sizing.documents.drawing import draw_options, svg_bytes
+from sizing.documents.dxf_drawing import dxf_bytes
 from sizing.documents.report import report_bytes
 from sizing.documents.result_json import json_bytes
 from sizing.documents.workbook import workbook_bytes
@@ -18,35 +20,54 @@ from sizing.errors import OutputError
 from sizing.results import JobResult
 
 WORKBOOK, DRAWING, RESULT, REPORT = "schedule.xlsx", "truss.svg", "result.json", "report.html"
-DOCUMENTS = (WORKBOOK, REPORT, DRAWING, RESULT)
+LINES = "truss.dxf"
+DOCUMENTS = (WORKBOOK, REPORT, DRAWING, LINES, RESULT)
 """File names of the documents, in the order in which they are named to the user."""
+
+CERTIFICATE = "certificate-{}.npz"
+"""File name of the proof of one option, where it was asked for (option names are fit for files)."""
 
 
 def write_documents(
-    result: JobResult, folder: Path, *, issued: date | None = None
+    result: JobResult,
+    folder: Path,
+    *,
+    issued: date | None = None,
+    previous: Mapping[str, Any] | None = None,
 ) -> tuple[Path, ...]:
     """Write all documents of ``result`` into ``folder`` and return their paths.
 
     ``folder`` is made where it is missing. ``issued`` is the date on the documents; by default
-    :func:`issue_date`. Everything is rendered before the first byte is written, each file is
-    written beside its place and then renamed, and a failed rename undoes the earlier ones, so
-    that a failure leaves the folder as it was. (Only a power cut between two renames can leave
-    old files aside, as hidden files that end in ``.old``.)
+    :func:`issue_date`. ``previous`` is an earlier result.json as read by
+    :func:`sizing.documents.changes.read_previous`; what changed since is then told.
+
+    Everything is rendered before the first byte is written, each file is written beside its
+    place and then renamed, and a failed rename undoes the earlier ones, so that a failure leaves
+    the folder as it was. (Only a power cut between two renames can leave old files aside, as
+    hidden files that end in ``.old``.)
 
     Raises :class:`OutputError` with file and reason.
     """
-    contents = render_documents(result, issued or issue_date())
+    contents = render_documents(result, issued or issue_date(), previous)
     return replace_all(folder, contents)
 
 
-def render_documents(result: JobResult, issued: date) -> dict[str, bytes]:
+def render_documents(
+    result: JobResult, issued: date, previous: Mapping[str, Any] | None = None
+) -> dict[str, bytes]:
     """Return the content of every document by file name."""
     drawings = draw_options(result)
     return {
-        WORKBOOK: workbook_bytes(result, issued),
-        REPORT: report_bytes(result, issued, drawings),
+        WORKBOOK: workbook_bytes(result, issued, previous),
+        REPORT: report_bytes(result, issued, drawings, previous),
         DRAWING: svg_bytes(result, drawings),
+        LINES: dxf_bytes(result),
         RESULT: json_bytes(result),
+        **{
+            CERTIFICATE.format(option.option): option.certificate
+            for option in result.options
+            if option.certificate
+        },
     }
 
 
@@ -66,6 +87,31 @@ def issue_date() -> date:
             f"the environment variable SOURCE_DATE_EPOCH is {epoch!r}; expected whole seconds "
             "since 1970, such as 1767225600. Unset it to date documents with today"
         ) from None
+
+
+def refuse_impossible(folder: Path) -> None:
+    """Raise :class:`OutputError` where no document could be written into ``folder``.
+
+    Asked before a pick that may take minutes. The folder is made and a hidden file written and
+    removed in it, since nothing short of writing tells whether writing works; what was made for
+    it is removed again, so that a pick without an answer leaves no empty folder behind.
+    """
+    made = _make(folder)
+    probe = folder / f".{secrets.token_hex(6)}.new"
+    try:
+        _write(probe, b"")
+        for name in DOCUMENTS:
+            if (folder / name).is_dir():
+                raise IsADirectoryError(None, f"a folder stands where {name} belongs")
+    except OSError as failure:
+        raise OutputError(
+            f"{folder}: cannot be used as folder for documents: {failure.strerror or failure}. "
+            "Name a folder that can be written to"
+        ) from failure
+    finally:
+        with suppress(OSError):  # never written, or already gone
+            probe.unlink(missing_ok=True)
+        _remove(made)
 
 
 @dataclass(slots=True)

@@ -6,7 +6,7 @@ import base64
 import hashlib
 import json
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from datetime import date
 from importlib.resources import files
@@ -62,12 +62,18 @@ class _Worked:
     met: bool
 
 
-def report_bytes(job: JobResult, issued: date, drawings: Sequence[Xml.Element]) -> bytes:
+def report_bytes(
+    job: JobResult,
+    issued: date,
+    drawings: Sequence[Xml.Element],
+    previous: Mapping[str, Any] | None = None,
+) -> bytes:
     """Return report.html for ``job`` as UTF-8, with ``drawings`` inside and no outside links.
 
-    ``drawings`` are those of :func:`sizing.documents.drawing.draw_options`.
+    ``drawings`` are those of :func:`sizing.documents.drawing.draw_options`; ``previous`` is an
+    earlier result, since which the page tells what changed.
     """
-    tables = job_tables(job, issued)
+    tables = job_tables(job, issued, previous)
     cover, *shared = tables.shared
     script = files("sizing.documents").joinpath(SCRIPT).read_text(encoding="utf-8")
     page: str = _template().render(

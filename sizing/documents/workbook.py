@@ -13,7 +13,7 @@ import zipfile
 from collections.abc import Iterable, Mapping
 from datetime import date
 from io import BytesIO
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from sizing.documents import recheck_sheet
 from sizing.documents.plain_text import shortened, visible
@@ -56,11 +56,13 @@ _FORMULA_CELL = re.compile(rb'(<c r="([A-Z]+[0-9]+)"[^>]*><f>[^<]*</f>)<v\s*(?:/
 _ILLEGAL_IN_SHEET_NAME = re.compile(r"[\[\]:*?/\\]")
 
 
-def workbook_bytes(job: JobResult, issued: date) -> bytes:
-    """Return schedule.xlsx for ``job``."""
+def workbook_bytes(
+    job: JobResult, issued: date, previous: Mapping[str, Any] | None = None
+) -> bytes:
+    """Return schedule.xlsx for ``job``, with what changed since ``previous`` where given."""
     from openpyxl import Workbook
 
-    tables = job_tables(job, issued)
+    tables = job_tables(job, issued, previous)
     book = Workbook()
     book.remove(book.active)
     looks = Looks(book)

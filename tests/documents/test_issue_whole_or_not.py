@@ -9,7 +9,13 @@ from pathlib import Path
 import pytest
 
 from sizing.documents import issue
-from sizing.documents.issue import DOCUMENTS, issue_date, replace_all, write_documents
+from sizing.documents.issue import (
+    DOCUMENTS,
+    issue_date,
+    refuse_impossible,
+    replace_all,
+    write_documents,
+)
 from sizing.errors import OutputError
 
 ISSUED = date(2026, 3, 1)
@@ -20,7 +26,7 @@ def _content(folder: Path) -> dict[str, bytes]:
 
 
 def test_all_documents_stand_in_the_folder(girder_job, tmp_path):
-    """The folder is made where missing and holds the four documents and nothing else."""
+    """The folder is made where missing and holds the documents and nothing else."""
     folder = tmp_path / "issue" / "a"
     paths = write_documents(girder_job, folder, issued=ISSUED)
     assert [p.name for p in paths] == list(DOCUMENTS)
@@ -29,7 +35,7 @@ def test_all_documents_stand_in_the_folder(girder_job, tmp_path):
 
 
 def test_writing_again_replaces_and_leaves_others_alone(girder_job, tower_job, tmp_path):
-    """A second issue replaces the four documents and no other file."""
+    """A second issue replaces the documents and no other file."""
     write_documents(girder_job, tmp_path, issued=ISSUED)
     first = _content(tmp_path)
     (tmp_path / "notes.txt").write_text("mine")
@@ -157,3 +163,21 @@ def test_the_date_comes_from_source_date_epoch(monkeypatch):
             issue_date()
     monkeypatch.delenv("SOURCE_DATE_EPOCH")
     assert isinstance(issue_date(), date)
+
+
+def test_an_impossible_folder_is_refused_before_the_work(tmp_path):
+    """A file in the way, a folder where a document belongs, no such name: told at once."""
+    (tmp_path / "file").write_text("x", encoding="utf-8")
+    (tmp_path / "blocked" / "report.html").mkdir(parents=True)
+    for folder in (tmp_path / "file", tmp_path / "file" / "below", tmp_path / "blocked",
+                   tmp_path / ("x" * 300), tmp_path / "nul\0byte"):  # fmt: skip
+        with pytest.raises(OutputError, match="cannot be used as folder"):
+            refuse_impossible(folder)
+    assert [p.name for p in (tmp_path / "blocked").iterdir()] == ["report.html"]
+
+
+def test_asking_leaves_no_trace(tmp_path):
+    """A folder that will do is not made before there is something to put in it."""
+    refuse_impossible(tmp_path / "new" / "below")
+    refuse_impossible(tmp_path)
+    assert list(tmp_path.iterdir()) == []
