@@ -15,6 +15,7 @@ from xml.etree import ElementTree as Xml
 
 from sizing.documents.cutting_drawing import cutting_drawing
 from sizing.documents.drawing import svg_text
+from sizing.documents.hand_check import hand_checks
 from sizing.documents.plain_text import visible
 from sizing.documents.quantities import Quantity, ShownUnits
 from sizing.documents.rows import job_tables
@@ -87,6 +88,7 @@ def report_bytes(
                 "adequate": option.adequate,
                 "drawing": svg_text(drawing),
                 **_states(job, option, tables.units),
+                **_by_hand(job, option, tables.units),
                 "bars": "" if bars is None else svg_text(bars),
                 "worked": [
                     _worked(check, tables.units, _caps(job, option).get(check.mark, 1.0))
@@ -123,6 +125,11 @@ def _states(job: JobResult, option: OptionResult, units: ShownUnits) -> dict[str
         "marks": [visible(m.mark) for m in option.members],
         "state": _script_data(state_data(brief, option, units)),
     }
+
+
+def _by_hand(job: JobResult, option: OptionResult, units: ShownUnits) -> dict[str, Any]:
+    checks, why_not = hand_checks(job.brief, option, units)
+    return {"by_hand": checks, "why_not_by_hand": why_not}
 
 
 def _script_data(data: dict[str, Any]) -> str:

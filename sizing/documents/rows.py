@@ -9,6 +9,7 @@ from typing import Any
 
 from sizing.documents.changes import changes_table
 from sizing.documents.cutting_table import cutting_tables, with_order_length
+from sizing.documents.envelope_table import envelope_table
 from sizing.documents.force_tables import (
     combinations_table,
     deflections_table,
@@ -79,6 +80,7 @@ def option_tables(job: JobResult, option: OptionResult, units: ShownUnits) -> tu
         combinations_table(brief, option, units),
         deflections_table(brief, option, units),
         reactions_table(brief, option, units),
+        envelope_table(option, units),
         joint_forces_table(brief, option, units),
         restraint_table(brief, option, units),
         basis_table(job, option, units),

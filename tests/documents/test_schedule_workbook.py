@@ -18,8 +18,8 @@ from sizing.documents.workbook import LONGEST_SHEET_NAME, workbook_bytes
 ISSUED = date(2026, 3, 1)
 SHEETS = [
     "Cover", "Summary", "Nodes", "Load totals", "Loads", "Members", "Sections", "Groups",
-    "Combinations", "Deflections", "Reactions", "Joint forces", "Restraint", "Recheck", "Basis",
-    "Cautions",
+    "Combinations", "Deflections", "Reactions", "Envelope", "Joint forces",
+    "Restraint", "Recheck", "Basis", "Cautions",
 ]  # fmt: skip
 RECHECK = SHEETS.index("Recheck") + 1
 
@@ -180,7 +180,7 @@ def test_same_result_same_bytes(girder_job, tower_job):
 def test_sheet_names_are_legal_and_unique(hostile_job):
     """Whatever options are called, sheet names obey the rules of spreadsheet programs."""
     names = _book(hostile_job).sheetnames
-    assert len(names) == 5 + 11 * 8
+    assert len(names) == 5 + 12 * 8
     assert len({n.lower() for n in names}) == len(names)
     for name in names:
         assert len(name.encode("utf-16-le")) // 2 <= LONGEST_SHEET_NAME
