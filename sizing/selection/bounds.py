@@ -4,8 +4,8 @@ All ways branch on section ranges. Energy cuts serve where movements govern, wha
 redundancy; redundant forces serve where strength governs and there are few of them. Which is
 better, redundant forces alone or both together, shows only in the run, so the two take turns,
 with growing shares and the greater one for the better bound, until one has finished; a lighter
-design that one meets is passed on. Progress lines tell the working bound; an answer holds only what
-the checker of ``certificate.py`` has accepted.
+design that one meets is passed on. Progress lines tell the working bound; an answer holds only
+what the checker of ``certificate.py`` has accepted.
 """
 
 from __future__ import annotations
@@ -43,7 +43,7 @@ FIRST_TURN = 200.0
 GROWTH = 1.5
 """How the turns grow, so that the better way is never kept waiting for more than its own time."""
 
-TRAILING_SHARE = 0.25
+TRAILING_SHARE = 0.1
 """Share of a turn for the way with the lesser bound: it may still overtake, at little cost."""
 
 CHECK_SHARE = 0.3
@@ -66,10 +66,10 @@ class Bound:
     """A checked lower bound on the objective of every feasible design.
 
     ``status``: ``proven`` (nothing lighter than ``objective`` by more than three parts in a
-    hundred million), ``none feasible`` (proven that nothing passes) or ``open``. sections and objective
-    are the best design known, perhaps lighter than the one handed over. ``boxes`` counts the
-    boxes of all ways, ``certificate`` is what the checker accepted (None: the bound is the sum of
-    the cheapest sections).
+    hundred million), ``none feasible`` (proven that nothing passes) or ``open``. sections and
+    objective are the best design known, perhaps lighter than the one handed over. ``boxes``
+    counts the boxes of all ways; ``certificate`` is what the checker accepted, None where the
+    bound is the sum of the cheapest sections.
     """
 
     value: float

@@ -39,10 +39,10 @@ class BranchingRules:
 
     energy: bool
     forces: bool
-    new_cuts: int = 3
+    new_cuts: int = 2
     kept_cuts: int = 4
     movements: int = 3
-    steps: int = 25
+    steps: int = 15
     rounds: int = 2
     towards_incumbent: float = 0.5
 
