@@ -32,6 +32,7 @@ def cautions_for(
         *_reversal(members),
         *_absent_actions(brief),
         *_self_weight(brief, option),
+        *_no_creep(brief, standard),
         *brief.cautions,
         *standard.cautions(),
         *ALWAYS,
@@ -92,6 +93,20 @@ def _absent_actions(brief: Brief) -> list[str]:
     if "wind" in kinds and not upward:
         lines.append("No wind case lifts the truss; confirm that uplift cannot govern.")
     return lines
+
+
+def _no_creep(brief: Brief, standard: Standard) -> list[str]:
+    """Say which deflection limits leave out the creep that the material has."""
+    elastic = [
+        limit.name for limit in brief.deflection_limits if limit.component == "instantaneous"
+    ]
+    if standard.material.creep == 0.0 or not elastic:
+        return []
+    return [
+        f"Deflections without creep in {', '.join(elastic)}: under lasting load this material "
+        f"deflects {1.0 + standard.material.creep:.2f} times as far; write component = "
+        '"final" in the limit, or in a second one, to check that.'
+    ]
 
 
 def _self_weight(brief: Brief, option: Option) -> list[str]:

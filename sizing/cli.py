@@ -364,8 +364,16 @@ def main() -> None:
         _explain(error)
         raise SystemExit(EXIT_CODES[type(error)]) from None
     except KeyboardInterrupt:
-        sys.stderr.write("interrupted; nothing was written\n")
+        _say_interrupted()
         raise SystemExit(INTERRUPTED) from None
+    except SystemExit as ended:
+        if ended.code == INTERRUPTED:  # typer ends with this code, without a word
+            _say_interrupted()
+        raise
+
+
+def _say_interrupted() -> None:
+    sys.stderr.write("interrupted; nothing was written\n")
 
 
 def _explain(error: SizingError) -> None:

@@ -162,3 +162,19 @@ def test_help_names_the_commands_and_defers_to_an_engineer():
     assert "licensed" in done.stdout
     for command in ("pick", "check", "compare", "catalogue"):
         assert command in done.stdout
+
+
+def test_interrupt_while_reading_says_that_nothing_was_written(monkeypatch, capsys):
+    """Ctrl-C before the pick has begun ends with code 130 and a sentence, not in silence."""
+    from sizing import cli
+    from sizing.brief import toml_reader
+
+    def interrupted(_path):
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr(toml_reader, "read_brief", interrupted)
+    monkeypatch.setattr(sys, "argv", ["sizing", "check", str(EXAMPLES / "mast.toml")])
+    with pytest.raises(SystemExit) as ended:
+        cli.main()
+    assert ended.value.code == 130
+    assert capsys.readouterr().err.endswith("interrupted; nothing was written\n")

@@ -234,13 +234,17 @@ def _refuse_twice(entries: Sequence[Entry], findings: Findings) -> None:
 
 
 def _with_equal_sides(entry: Entry, findings: Findings) -> Entry:
-    """Squares, tubes and angles given by one side have the other one alike."""
-    alike = entry.family in ALIKE_ON_BOTH_AXES or (
-        entry.family == "angle" and "width" not in findings.heads
-    )
-    if not alike or "depth" not in entry.numbers or "width" in entry.numbers:
+    """Squares, tubes and angles given by one side, under h or b, have the other one alike."""
+    given = [side for side in ("depth", "width") if side in entry.numbers]
+    if len(given) != 1:
         return entry
-    return replace(entry, numbers={**entry.numbers, "width": entry.numbers["depth"]})
+    other = "width" if given == ["depth"] else "depth"
+    alike = entry.family in ALIKE_ON_BOTH_AXES or (
+        entry.family == "angle" and other not in findings.heads
+    )
+    if not alike:
+        return entry
+    return replace(entry, numbers={**entry.numbers, other: entry.numbers[given[0]]})
 
 
 def _settle(entry: Entry, density: float | str | None, findings: Findings) -> Checked | None:

@@ -48,7 +48,13 @@ def write_documents(
 
     Raises :class:`OutputError` with file and reason.
     """
-    contents = render_documents(result, issued or issue_date(), previous)
+    try:
+        contents = render_documents(result, issued or issue_date(), previous)
+    except OSError as failure:  # openpyxl puts its sheets into temporary files first
+        raise OutputError(
+            f"the documents cannot be prepared: {failure.strerror or failure}. Free space in the "
+            "folder for temporary files (the environment variable TMPDIR names another one)"
+        ) from failure
     return replace_all(folder, contents)
 
 

@@ -222,3 +222,17 @@ def test_a_file_beside_the_brief_may_lie_in_a_folder(tmp_path: Path) -> None:
     assert catalogue.source.name == "stock/mine.csv"
     assert catalogue.source.path == (tmp_path / "stock" / "mine.csv").resolve()
     assert len(catalogue.source.sha256) == 64
+
+
+def test_squares_given_by_b_alone_have_their_depth(tmp_path: Path) -> None:
+    """Squares listed under b as under h have both sides, which the section class needs."""
+    section = geometry.hot_finished_hollow(depth=0.12, width=0.12, wall=0.005)
+    for head in ("b", "h"):
+        catalogue = read(
+            tmp_path,
+            f"Bezeichnung;A [cm2];G [kg/m];I [cm4];{head} [mm];t [mm]\n"
+            f"QRO 120x5;{german(section.area * 1e4, 2)};{german(section.area * 7850, 2)};"
+            f"{german(section.i_major * 1e8, 1)};120;5\n",
+        )
+        assert catalogue.depth[0] == pytest.approx(0.12)
+        assert catalogue.width[0] == pytest.approx(0.12)

@@ -181,3 +181,15 @@ def test_asking_leaves_no_trace(tmp_path):
     refuse_impossible(tmp_path / "new" / "below")
     refuse_impossible(tmp_path)
     assert list(tmp_path.iterdir()) == []
+
+
+def test_a_disk_too_full_to_prepare_is_told_in_words(girder_job, tmp_path, monkeypatch):
+    """A full disk while the documents are prepared is a failure to write, and changes nothing."""
+
+    def full(*_args, **_kwargs):
+        raise OSError(28, "No space left on device")
+
+    monkeypatch.setattr(issue, "workbook_bytes", full)
+    with pytest.raises(OutputError, match="prepared: No space left"):
+        write_documents(girder_job, tmp_path / "out", issued=ISSUED)
+    assert not (tmp_path / "out").exists()
