@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from sizing.brief.model import Brief
 from sizing.documents.plain_text import visible
@@ -104,7 +104,7 @@ def recheck_blocks(brief: Brief, option: OptionResult) -> tuple[RecheckBlock, ..
     return tuple(
         RecheckBlock(
             sense="tension" if key[0] == "tension" else "compression",
-            lines=_lines(found[0][0]),
+            lines=_shared([_lines(steps) for steps, _ in found]),
             rows=tuple(row for _, row in found),
         )
         for key, found in blocks.items()
@@ -140,6 +140,19 @@ def _row(member: MemberResult, extreme: Extreme, cap: float) -> RecheckRow:
         resistance=extreme.resistance,
         utilisation=extreme.utilisation,
     )
+
+
+def _shared(checks: list[tuple[RecheckLine, ...]]) -> tuple[RecheckLine, ...]:
+    """Return the columns of a block, in words that hold for all of its rows."""
+    columns = []
+    for lines in zip(*checks, strict=True):
+        words = {
+            name: values.pop() if len(values) == 1 else ""
+            for name in ("expression", "clause", "meaning")
+            for values in [{str(getattr(line, name)) for line in lines}]
+        }
+        columns.append(replace(lines[0], **words))
+    return tuple(columns)
 
 
 def _form(steps: tuple[Step, ...]) -> tuple[object, ...]:

@@ -30,7 +30,7 @@ LINE_WIDTH, WIDEST_LINE = 11.5, 26.0
 CHARACTERS_A_LINE, ROW = 1.25, 12.0
 """Characters of a heading per column unit of width, and points of a line of it."""
 
-COLUMNS_A_PAGE = 19
+COLUMNS_A_PAGE = 14
 """Columns that stay legible on one large page beside the key columns."""
 
 AGREES = 1e-6
@@ -58,11 +58,13 @@ def fill_recheck(
     looks: Looks,
     without: str,
 ) -> dict[str, float]:
-    """Write the sheet and return what its formulas give, by cell.
+    """Write the sheet, each block on a page of its own, and return what its formulas give.
 
     Programs that show a file without working it out (previews) need those values. ``without``
     are the marks of members that no resistance can be worked for.
     """
+    from openpyxl.worksheet.pagebreak import Break
+
     put(sheet, 1, 1, TITLE).font = looks.title
     notes = [
         above,
@@ -78,10 +80,12 @@ def fill_recheck(
         notes.append("No member carries a force.")
     for i, line in enumerate(notes, 2):
         put(sheet, i, 1, line).font = looks.quiet
-    row = len(notes) + 3
+    row = first = len(notes) + 3
     found: dict[str, float] = {}
     widths: dict[int, float] = dict(enumerate(WIDTHS, 1))
     for block in blocks:
+        if row > first:
+            sheet.row_breaks.append(Break(id=row - 1))
         row = _Writer(sheet=sheet, block=block, units=units, looks=looks).write(row, found, widths)
     for column, width in widths.items():
         sheet.column_dimensions[_letter(column)].width = width
@@ -246,7 +250,11 @@ def _line(line: RecheckLine, units: SheetUnits) -> _Line:
     places = {"N": 1, "m": 1, "m²": 1, "m2": 1, "m³": 1, "m⁴": 0, "m4": 0, "Pa": 2}
     us = {"N": 3, "m": 3, "m²": 4, "m2": 4, "m³": 3, "m⁴": 4, "m4": 4, "Pa": 3}
     kept = (places if units.force == "N" else us).get(line.unit, 5)
-    rule = f"= {line.expression}" if line.formula is not None else line.meaning or line.expression
+    rule = (
+        f"= {line.expression}"
+        if line.formula is not None
+        else line.meaning or line.expression or "input"
+    )
     return _Line(
         symbol=line.symbol,
         unit=units.name(line.unit),

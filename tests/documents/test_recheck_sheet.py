@@ -6,6 +6,7 @@ import io
 import math
 import shutil
 import subprocess
+from dataclasses import replace
 from datetime import date
 from pathlib import Path
 
@@ -147,3 +148,19 @@ def test_checks_of_one_form_share_a_block(girder_job):
     members = girder_job.options[0].members
     assert len(blocks[0].rows) == sum(m.tension is not None for m in members)
     assert len(blocks[1].rows) == sum(m.compression is not None for m in members)
+
+
+def test_heads_hold_for_every_row_below(girder_job):
+    """Where members differ in an entry's origin, the head does not quote the first one's."""
+    option = girder_job.options[0]
+    first = next(i for i, m in enumerate(option.members) if m.tension)
+    member = option.members[first]
+    steps = tuple(
+        replace(line, meaning="of another tube") if line.symbol == "A" else line
+        for line in member.tension.steps
+    )
+    odd = replace(member, tension=replace(member.tension, steps=steps))
+    members = (*option.members[:first], odd, *option.members[first + 1 :])
+    blocks = recheck_blocks(girder_job.brief, replace(option, members=members))
+    assert len(blocks) == 2
+    assert [line.meaning for line in blocks[0].lines][:2] == ["", "yield strength"]
