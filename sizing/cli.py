@@ -215,7 +215,8 @@ def check_command(
     if sections is None:
         _outline(asked, out)
         return
-    result = check_job(asked, read_sections(sections, asked), options=option or ())
+    given = read_sections(sections, asked)
+    result = check_job(asked, given, options=option or (), given_in=sections.name)
     _issue(result, out)
     if not all(answer.adequate for answer in result.options):
         raise typer.Exit(NOT_ADEQUATE)

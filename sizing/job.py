@@ -70,17 +70,23 @@ def compare_job(brief: Brief, *, limits: Callable[[str], Limits] = lambda _: Lim
 
 
 def check_job(
-    brief: Brief, sections: Mapping[str, Mapping[str, str]], options: Sequence[str] = ()
+    brief: Brief,
+    sections: Mapping[str, Mapping[str, str]],
+    options: Sequence[str] = (),
+    *,
+    given_in: str | None = None,
 ) -> JobResult:
     """Check given designations per option and group, without picking.
 
+    ``given_in`` names the file of the sections, for messages; by default that of the brief.
     Raises :class:`InputError` for a group without a section or a designation that the
     catalogue does not hold.
     """
+    file = brief.source.name if given_in is None else given_in
     results = []
     for option in _chosen(brief, options or [o.name for o in brief.options if o.name in sections]):
         formulation = formulate(brief, option)
-        rows = _rows_of(formulation, sections.get(option.name, {}))
+        rows = _rows_of(formulation, sections.get(option.name, {}), file)
         results.append(describe(formulation, rows, None, tool_version()))
     return JobResult(brief=brief, version=tool_version(), options=tuple(results))
 
@@ -109,7 +115,7 @@ def _nearest(name: str, known: list[str]) -> str:
     return f"Did you mean {close[0]!r}?" if close else ""
 
 
-def _rows_of(formulation: Formulation, given: Mapping[str, str]) -> list[int]:
+def _rows_of(formulation: Formulation, given: Mapping[str, str], file: str) -> list[int]:
     designations = formulation.catalogue.designation
     index = {name: row for row, name in enumerate(designations)}
     problems, rows = [], []
@@ -120,7 +126,7 @@ def _rows_of(formulation: Formulation, given: Mapping[str, str]) -> list[int]:
             continue
         problems.append(
             Problem(
-                file=formulation.brief.source.name,
+                file=file,
                 place=f"sections.{formulation.option.name}.{group.name}",
                 found="no section" if name is None else repr(name),
                 expected=f"a designation of catalogue {formulation.catalogue.name}",

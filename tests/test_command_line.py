@@ -37,12 +37,13 @@ def market_hall(tmp_path_factory):
 
 
 def test_pick_issues_every_document_and_says_so(market_hall):
-    """`sizing pick` ends with 0, prints the table and writes the four documents."""
+    """`sizing pick` ends with 0, prints the table and writes the five documents."""
     done, folder = market_hall
     assert done.returncode == 0, done.stderr
     assert {p.name for p in folder.iterdir()} == {
         "schedule.xlsx",
         "truss.svg",
+        "truss.dxf",
         "result.json",
         "report.html",
     }
@@ -178,3 +179,14 @@ def test_interrupt_while_reading_says_that_nothing_was_written(monkeypatch, caps
         cli.main()
     assert ended.value.code == 130
     assert capsys.readouterr().err.endswith("interrupted; nothing was written\n")
+
+
+def test_a_section_that_the_catalogue_lacks_is_placed_in_its_own_file(tmp_path, market_hall):
+    """A wrong designation is told with the file that holds it, and the nearest one."""
+    data = json.loads((market_hall[1] / "result.json").read_text(encoding="utf-8"))
+    data["options"]["steel"]["sections"]["verticals-end"] = "SHS 80x80x33"
+    (tmp_path / "earlier.json").write_text(json.dumps(data), encoding="utf-8")
+    done = sizing("check", EXAMPLES / "market-hall.toml", "--sections", tmp_path / "earlier.json")
+    assert done.returncode == 2
+    assert "earlier.json: sections.steel.verticals-end: found 'SHS 80x80x33'" in done.stderr
+    assert "Did you mean 'SHS 80x80x3'?" in done.stderr
