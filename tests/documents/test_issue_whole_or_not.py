@@ -7,7 +7,9 @@ from datetime import date
 from pathlib import Path
 
 import pytest
+from typer.testing import CliRunner
 
+from sizing.cli import app
 from sizing.documents import issue
 from sizing.documents.issue import (
     DOCUMENTS,
@@ -193,3 +195,14 @@ def test_a_disk_too_full_to_prepare_is_told_in_words(girder_job, tmp_path, monke
     with pytest.raises(OutputError, match="prepared: No space left"):
         write_documents(girder_job, tmp_path / "out", issued=ISSUED)
     assert not (tmp_path / "out").exists()
+
+
+@pytest.mark.parametrize("command", ["pick", "compare"])
+def test_the_command_refuses_the_folder_before_it_picks(command, tmp_path, monkeypatch):
+    """No search of minutes for documents that can be written nowhere."""
+    (tmp_path / "file").write_text("x", encoding="utf-8")
+    for name in ("pick_job", "compare_job"):
+        monkeypatch.setattr(f"sizing.job.{name}", lambda *_, **__: pytest.fail("it picked"))
+    example = Path(__file__).parents[2] / "examples" / "market-hall.toml"
+    outcome = CliRunner().invoke(app, [command, str(example), "--out", str(tmp_path / "file")])
+    assert isinstance(outcome.exception, OutputError)
