@@ -68,11 +68,15 @@ def _reversal(members: tuple[MemberResult, ...]) -> list[str]:
         force, worst = min(pairs, key=lambda pair: pair[0])
         combination = worst.compression.combination if worst.compression else ""
         lines.append(
-            f"Group {group}: {len(found)} members change between tension and compression; the "
+            f"Group {group}: {_members(len(found))} between tension and compression; the "
             f"greatest compression is {abs(force) / 1e3:.1f} kN in {worst.mark}, combination "
             f"{combination}, with restraint out of plane every {worst.out_of_plane:.2f} m assumed."
         )
     return lines
+
+
+def _members(number: int) -> str:
+    return "1 member changes" if number == 1 else f"{number} members change"
 
 
 def _absent_actions(brief: Brief) -> list[str]:

@@ -39,12 +39,13 @@ EXIT_CODES: dict[type[SizingError], int] = {
     OutputError: 7,
 }
 """Exit codes: 0 adequate and issued; 1 the given sections are not adequate (documents written);
-8 a certificate is refused; 130 interrupted."""
+8 a certificate is refused; 9 an error nobody foresaw; 130 interrupted."""
 
 ONE_THREAD = ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS")
 """Matrices here are small: several threads only get in each other's way and round differently."""
 
 NOT_ADEQUATE = 1
+UNFORESEEN = 9
 REFUSED = 8
 INTERRUPTED = 130
 
@@ -115,12 +116,12 @@ def pick_command(
             asked,
             options=option or (),
             limits=lambda name: replace(
-                _limits(name, time_limit, gap / 100.0, stop),
+                _limits(f"{name}, {asked.minimise}", time_limit, gap / 100.0, stop),
                 near_ties=near_ties,
                 certificate=certificate,
             ),
         )
-    _issue(result, out, previous)
+        _issue(result, out, previous)
 
 
 @app.command("verify")
@@ -159,11 +160,12 @@ def compare_command(
     asked = read_brief(brief)
     with _stop_on_interrupt() as stop:
         result = compare_job(
-            asked, limits=lambda name: _limits(name, time_limit, gap / 100.0, stop)
+            asked,
+            limits=lambda name: _limits(f"{name}, {asked.minimise}", time_limit, gap / 100.0, stop),
         )
-    written = _write(result, out)
-    print_comparison(result)
-    _tell(written)
+        written = _write(result, out)
+        print_comparison(result)
+        _tell(written)
 
 
 @app.command("catalogue")
@@ -367,6 +369,14 @@ def main() -> None:
     except KeyboardInterrupt:
         _say_interrupted()
         raise SystemExit(INTERRUPTED) from None
+    except Exception as error:  # the last resort: no other code may pose as 1
+        if os.environ.get("SIZING_TRACE"):
+            raise
+        sys.stderr.write(
+            f"an error that should not happen: {type(error).__name__}: {error}\n"
+            "Nothing more was written. Please report it; SIZING_TRACE=1 shows where it arose.\n"
+        )
+        raise SystemExit(UNFORESEEN) from None
     except SystemExit as ended:
         if ended.code == INTERRUPTED:  # typer ends with this code, without a word
             _say_interrupted()

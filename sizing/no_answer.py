@@ -7,6 +7,12 @@ import numpy as np
 from sizing.formulation import Formulation
 from sizing.selection.outcome import Pick, Shortfall
 
+PROVEN = "proven infeasible"
+"""Words in the method of a pick that tell a proof from a search that found nothing."""
+
+MOST_REASONS = 3
+"""Reasons named; sections of one catalogue are mostly left out for the same one or two."""
+
 
 def why_none(formulation: Formulation, picked: Pick) -> str:
     """Say which member, which combination, and how far the best section falls short."""
@@ -16,16 +22,20 @@ def why_none(formulation: Formulation, picked: Pick) -> str:
             f"option {option}: stopped after {picked.seconds:.0f} s before any adequate design was "
             "found; allow more time"
         )
-    if fall is None:
-        return f"option {option}: no choice of sections passes every check"
-    return f"option {option}: {_shortfall_text(formulation, fall)}"
+    found = (
+        "no choice of sections passes every check"
+        if fall is None
+        else _shortfall_text(formulation, fall)
+    )
+    proven = "" if PROVEN in picked.method else " (that nothing else fits is not proven)"
+    return f"option {option}: {found}{proven}"
 
 
 def _shortfall_text(formulation: Formulation, fall: Shortfall) -> str:
     brief, catalogue = formulation.brief, formulation.catalogue
     section = f" with {catalogue.designation[fall.section]}" if fall.section is not None else ""
     how_far = (
-        "no section has any resistance there"
+        f"no section has any resistance there{_reasons(formulation, fall)}"
         if np.isinf(fall.utilisation)
         else f"utilisation is at best {fall.utilisation:.3f}"
     )
@@ -47,3 +57,17 @@ def _shortfall_text(formulation: Formulation, fall: Shortfall) -> str:
             "closer restraint"
         )
     return "no choice of sections passes every check"
+
+
+def _reasons(formulation: Formulation, fall: Shortfall) -> str:
+    """Return why sections were left out for the member that has no resistance at all."""
+    if fall.member is None:
+        return ""
+    table = formulation.table
+    notes, counts = np.unique(table.notes[fall.member], return_counts=True)
+    named = [
+        f"{table.reasons[note]} ({count} sections)"
+        for note, count in sorted(zip(notes, counts, strict=True), key=lambda pair: -pair[1])
+        if table.reasons[note]
+    ]
+    return f" ({'; '.join(named[:MOST_REASONS])})" if named else ""

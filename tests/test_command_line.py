@@ -190,3 +190,33 @@ def test_a_section_that_the_catalogue_lacks_is_placed_in_its_own_file(tmp_path, 
     assert done.returncode == 2
     assert "earlier.json: sections.steel.verticals-end: found 'SHS 80x80x33'" in done.stderr
     assert "Did you mean 'SHS 80x80x3'?" in done.stderr
+
+
+def test_an_error_that_nobody_foresaw_has_a_code_of_its_own(tmp_path):
+    """A bug ends with code 9 and one line, never with the code of an inadequate design."""
+    broken = (
+        "import sizing.brief.toml_reader as reader\n"
+        "def fail(path):\n    raise RuntimeError('out of the blue')\n"
+        "reader.read_brief = fail\n"
+        "from sizing.cli import main\nmain()"
+    )
+    done = subprocess.run(
+        [sys.executable, "-c", broken, "pick", str(EXAMPLES / "market-hall.toml")],
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert done.returncode == 9
+    assert "RuntimeError: out of the blue" in done.stderr
+    assert "Traceback" not in done.stderr
+
+
+def test_missing_dimensions_are_named_where_nothing_fits(tmp_path):
+    """A catalogue without wall thickness has no compression resistance; the message says why."""
+    rows = "designation,family,product,area [cm2],mass [kg/m],I major [cm4],I minor [cm4]\n"
+    rows += "SHS 200x200x10,SHS,EN 10210-2,74.9,58.8,4471,4471\n"
+    (tmp_path / "thin.csv").write_text(rows, encoding="utf-8")
+    brief = changed(tmp_path, ("square-hollow-sections", "thin.csv"))
+    done = sizing("pick", brief)
+    assert done.returncode == 4
+    assert "no section has any resistance there (" in done.stderr

@@ -64,6 +64,8 @@ def _headline(result: JobResult, option: OptionResult) -> list[str]:
     if option.bound is not None:
         least = objective_text(result, units, option.bound)
         facts.append(f"lower bound {least} ({result.brief.minimise})")
+    elif option.status != "checked":
+        facts.append("lower bound unknown")
     if option.gap is not None:
         facts.append(f"gap {100.0 * option.gap:.2f} %")
     name = shortened(visible(option.option), LONGEST_NAME)
