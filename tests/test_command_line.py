@@ -212,9 +212,9 @@ def test_an_error_that_nobody_foresaw_has_a_code_of_its_own(tmp_path):
 
 
 def test_missing_dimensions_are_named_where_nothing_fits(tmp_path):
-    """A catalogue without wall thickness has no compression resistance; the message says why."""
-    rows = "designation,family,product,area [cm2],mass [kg/m],I major [cm4],I minor [cm4]\n"
-    rows += "SHS 200x200x10,SHS,EN 10210-2,74.9,58.8,4471,4471\n"
+    """Walls whose class cannot be told have no compression resistance; the message says why."""
+    rows = "designation,family,product,area [cm2],mass [kg/m],I major [cm4],I minor [cm4],t [mm]\n"
+    rows += "RHS 200x100x10,RHS,EN 10210-2,54.9,43.1,2664,869,10\n"
     (tmp_path / "thin.csv").write_text(rows, encoding="utf-8")
     brief = changed(tmp_path, ("square-hollow-sections", "thin.csv"))
     done = sizing("pick", brief)
