@@ -42,6 +42,11 @@ class Quantity:
         return replace(self, places=max(self.places, wanted))
 
 
+VOLUME = Quantity(unit="m³", scale=1.0, places=3)
+VOLUME_US = Quantity(unit="ft³", scale=0.3048**-3, places=2)
+"""The international foot is 0.3048 m by definition (1959 agreement)."""
+
+
 @dataclass(frozen=True, kw_only=True, slots=True)
 class ShownUnits:
     """The units of one document set. ``movement`` is for deflections."""
@@ -55,6 +60,7 @@ class ShownUnits:
     second_moment: Quantity
     stress: Quantity
     surface: Quantity
+    volume: Quantity
     us: bool
 
 
@@ -71,6 +77,7 @@ def shown_units(units: Units) -> ShownUnits:
         second_moment=_quantity(display.second_moment),
         stress=_quantity(display.stress),
         surface=_quantity(display.surface),
+        volume=VOLUME_US if is_us(units) else VOLUME,
         us=is_us(units),
     )
 

@@ -30,11 +30,13 @@ def summary_table(job: JobResult, units: ShownUnits) -> Table:
             style="number",
             places=units.surface.places,
         ),
+        Column(head="Volume", unit=units.volume.unit, style="number", places=units.volume.places),
         Column(head="Minimised"),
         Column(head="Total minimised", unit=total.unit, style="number", places=total.places),
         Column(head="Lower bound", unit=total.unit, style="number", places=total.places),
         Column(head="Gap", unit="%", style="number", places=2),
         Column(head="Greatest utilisation", style="ratio"),
+        Column(head="Governed by", style="prose"),
         Column(head="Deflection utilisation", style="ratio"),
         Column(head="Different sections", style="whole"),
         Column(head="All checks met"),
@@ -72,16 +74,27 @@ def _row(
         units.mass.of(option.mass),
         *(of(option) for of in (read for _, read in _price_columns(job))),
         units.surface.of(surface) if math.isfinite(surface) else "not given",
+        units.volume.of(option.volume),
         visible(option.objective_text),
         total.of(option.objective),
         total.of(option.bound) if option.bound is not None else "none",
         100.0 * option.gap if option.gap is not None else "unknown",
         ratio(option.utilisation),
+        _governing(option),
         ratio(deflection) if deflection is not None else "no limit set",
         len({s.designation for s in option.sections}),
         "yes" if option.adequate else "NO",
         f"{status_text(option)} ({visible(option.method)})",
     )
+
+
+def _governing(option: OptionResult) -> str:
+    """Return the check with the greatest utilisation of all, and where it stands."""
+    group = max(option.groups, key=lambda g: g.utilisation, default=None)
+    limit = max(option.deflections, key=lambda d: d.utilisation, default=None)
+    if limit is not None and (group is None or limit.utilisation > group.utilisation):
+        return visible(f"deflection {limit.limit_name} at {limit.node}")
+    return "" if group is None else visible(f"{group.governed_by} at {group.governing_member}")
 
 
 def _cost(option: OptionResult) -> Cell:
