@@ -100,9 +100,21 @@ def _absent_actions(brief: Brief) -> list[str]:
 
 
 def _no_creep(brief: Brief, standard: Standard) -> list[str]:
-    """Say which deflection limits leave out the creep that the material has."""
+    """Say which deflection limits leave out the creep that the material has.
+
+    A limit beside which another one holds the same nodes and direction with creep is complete.
+    """
+    limits = brief.deflection_limits
+    with_creep = {
+        (frozenset(limit.nodes), limit.direction, limit.relative_to)
+        for limit in limits
+        if limit.component != "instantaneous"
+    }
     elastic = [
-        limit.name for limit in brief.deflection_limits if limit.component == "instantaneous"
+        limit.name
+        for limit in limits
+        if limit.component == "instantaneous"
+        and (frozenset(limit.nodes), limit.direction, limit.relative_to) not in with_creep
     ]
     if standard.material.creep == 0.0 or not elastic:
         return []

@@ -67,3 +67,24 @@ def test_elastic_limits_of_timber_are_cautioned_against(
     told = [line for line in answer.cautions if "without creep in sag" in line]
     assert bool(told) is warned
     assert not warned or "1.80 times" in told[0]
+
+
+@pytest.mark.parametrize(("node", "warned"), [("B", False), ("A1", True)])
+def test_a_final_limit_of_the_same_movement_silences_the_caution(
+    tmp_path: Path, node: str, warned: bool
+) -> None:
+    """The elastic limit is complete beside a final one of its nodes, not beside one of others."""
+    final = f"""
+[[deflection_limits]]
+name = "with creep"
+nodes = ["{node}"]
+direction = "y"
+limit = "span/200"
+component = "final"
+
+[options.one]
+"""
+    text = BRIEF.replace("COMPONENT", "instantaneous").replace("\n[options.one]\n", final) + TIMBER
+    (tmp_path / "brief.toml").write_text(text, encoding="utf-8")
+    answer = pick_job(read_brief(tmp_path / "brief.toml")).options[0]
+    assert any("without creep in sag" in line for line in answer.cautions) is warned

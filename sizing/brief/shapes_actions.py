@@ -45,8 +45,12 @@ OPTIONS: dict[str, dict[str, Any]] = {
     },
     "timber": {
         "standard": "EN 1995-1-1", "grade": "GL24h", "catalogue": "glulam", "service_class": 2,
+        "net_section_factor": 0.6,
     },
 }  # fmt: skip
+
+FINAL_SAG = "span/200"
+"""Within the span/150 to span/300 that EN 1995-1-1 Table 7.2 gives for the final deflection."""
 
 
 def kilo(value: float, unit: str) -> str:
@@ -126,8 +130,24 @@ def add_options(sketch: Sketch, steel_catalogue: str = "") -> None:
     sketch.comments[("options", "steel")] = (
         "Each option is one complete answer; delete those that are not wanted."
     )
+    sketch.comments[("options", "timber")] = (
+        "net_section_factor: what slots, dowels or bolts leave of a section in tension. Plausible "
+        "for joints with slotted-in plates; replace it once the joints are drawn."
+    )
 
 
-def add_sag(sketch: Sketch, nodes: list[str], limit: str = "span/250", **more: Any) -> None:
-    """Add the deflection limit of the nodes named."""
-    sketch.limits.append({"name": "sag", "nodes": nodes, "limit": limit} | more)
+def add_sag(
+    sketch: Sketch, nodes: list[str], limit: str = "span/250", final: str = FINAL_SAG, **more: Any
+) -> None:
+    """Add the limits of the elastic and of the final sag of the nodes named."""
+    add_limit(sketch, {"name": "sag", "nodes": nodes, "limit": limit} | more, final)
+
+
+def add_limit(sketch: Sketch, elastic: dict[str, Any], final: str) -> None:
+    """Add an elastic deflection limit, and ``final`` as the limit of the same with creep."""
+    if not sketch.limits:
+        sketch.comments[("deflection_limits", "1")] = (
+            "With the creep of timber. Steel does not creep: for it both movements are the same."
+        )
+    with_creep = {"name": f"{elastic['name']}, final", "limit": final, "component": "final"}
+    sketch.limits += [elastic, elastic | with_creep]

@@ -13,6 +13,7 @@ from typing import Any
 
 from sizing.brief.shapes_actions import (
     ROOF_PARAMETERS,
+    add_limit,
     add_options,
     add_roof_actions,
     add_sag,
@@ -178,9 +179,8 @@ def scissors(values: Values) -> Sketch:
     sketch.group("ties-upper", ["A1-B1", "A1-B3"])
     sketch.group("post", ["A1-B2"])
     _finish(sketch, values, "A0-B1..B3-A2", "A0..A2")
-    sketch.limits.append(
-        {"name": "spread of the bearing", "nodes": ["A2"], "direction": "x", "limit": "40 mm"}
-    )
+    spread = {"name": "spread of the bearing", "nodes": ["A2"], "direction": "x", "limit": "40 mm"}
+    add_limit(sketch, spread, "40 mm")
     return sketch
 
 

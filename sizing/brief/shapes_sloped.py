@@ -129,6 +129,7 @@ def canopy(values: Values) -> Sketch:
     upright: list[Pair] = [(("A", k), ("B", k)) for k in range(1, n)]
     sketch.group("verticals", pairs(upright))
     add_roof_actions(sketch, values, f"B0..B{n}")
-    add_sag(sketch, [f"B{n}"], f"{round(1000 * reach / 125):d} mm")
+    elastic, final = (f"{round(1000 * reach / part):d} mm" for part in (125, 100))
+    add_sag(sketch, [f"B{n}"], elastic, final)  # twice what a span may, EN 1995-1-1 Table 7.2
     add_options(sketch)
     return sketch

@@ -13,6 +13,7 @@ from sizing.brief.shapes_actions import (
     SNOW_OTHER_SIDE,
     WIND_LIFT,
     WIND_PRESS,
+    add_limit,
     add_options,
     add_sag,
     add_self_weight,
@@ -99,9 +100,10 @@ def _tower(words: str, values: Values, legs: str) -> Sketch:
     _tower_actions(sketch, values, legs)
     head = [f"{leg}{bays}" for leg in legs]
     for axis in "xy":
-        sketch.limits.append(
-            {"name": f"sway along {axis}", "nodes": head, "direction": axis, "limit": "height/100"}
-        )
+        sway = {
+            "name": f"sway along {axis}", "nodes": head, "direction": axis, "limit": "height/100",
+        }  # fmt: skip
+        add_limit(sketch, sway, "height/100")
     add_options(sketch, "circular-hollow-sections")
     return sketch
 

@@ -243,6 +243,24 @@ def test_a_shape_is_picked_and_checked_as_it_is(name: str, option: str) -> None:
     assert {group.name for group in found.groups} == {group.name for group in brief.groups}
 
 
+@pytest.mark.parametrize("name", SHAPES)
+def test_timber_has_a_final_limit_beside_each_elastic_one(name: str) -> None:
+    """Each movement is limited with and without creep (EN 1995-1-1 7.2), and joints take area."""
+    brief = shaped(name)
+    held = {
+        component: [(x.nodes, x.direction) for x in brief.deflection_limits
+                    if x.component == component]
+        for component in ("instantaneous", "final")
+    }  # fmt: skip
+    assert held["final"] == held["instantaneous"] != []
+    factors = {option.name: option.net_section_factor for option in brief.options}
+    assert factors == {"steel": 1.0, "timber": 0.6}
+    # Table 7.2: final span/150 to span/300; half of that divisor for a cantilever
+    for limit in brief.deflection_limits:
+        if limit.component == "final" and limit.limit_text.startswith("span/"):
+            assert 150 <= float(limit.limit_text.removeprefix("span/")) <= 300
+
+
 @pytest.mark.parametrize(
     ("name", "given", "messages"),
     [
