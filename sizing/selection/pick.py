@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import itertools
 import math
+from collections.abc import Callable
 from dataclasses import replace
 
 from sizing.errors import SolverError
@@ -15,7 +17,8 @@ from sizing.selection.equilibrium_bound import equilibrium_bound
 from sizing.selection.near_ties import near_ties
 from sizing.selection.outcome import Limits, NearTie, Pick, Shortfall, Status
 from sizing.selection.problem import SizingProblem
-from sizing.selection.search import run_search
+from sizing.selection.record import Record
+from sizing.selection.search import search_stages
 from sizing.selection.shortfall import explain, none_allowed
 from sizing.selection.starts import stiffest
 from sizing.selection.watch import Watch
@@ -26,6 +29,18 @@ checker of the bounds claims up to 2e-8 less than it finds."""
 
 SEARCH_SHARE = 0.5
 """Part of the time that the search may take; the rest is for the proof."""
+
+FIRST_BATCHES = 50
+"""Batches of boxes of the first short proof: a second or two, enough for most small trusses."""
+
+MORE_BATCHES = 5
+"""How much longer the next short proof is: little is lost with each that does not close."""
+
+MOST_BATCHES = 250
+"""Batches of the longest short proof; a truss that needs more has its search ended first."""
+
+TURN_SHARE = 0.2
+"""Most of the time for one short proof; the batches end it long before, and repeatably."""
 
 WHOLE_SHARE = 0.02
 """Part of the time for the equilibrium bound with whole sections."""
@@ -71,7 +86,11 @@ def _pick_determinate(
 
 
 def _pick_indeterminate(problem: SizingProblem, analysis: DesignAnalysis, watch: Watch) -> Pick:
-    record = run_search(analysis, problem.allowed, watch.part(SEARCH_SHARE))
+    record = Record(analysis, watch.part(SEARCH_SHARE))
+    proof = _search_and_prove(problem, record, watch)
+    if proof is not None:
+        method = f"{SEARCHED}; bound: {proof.method}"
+        return _conclude(analysis, watch, record.best, proof.value, method, proof.certificate)
     best = record.best
     objective = None if best is None else best.objective
     watch.report("bounding", objective, None, analysis.count)
@@ -100,6 +119,24 @@ def _pick_indeterminate(problem: SizingProblem, analysis: DesignAnalysis, watch:
     return _conclude(analysis, watch, best, bound, method, certificate)
 
 
+def _search_and_prove(problem: SizingProblem, record: Record, watch: Watch) -> Bound | None:
+    """Search in stages with a short proof between two; return the proof that closed, if one did.
+
+    Each hands its lighter designs to the other.
+    """
+    batches = FIRST_BATCHES
+    for _ in search_stages(record, problem.allowed):
+        if record.best is None or batches > MOST_BATCHES or watch.stop():
+            continue
+        proof = _prove(problem, record.best, record.analysis, watch, batches)
+        batches *= MORE_BATCHES
+        if proof.sections is not None:
+            record.try_design(proof.sections)
+        if _near(record.best.objective, proof.value, watch.limits.gap):
+            return proof
+    return None
+
+
 def _better(analysis: DesignAnalysis, best: Evaluation | None, proof: Bound) -> Evaluation | None:
     """Return the design that the proof met on its way where it is feasible and cheaper."""
     if proof.sections is None:
@@ -110,17 +147,31 @@ def _better(analysis: DesignAnalysis, best: Evaluation | None, proof: Bound) -> 
 
 
 def _prove(
-    problem: SizingProblem, best: Evaluation | None, analysis: DesignAnalysis, watch: Watch
+    problem: SizingProblem,
+    best: Evaluation | None,
+    analysis: DesignAnalysis,
+    watch: Watch,
+    batches: int | None = None,
 ) -> Bound:
-    # The one place where proofs for indeterminate trusses come in.
+    """Prove in the time left, or with about ``batches`` batches of boxes in part of it."""
+    limits = replace(watch.limits, seconds=watch.left)
+    if batches is not None:
+        seconds = min(TURN_SHARE * watch.limits.seconds, watch.left)
+        limits = replace(limits, seconds=seconds, stop=_after(batches, watch))
     return prove(
         problem,
         None if best is None else best.sections,
         None if best is None else best.objective,
         analysis,
-        replace(watch.limits, seconds=watch.left),
+        limits,
         watch.report,
     )
+
+
+def _after(batches: int, watch: Watch) -> Callable[[], bool]:
+    # The proof asks once before every batch: a count ends it where a clock would not repeat.
+    asked = itertools.count(1)
+    return lambda: next(asked) > batches or watch.asked()
 
 
 def _near(objective: float | None, bound: float, gap: float) -> bool:

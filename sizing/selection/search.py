@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -20,6 +22,18 @@ BoolArray = NDArray[np.bool_]
 def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Record:
     """Search for a cheap feasible design over the pairs (g, s) in ``mask``."""
     record = Record(analysis, watch)
+    for _ in search_stages(record, mask):
+        pass
+    return record
+
+
+def search_stages(record: Record, mask: BoolArray) -> Iterator[None]:
+    """Search as :func:`run_search` does, pausing after each stage.
+
+    The first stage takes a few analyses and is seldom far off. Between two stages ``record`` may
+    be given designs found elsewhere: the search goes on from the best.
+    """
+    analysis, watch = record.analysis, record.watch
     mask = efficient_sections(analysis.problem, mask)
     choices = Choices.of(mask)
     strong = record.try_design(stiffest(analysis.problem, mask))
@@ -28,7 +42,9 @@ def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Recor
     # A design sized by its forces is the better start where strength governs, a mixture of
     # sections where movements do; which is which shows only in the result.
     descend(record, choices, light)
+    yield
     _improve(record, choices, None)
+    yield
     for start in (strong, light, strengthened(analysis, mask, light)):
         if watch.stop():
             break
@@ -38,7 +54,7 @@ def run_search(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Recor
         if found is not None:
             descend(record, choices, found)
         _improve(record, choices, before)
-    return record
+        yield
 
 
 def _improve(record: Record, choices: Choices, before: Evaluation | None) -> None:
