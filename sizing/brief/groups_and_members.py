@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from typing import Any
 
@@ -57,8 +58,12 @@ def read_groups(
     quantities: Quantities,
     *,
     present: bool,
+    reserved: Sequence[str] = (),
 ) -> GroupTable:
-    """Return groups and members, members in the order of the groups and of their lists."""
+    """Return groups and members, members in the order of the groups and of their lists.
+
+    Marks keep clear of the names of nodes and of those in ``reserved``.
+    """
     names = Names(findings, "group", raw, complete=present)
     if present and not raw:
         findings.add(("groups",), found="an empty table", expected="at least one group of members")
@@ -92,7 +97,7 @@ def read_groups(
     if len(seen) > MOST_MEMBERS:
         findings.add(("groups",), found=f"{len(seen)} members", expected=f"at most {MOST_MEMBERS}")
         return GroupTable(groups=(), members=(), names=names, whole=False)
-    members = _make_members(drafts, nodes)
+    members = _make_members(drafts, nodes, reserved)
     groups, members = _make_groups(drafts, members, nodes, names, findings, quantities)
     return GroupTable(groups=tuple(groups), members=tuple(members), names=names, whole=whole)
 
@@ -137,8 +142,9 @@ def _read_members(
     return ends, all_good
 
 
-def _make_members(drafts: list[_Draft], nodes: NodeTable) -> list[Member]:
-    marks = member_marks([d.name for d in drafts], [len(d.ends) for d in drafts])
+def _make_members(drafts: list[_Draft], nodes: NodeTable, reserved: Sequence[str]) -> list[Member]:
+    names = [*(node.name for node in nodes.nodes), *reserved]
+    marks = member_marks([d.name for d in drafts], [len(d.ends) for d in drafts], names)
     return [
         Member(
             name=f"{nodes.nodes[start].name}-{nodes.nodes[end].name}",

@@ -3,32 +3,52 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from itertools import chain, count
 
 
-def mark_prefixes(groups: Sequence[str]) -> tuple[str, ...]:
+RULE_PREFIXES = frozenset("US")
+"""Combination rules name what they make U1, U2, ... and S1, S2, ...; no member is called so."""
+
+
+def mark_prefixes(
+    groups: Sequence[str], sizes: Sequence[int] | None = None, reserved: Iterable[str] = ()
+) -> tuple[str, ...]:
     """Return one distinct prefix per group name: ``bottom-chord`` gives ``BC``.
 
     A name that ends in a number keeps it, followed by a point (``diagonals-2`` gives ``D2.``).
     Where two names share their initials, the later takes more letters of its first word, and
-    at last a further letter.
+    at last a further letter. So does one whose marks up to its number of members (``sizes``)
+    would meet a name in ``reserved`` (of a node or a combination), in capitals or not.
     """
-    taken: set[str] = set()
+    names = frozenset(name.casefold() for name in reserved)
+    taken = set(RULE_PREFIXES)
     prefixes = []
-    for name in groups:
-        prefix = next(p for p in _candidates(name) if p not in taken)
+    for name, size in zip(groups, sizes or [0] * len(groups), strict=True):
+        prefix = next(
+            p for p in _candidates(name) if p not in taken and names.isdisjoint(_marks(p, size))
+        )
         taken.add(prefix)
         prefixes.append(prefix)
     return tuple(prefixes)
 
 
-def member_marks(groups: Sequence[str], sizes: Sequence[int]) -> tuple[tuple[str, ...], ...]:
-    """Return the marks of the members of each group, numbered from 1 in the group's order."""
+def member_marks(
+    groups: Sequence[str], sizes: Sequence[int], reserved: Iterable[str] = ()
+) -> tuple[tuple[str, ...], ...]:
+    """Return the marks of the members of each group, numbered from 1 in the group's order.
+
+    None of them is a name in ``reserved``; see :func:`mark_prefixes`.
+    """
     return tuple(
         tuple(f"{prefix}{number}" for number in range(1, size + 1))
-        for prefix, size in zip(mark_prefixes(groups), sizes, strict=True)
+        for prefix, size in zip(mark_prefixes(groups, sizes, reserved), sizes, strict=True)
     )
+
+
+def _marks(prefix: str, size: int) -> Iterator[str]:
+    """Yield the marks as they are compared with other names."""
+    return (f"{prefix}{number}".casefold() for number in range(1, size + 1))
 
 
 def _candidates(name: str) -> Iterator[str]:

@@ -90,7 +90,14 @@ def brief_from_tables(
     before = len(findings)
     supports = read_supports(raw.supports, nodes, findings, present=present("supports"))
     supports_known = nodes.whole and bool(supports) and len(findings) == before
-    groups = read_groups(raw.groups, nodes, findings, quantities, present=present("groups"))
+    groups = read_groups(
+        raw.groups,
+        nodes,
+        findings,
+        quantities,
+        present=present("groups"),
+        reserved=_combination_names(raw.combinations),
+    )
     check_truss(nodes, groups, findings)
     cases = read_cases(
         raw.cases,
@@ -136,6 +143,12 @@ def brief_from_tables(
         cautions=tuple(findings.cautions),
         stock=stock,
     )
+
+
+def _combination_names(raw: list[Any]) -> list[str]:
+    """Return the names of the combinations written out, before these are read."""
+    entries = [entry for entry in raw if isinstance(entry, dict)]
+    return [entry["name"] for entry in entries if isinstance(entry.get("name"), str)]
 
 
 def document_order(tables: dict[str, Any]) -> Callable[[KeyPath], tuple[int, ...]]:
