@@ -6,7 +6,6 @@ import re
 from collections.abc import Iterable, Iterator, Sequence
 from itertools import chain, count
 
-
 RULE_PREFIXES = frozenset("US")
 """Combination rules name what they make U1, U2, ... and S1, S2, ...; no member is called so."""
 
