@@ -21,7 +21,7 @@ from sizing.brief.options import read_options, require_rates
 from sizing.brief.raw_tables import RawBrief, RawUnits, read_entry
 from sizing.brief.stock import read_stock
 from sizing.brief.toml_file import load_toml
-from sizing.brief.truss_checks import check_truss
+from sizing.brief.truss_checks import caution_without_load, check_truss
 from sizing.errors import InputError, Problem
 
 
@@ -108,6 +108,8 @@ def brief_from_tables(
         present=present("cases"),
         lump=raw.between_nodes == "lump",
     )
+    if cases.whole and supports_known:
+        caution_without_load(cases.cases, supports, findings)
     options = read_options(raw.options, findings, quantities, present=present("options"))
     require_rates(options, raw.minimise, findings)
     standards = [option.standard for option in options]

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from sizing.brief.findings import Findings, counted, listed
 from sizing.brief.groups_and_members import GroupTable
-from sizing.brief.model import Member, Node
+from sizing.brief.model import LoadCase, Member, Node, Support
 from sizing.brief.nodes_and_supports import NodeTable
 
 SAME_PLACE = 1e-3
@@ -20,7 +20,7 @@ FloatArray = NDArray[np.float64]
 
 
 def check_truss(nodes: NodeTable, groups: GroupTable, findings: Findings) -> None:
-    """Record coincident nodes, nodes without a member, and nodes passed by a member."""
+    """Record coincident nodes, nodes without a member, passed nodes, and several trusses."""
     if len(nodes.nodes) < 2:
         return
     position = np.array([node.position for node in nodes.nodes])
@@ -32,6 +32,26 @@ def check_truss(nodes: NodeTable, groups: GroupTable, findings: Findings) -> Non
         _add_passing(nodes.nodes, groups, member, passed, findings)
     if nodes.dimensions == 2 and not passing and not twins:
         _caution_crossing(position, groups.members, findings)
+    if groups.whole and nodes.whole and not twins:
+        _caution_separate(nodes.nodes, groups.members, findings)
+
+
+def caution_without_load(
+    cases: Sequence[LoadCase], supports: Sequence[Support], findings: Findings
+) -> None:
+    """Say when every load acts on held nodes in held directions, and so strains no member."""
+    held = {support.node: support.held for support in supports}
+    if not cases or any(case.self_weight for case in cases):
+        return
+    for case in cases:
+        for node, force in case.nodal.items():
+            taken = held.get(node, (False,) * len(force))
+            if any(f != 0.0 and not fixed for f, fixed in zip(force, taken, strict=True)):
+                return
+    findings.caution(
+        "No load reaches a member: every load acts at a support, in a direction that it holds, "
+        "and no load case has self_weight = true."
+    )
 
 
 def _coincident(nodes: Sequence[Node], position: FloatArray, findings: Findings) -> set[int]:
@@ -103,6 +123,27 @@ def _add_passing(
         expected="members that end at every node on their line",
         fix=f"Delete {this.name}." if covered else f"Split it into {split}.",
     )
+
+
+def _caution_separate(nodes: Sequence[Node], members: Sequence[Member], findings: Findings) -> None:
+    """Say that the members fall into parts that share no node, with a node of each."""
+    ends = np.array([(m.start, m.end) for m in members], dtype=int).reshape(-1, 2)
+    part = np.arange(len(nodes))
+    while True:  # every node takes the lowest number that it is joined to
+        lowest = part[ends].min(axis=1)
+        joined = part.copy()
+        np.minimum.at(joined, ends, lowest[:, None])
+        joined = joined[joined]  # and the number of that one, which halves long chains
+        if (joined == part).all():
+            break
+        part = joined
+    first = sorted(set(part[ends[:, 0]].tolist()))
+    if len(first) > 1:
+        names = listed([f"with node {nodes[n].name}" for n in first], most=6)
+        findings.caution(
+            f"The members form {len(first)} separate trusses: one {names.replace(', ', ', one ')}; "
+            "they share no node and are sized together."
+        )
 
 
 def _caution_crossing(position: FloatArray, members: Sequence[Member], findings: Findings) -> None:
