@@ -53,6 +53,10 @@ from sizing.brief.sections import Catalogue, FloatArray
 from sizing.errors import InputError, Problem
 
 SUFFIX = ".csv"
+MOST_ROWS = 5_000
+"""A whole range of a supplier has a few hundred rows; each is checked and may be tried in every
+group, so that a hundred thousand would take minutes to read and hours to pick from."""
+
 ALIKE_ON_BOTH_AXES = frozenset({"SHS", "CHS"})
 """Families with one second moment; equal angles too, about their geometric axes."""
 
@@ -112,6 +116,8 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
             table = replace(table, remarks=(*encoding, *table.remarks))
     except TextProblemsError as error:
         raise InputError(error.problems) from error
+    if len(table.rows) > MOST_ROWS:
+        raise InputError([_too_many_rows(file)])
     table = with_unit_row(table)
     findings = Findings(file=file, remarks=list(table.remarks))
     heads = read_heads(table.heads.cells, file=file, line=table.heads.line)
@@ -140,6 +146,16 @@ def catalogue_from_bytes(data: bytes, *, name: str, source: SourceFile) -> Catal
     price = next((column for column in heads.columns if column.property == "price"), None)
     columns = _said_columns(heads, density)
     return _catalogue(name, source, table.header, columns, rows, density, price, findings)
+
+
+def _too_many_rows(file: str) -> Problem:
+    return Problem(
+        file=file,
+        place="file",
+        found=f"more than {MOST_ROWS} rows",
+        expected="only those that may be picked",
+        fix="Split the file into several catalogues.",
+    )
 
 
 def _find(name: str, base: Path) -> Path:

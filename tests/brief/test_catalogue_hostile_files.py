@@ -13,7 +13,7 @@ from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 import sizing
-from sizing.brief.catalogue_reader import catalogue_from_bytes, shipped_folder
+from sizing.brief.catalogue_reader import MOST_ROWS, catalogue_from_bytes, shipped_folder
 from sizing.brief.model import SourceFile
 from sizing.brief.sections import Catalogue
 from sizing.errors import InputError
@@ -45,6 +45,18 @@ def read(data: bytes) -> Catalogue | None:
     assert problems
     assert all(problem.found and problem.expected for problem in problems)
     return None
+
+
+def test_an_endless_list_is_refused_before_its_rows_are_read() -> None:
+    """One row too many is one message, though every row holds a mistake."""
+    heads = "# density = 7850 kg/m3\ndesignation,family,area [cm2],I major [cm4],I minor [cm4]\n"
+    rows = "".join(f"P{k},SHS,wrong,1,1\n" for k in range(MOST_ROWS + 1))
+    with pytest.raises(InputError) as refusal:
+        catalogue_from_bytes((heads + rows).encode(), name="list", source=SOURCE)
+    assert str(refusal.value) == (
+        "list.csv: file: found more than 5000 rows; expected only those that may be picked. "
+        "Split the file into several catalogues."
+    )
 
 
 def test_the_good_file_reads() -> None:
