@@ -15,8 +15,12 @@ The command line turns each class into its exit code in one place (``sizing.cli`
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
+
+_ENDLESS_WORD = re.compile(r"([\w.+'-]{60})[\w.+'-]{196,}")
+"""A word of 256 characters or more, longer than any file name may be: a slip, or a trap."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -37,10 +41,11 @@ class Problem:
         """Return the mistake as one line that a person can act on.
 
         What a file holds may not command a terminal or turn the line round: characters that do
-        not print appear as their codes.
+        not print appear as their codes, and an endless word is cut.
         """
         line = f"{self.file}: {self.place}: found {self.found}; expected {self.expected}"
         line = f"{line}. {self.fix}" if self.fix else f"{line}."
+        line = _ENDLESS_WORD.sub(r"\1...", line)
         if line.isprintable():
             return line
         return "".join(c if c.isprintable() else f"<{ord(c):04X}>" for c in line)

@@ -28,15 +28,19 @@ LEAST_LIKENESS = 0.5
 
 
 def key_path_text(path: KeyPath) -> str:
-    """Return ``groups.bottom-chord.members[3]``; the whole file for an empty path."""
+    """Return ``groups.bottom-chord.members[3]``; the whole file for an empty path.
+
+    Very long names are cut, as :func:`quoted` cuts them.
+    """
     text = ""
     for part in path:
         if isinstance(part, int):
             text += f"[{part}]"
         elif part.startswith("["):
-            text += part.replace("\n", " / ")
+            name = part.replace("\n", " / ")
+            text += name if len(name) <= LONGEST_SHOWN + 2 else name[: LONGEST_SHOWN - 2] + "...]"
         else:
-            name = part if _PLAIN_NAME.fullmatch(part) else quoted(part)
+            name = _cut(part) if _PLAIN_NAME.fullmatch(part) else quoted(part)
             text += f".{name}" if text else name
     return text or "the file"
 
@@ -53,14 +57,17 @@ def shown(value: object) -> str:
         return "an empty list" if not value else f"a list of {counted(len(value), 'value')}"
     if value is None:
         return "nothing"
-    text = str(value)
-    return text if len(text) <= LONGEST_SHOWN else text[: LONGEST_SHOWN - 3] + "..."
+    return _cut(str(value))
 
 
 def quoted(text: str) -> str:
     """Return the text in quotation marks, cut when it is very long, line breaks made visible."""
     flat = text.replace("\r", "").replace("\n", " / ")
-    return f'"{flat}"' if len(flat) <= LONGEST_SHOWN else f'"{flat[: LONGEST_SHOWN - 3]}..."'
+    return f'"{_cut(flat)}"'
+
+
+def _cut(text: str) -> str:
+    return text if len(text) <= LONGEST_SHOWN else text[: LONGEST_SHOWN - 3] + "..."
 
 
 def counted(number: int, noun: str) -> str:
