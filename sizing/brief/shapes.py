@@ -80,7 +80,7 @@ def draw_shape(name: str, given: Mapping[str, object] | None = None) -> Sketch:
     :class:`~sizing.errors.InputError` for an unknown shape and for every bad parameter.
     """
     if name not in SHAPES:
-        findings = Findings("shapes")
+        findings = Findings("command line", lambda _: "--shape")
         findings.add(
             (),
             found=f"no shape {quoted(name)}",

@@ -264,7 +264,7 @@ def test_timber_has_a_final_limit_beside_each_elastic_one(name: str) -> None:
 @pytest.mark.parametrize(
     ("name", "given", "messages"),
     [
-        ("prat-girder", {}, ['shapes: the file: found no shape "prat-girder"; expected one of '
+        ("prat-girder", {}, ['command line: --shape: found no shape "prat-girder"; expected one of '
                              f'{", ".join(SHAPES)}. Did you mean "pratt-girder"?']),
         ("fink", {"panels": 4}, ["shape fink: panels: found the unknown parameter \"panels\"; "
                                  "expected one of span, pitch, rise, restraint, spacing, roofing, "
