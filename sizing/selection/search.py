@@ -43,18 +43,23 @@ def search_stages(record: Record, mask: BoolArray) -> Iterator[None]:
     # sections where movements do; which is which shows only in the result.
     descend(record, choices, light)
     yield
+    _from_mixture(record, choices, strong)
     _improve(record, choices, None)
     yield
-    for start in (strong, light, strengthened(analysis, mask, light)):
+    for start in (light, strengthened(analysis, mask, light)):
         if watch.stop():
             break
         before = record.best
-        x = descend_mixed(record, choices, start.sections)
-        found = None if x is None else round_mixture(record, choices, x)
-        if found is not None:
-            descend(record, choices, found)
+        _from_mixture(record, choices, start)
         _improve(record, choices, before)
         yield
+
+
+def _from_mixture(record: Record, choices: Choices, start: Evaluation) -> None:
+    x = descend_mixed(record, choices, start.sections)
+    found = None if x is None else round_mixture(record, choices, x)
+    if found is not None:
+        descend(record, choices, found)
 
 
 def _improve(record: Record, choices: Choices, before: Evaluation | None) -> None:
@@ -70,8 +75,5 @@ def first_designs(analysis: DesignAnalysis, mask: BoolArray, watch: Watch) -> Re
     mask = efficient_sections(analysis.problem, mask)
     choices = Choices.of(mask)
     strong = record.try_design(stiffest(analysis.problem, mask))
-    x = descend_mixed(record, choices, strong.sections)
-    found = None if x is None else round_mixture(record, choices, x)
-    if found is not None:
-        descend(record, choices, found)
+    _from_mixture(record, choices, strong)
     return record
