@@ -135,7 +135,9 @@ def test_an_installed_package_finds_its_catalogues(tmp_path: Path) -> None:
     """In a wheel the catalogues lie inside the package; reading by name works from anywhere."""
     package = Path(sizing.__file__).parent
     site = tmp_path / "site"
-    shutil.copytree(package, site / "sizing", ignore=shutil.ignore_patterns("__pycache__"))
+    shutil.copytree(
+        package, site / "sizing", ignore=shutil.ignore_patterns("__pycache__", "catalogs")
+    )
     shutil.copytree(shipped_folder(), site / "sizing" / "catalogs")
     program = (
         "from pathlib import Path\n"
